@@ -1,0 +1,138 @@
+"""What the matcher found, in numbers: sentences are made of it in `reasons`, never here."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Literal
+
+LineStatus = Literal["met", "missing", "hidden", "out of range"]
+Charging = Literal["yes", "no", "cannot tell"]
+
+
+@dataclass(frozen=True, kw_only=True)
+class LineEvidence:
+    """One expected line of an element, and what stands in the spectrum there.
+
+    All energies are on the spectrum's own axis (scale and shift applied) but for `table_ev`.
+    """
+
+    transition: str
+    table_ev: float  # derivative minimum on the absolute scale of `physics`
+    expected_ev: float  # the same with inferred offset, slope and shift
+    sigma_ev: float  # standard deviation of expected_ev against found_ev
+    relative_height: float  # depth relative to the strongest line of its element
+    status: LineStatus
+    found_ev: float | None = None  # the minimum that it met
+    found_sigma_ev: float | None = None
+    share: float | None = None  # part of that minimum's depth which this line explains, 0 to 1
+    shared_with: tuple[str, ...] = ()  # other elements with a share of 0.1 or more in that minimum
+    expected_significance: float | None = None  # depth expected over noise; None out of range
+    found_significance: float | None = None
+    depth_ratio: float | None = None  # depth found over depth expected from all elements there
+    depth_ratio_factor: float | None = None  # one standard deviation, multiplicative
+    hidden_by: tuple[str, ...] = ()  # elements under whose lines it would disappear
+    log_odds: float = 0.0  # what this line added for (+) or against (-) the element, natural log
+
+
+@dataclass(frozen=True, kw_only=True)
+class RivalEvidence:
+    """Another element that could stand at a minimum which this one claims."""
+
+    element: str
+    transition: str
+    at_ev: float  # the minimum in question
+    deviation_sd: float
+    missing: tuple[tuple[str, float, float], ...] = ()  # rival's lines not seen: transition, eV, expected significance
+    probability: float = 0.0  # of the rival
+
+
+@dataclass(frozen=True, kw_only=True)
+class StateEvidence:
+    """The chemical state whose shift fits best."""
+
+    name: str
+    shift_ev: float
+    next_name: str | None = None
+    log_odds: float = 0.0  # over the next best state
+
+
+@dataclass(frozen=True, kw_only=True)
+class ElementEvidence:
+    """One element as weighed."""
+
+    element: str
+    z: int
+    probability: float  # 0 to 1
+    log_odds: float  # of the element against the best explanation without it, natural log
+    lines: tuple[LineEvidence, ...]  # strongest first
+    shift_ev: float = 0.0
+    shift_sigma_ev: float = 0.0
+    state: StateEvidence | None = None
+    strength: float = 0.0  # depth of its strongest line, units of the differential spectrum
+    prior_log_odds: float = 0.0  # what commonness alone said
+    common: bool = False  # carbon and oxygen: on nearly everything that has seen air
+    single_low_line: bool = False  # rests on one line below 110 eV
+    rivals: tuple[RivalEvidence, ...] = ()
+
+
+@dataclass(frozen=True, kw_only=True)
+class ScaleEvidence:
+    """Axis = absolute + offset + slope * absolute, as inferred from the spectrum."""
+
+    offset_ev: float
+    offset_sigma_ev: float
+    slope: float
+    slope_sigma: float
+    charging: Charging
+    lines_used: int = 0
+
+
+@dataclass(frozen=True, kw_only=True)
+class UnexplainedEvidence:
+    """A minimum that no accepted element explains."""
+
+    energy_ev: float
+    significance: float
+    candidates: tuple[str, ...]  # elements with a line within reach, likeliest first
+
+
+@dataclass(frozen=True, kw_only=True)
+class InseparableEvidence:
+    """Elements that this scan cannot tell apart."""
+
+    elements: tuple[str, ...]
+    at_ev: float
+    settle_element: str | None = None  # whose line would decide
+    settle_transition: str | None = None
+    settle_ev: float | None = None  # where that line would be on this axis
+    in_range: bool = False  # True: scanned but too noisy; longer dwell would settle it
+
+
+@dataclass(frozen=True, kw_only=True)
+class UntestableEvidence:
+    """An element on which this scan says nothing."""
+
+    element: str
+    cause: Literal["no Auger line", "out of range", "no table line", "coarse step"]
+    nearest_ev: float | None = None  # its strongest line, if it has one
+
+
+@dataclass(frozen=True, kw_only=True)
+class LimitEvidence:
+    """How much of an absent element would have been seen."""
+
+    element: str
+    atomic_percent: float
+    line_ev: float
+
+
+@dataclass(frozen=True, kw_only=True)
+class Evidence:
+    """The matcher's whole answer."""
+
+    scale: ScaleEvidence
+    elements: tuple[ElementEvidence, ...]  # probability >= 0.01, falling
+    unexplained: tuple[UnexplainedEvidence, ...]
+    inseparable: tuple[InseparableEvidence, ...]
+    untestable: tuple[UntestableEvidence, ...]
+    limits: tuple[LimitEvidence, ...] = ()
