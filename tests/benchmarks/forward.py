@@ -11,6 +11,7 @@ from collections.abc import Callable
 from dataclasses import dataclass, replace
 
 import numpy as np
+
 from ident.spectrum import Spectrum, Window
 
 from .published import PublishedLine, published_lines
