@@ -46,6 +46,9 @@ class Case:
     spectrum: Spectrum
     truth: dict[str, float]  # element -> strength (depth of its strongest line, pure strong element = 1)
     significance: dict[str, float]  # element -> noise widths of its strongest line that nobody else explains
+    strongest_ev: dict[
+        str, float
+    ]  # element -> minimum of that line on this spectrum's axis; none out of range
     kind: str
     seed: int
     recipe: str
@@ -132,7 +135,8 @@ def build_case(
     return Case(
         spectrum=Spectrum(windows=windows, name=f"{kind} {seed}"),
         truth={part.element: part.strength for part in sample},
-        significance={part.element: found.get(part.element, 0.0) for part in sample},
+        significance={part.element: found.get(part.element, (0.0,))[0] for part in sample},
+        strongest_ev={element: minimum for element, (_, minimum) in found.items()},
         kind=kind,
         seed=seed,
         recipe=recipe,

@@ -113,7 +113,9 @@ def show_wrong(cases: list[Case], call: Caller) -> None:
         calls = call(case.spectrum)
         score = score_case(case, calls)
         if not score.all_right:
-            there = " ".join(f"{e}({case.significance[e]:.0f})" for e in case.truth)
+            there = " ".join(
+                f"{e}({case.significance[e]:.0f} at {case.strongest_ev.get(e, 0.0):.0f})" for e in case.truth
+            )
             false = " ".join(f"{e} {calls[e]:.2f}" for e in sorted(score.false)) or "-"
             missed = " ".join(f"{e} {calls.get(e, 0.0):.2f}" for e in sorted(score.missed)) or "-"
             print(f"{case.kind} {case.seed} {case.recipe}: there {there} | false {false} | missed {missed}")

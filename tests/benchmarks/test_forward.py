@@ -43,7 +43,8 @@ def _significance(lines: list[Emission], noise: float = 10.0) -> dict[str, float
     shapes = np.array([line_shape(energy, line) for line in lines])
     cores = np.array([line_core(energy, line) for line in lines])
     taken = Taken(values=(), shapes=shapes, cores=cores, noise=np.full(energy.size, noise), notes=())
-    return line_significance((energy,), lines, taken)
+    found = line_significance((energy,), lines, taken)
+    return {element: sigma for element, (sigma, _) in found.items()}
 
 
 @pytest.mark.parametrize("kind", KINDS)
@@ -118,6 +119,7 @@ def _case(must: dict[str, float]) -> Case:
         spectrum=base.spectrum,
         truth=dict.fromkeys(must, 0.5),
         significance=must,
+        strongest_ev={},
         kind="surveys",
         seed=0,
         recipe="by hand",

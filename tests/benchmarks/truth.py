@@ -14,8 +14,8 @@ FREE_SHIFT_EV = 3.0  # standard deviation of another line's small shift
 
 def line_significance(
     axes_ev: tuple[FloatArray, ...], lines: list[Emission], taken: Taken
-) -> dict[str, float]:
-    """Return, for every element, the significance of its strongest line in range.
+) -> dict[str, tuple[float, float]]:
+    """Return, for every element, significance and minimum (eV) of its strongest line in range.
 
     The line, without its losses, is divided by the noise; what a local cubic background, free heights of
     every line of the other elements and small shifts of these (their energy derivatives) can make is taken
@@ -37,9 +37,9 @@ def line_significance(
     found = {}
     for element, (_, members, where) in best.items():
         target = cores[members][:, where].sum(axis=0) / noise[where]
-        found[element] = _left_over(
-            energy[where], target, _imitations(energy[where], lines, shapes[:, where], noise[where], element)
-        )
+        others = _imitations(energy[where], lines, shapes[:, where], noise[where], element)
+        strongest = max((lines[index] for index in members), key=lambda line: line.height / line.sigma_ev)
+        found[element] = (_left_over(energy[where], target, others), strongest.minimum_ev)
     return found
 
 
