@@ -8,11 +8,12 @@ import re
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-SAMPLE_LINES = 300  # enough to see how a table is written
+SAMPLE_LINES = 120  # enough to see how a table is written
 POINT_GROUPS = re.compile(r"[+-]?\d{1,3}(?:,\d{3})+(?:\.\d*)?(?:[eE][+-]?\d+)?")  # 1,234.5
 COMMA_GROUPS = re.compile(r"[+-]?\d{1,3}(?:\.\d{3})+(?:,\d*)?(?:[eE][+-]?\d+)?")  # 1.234,5
 FORTRAN = re.compile(r"[+-]?(?:\d+\.?\d*|\.\d+)[dD][+-]?\d+")
 UNICODE_SIGNS = str.maketrans({"\u2212": "-", "\u2013": "-", "\u00a0": " ", "\u202f": " ", "\ufeff": None})
+DIGIT = re.compile(r"\d")
 WORD = re.compile(r"[^\W\d_]{2,}")
 NOT_A_WORD = re.compile(r"[+-]?(?:nan|na|inf|infinity|null|none|nil|missing|overflow)", re.IGNORECASE)
 
@@ -77,20 +78,18 @@ DIALECTS = tuple(
 
 def _to_float(cell: str) -> float | None:
     """Read plain notation; Fortran's D exponent is taken, Python's underscores are not."""
-    if "_" in cell:
-        return None
     try:
         value = float(cell)
     except ValueError:
         if not FORTRAN.fullmatch(cell):
             return None
         value = float(cell.replace("D", "E").replace("d", "e"))
-    return value if math.isfinite(value) else None
+    return value if math.isfinite(value) and "_" not in cell else None
 
 
 def guess_dialect(lines: Sequence[str]) -> Dialect | None:
     """Find the way of writing under which most lines are rows of two or more numbers; None when none are."""
-    candidates = [line for line in lines if line and any(char.isdigit() for char in line)]
+    candidates = [line for line in lines if DIGIT.search(line)]
     sample = candidates[:: max(1, len(candidates) // SAMPLE_LINES)]
     best, best_score = None, 0
     for dialect in DIALECTS:
@@ -112,7 +111,9 @@ def _row_score(dialect: Dialect, line: str) -> int:
 def starts_with_word(cells: Sequence[str]) -> bool:
     """Tell whether a line begins with a word, so that it is text; marks for missing values are no words."""
     first = next((cell for cell in cells if cell), "")
-    return bool(WORD.search(first)) and not NOT_A_WORD.fullmatch(first) and not first[0].isdigit()
+    if not first or first[0].isdigit() or NOT_A_WORD.fullmatch(first):
+        return False
+    return bool(WORD.search(first)) or (first[0].isalpha() and not any(map(str.isdigit, first)))
 
 
 def looks_grouped(cells: Sequence[str], dialect: Dialect) -> str | None:

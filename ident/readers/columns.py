@@ -100,6 +100,10 @@ def _find_column(names: Sequence[str], column: str, source: Source, energies: Se
         )
     if len(found) > 1 and wanted != "sum":
         source.fail(f"several columns fit {column!r}: {_listed(names, found)}", remedy="give its number")
+    if len({_energy_for(at, energies) for at in found}) > 1:
+        source.fail(
+            f"{_listed(names, found)} have energies of their own and cannot be summed", remedy="choose one"
+        )
     if found[0] in energies:
         source.fail(
             f"column {names[found[0]]!r} holds the energies", remedy=f"choose an ordinate among {listed}"

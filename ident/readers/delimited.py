@@ -108,9 +108,7 @@ def _find_energies(table: Table) -> tuple[list[int], list[str]]:
 
 def _column(table: Table, at: int) -> FloatArray:
     """Read a column leniently, NaN for what is no number."""
-    number = table.dialect.number
-    cells = (row.cells[at] if at < len(row.cells) else "" for row in table.rows)
-    values = (number(cell) for cell in cells)
+    values = (row.values[at] if at < len(row.values) else None for row in table.rows)
     return np.array([np.nan if value is None else value for value in values], dtype=np.float64)
 
 
@@ -163,9 +161,9 @@ def _read_scans(table: Table, choice: Choice, source: Source) -> list[Scan]:
 
 def _numbers(table: Table, rows: Sequence[Row], at: int, source: Source) -> list[float]:
     """Read one column; the first cell that is no number is an error with its line."""
-    number, values = table.dialect.number, []
+    values = []
     for row in rows:
-        value = number(row.cells[at]) if at < len(row.cells) else None
+        value = row.values[at] if at < len(row.values) else None
         if value is None:
             _refuse_cell(table, row.line, row.cells[at] if at < len(row.cells) else "", at, source)
         values.append(value)

@@ -24,7 +24,7 @@ from .source import Source
 
 KINDS: dict[str, Kind] = {"aes diff": "derivative", "aes dir": "direct", "aes": "auto"}
 NO_UNIT = ("", "d", "n", "not specified")
-SPOT = re.compile(r"\b(?:spot|point|area|location|position|pos|pt|site)\W{0,2}(\d+|[A-Z])\b", re.IGNORECASE)
+SPOT = re.compile(r"\b(?:spot|point|area|location|position|pos|site)\W{0,2}(\d+|[A-Z])\b", re.IGNORECASE)
 LEVEL = re.compile(
     r"\b(?:level|layer|etch|depth|sputter)(?:\s(?:time|level|no\.?))?\W{0,2}(\d+(?:\.\d+)?)", re.IGNORECASE
 )
@@ -271,7 +271,7 @@ def _build(
         source,
         kind=group[0].kind if kind == "auto" else kind,
         ordinate=(ordinates.pop() if len(ordinates) == 1 else "auto") if ordinate == "auto" else ordinate,
-        counts=counts.pop() if len(counts) == 1 else None,
+        counts=False if kind == "derivative" else counts.pop() if len(counts) == 1 else None,
         header=header,
         warnings=[*own, *said_of_header],
     )

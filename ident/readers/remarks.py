@@ -56,8 +56,18 @@ def read_header(texts: Sequence[str]) -> Header:
         for name, pattern in KEYS.items():
             if pattern.search(key) and value:
                 fields.setdefault(name, value)
-    acquired = _read_time(fields.pop("acquired", ""))
-    return Header(**fields, acquired=acquired, beam_kev=beam_kev, comments=tuple(texts))
+    return Header(
+        sample=fields.get("sample"),
+        location=fields.get("location"),
+        acquired=_read_time(fields.get("acquired", "")),
+        institution=fields.get("institution"),
+        instrument=fields.get("instrument"),
+        operator=fields.get("operator"),
+        experiment=fields.get("experiment"),
+        technique=fields.get("technique"),
+        beam_kev=beam_kev,
+        comments=tuple(texts),
+    )
 
 
 def _read_kev(text: str) -> float | None:

@@ -6,7 +6,7 @@ import re
 from collections import Counter
 from collections.abc import Sequence
 from dataclasses import dataclass
-from typing import Literal, NoReturn
+from typing import Literal, NamedTuple, NoReturn
 
 from .cells import NOT_A_WORD, UNICODE_SIGNS, Dialect, guess_dialect, starts_with_word
 from .names import find_names
@@ -17,13 +17,13 @@ NOTHING_SAID = re.compile(r"[\W_]*")  # separators only, or a ruled line
 Sort = Literal["blank", "text", "row", "doubtful"]
 
 
-@dataclass(frozen=True, kw_only=True)
-class Row:
+class Row(NamedTuple):  # tuples here and below: a dataclass a line costs a third of the time of reading
     """One line of numbers: its line in the file and its block (blank or text lines part blocks)."""
 
     line: int
     block: int
     cells: tuple[str, ...]
+    values: tuple[float | None, ...]  # the cells as numbers, None for what is none
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -50,8 +50,7 @@ class Table:
     texts: tuple[str, ...]
 
 
-@dataclass(frozen=True, kw_only=True)
-class _Line:
+class _Line(NamedTuple):
     """A line and what it is."""
 
     sort: Sort
@@ -69,7 +68,9 @@ def read_table(source: Source) -> Table:
     InputError
         When the text holds no rows of two or more numbers, or when a line among the rows is damaged.
     """
-    texts = [line.translate(UNICODE_SIGNS).strip(" \r\f\v") for line in source.lines]
+    texts = [
+        (line if line.isascii() else line.translate(UNICODE_SIGNS)).strip(" \f\v") for line in source.lines
+    ]
     dialect = guess_dialect([text for text in texts if not _is_comment(text)])
     if dialect is None:
         _refuse_text(texts, source)
@@ -105,13 +106,18 @@ def _is_comment(text: str) -> bool:
 
 def _sort_line(number: int, text: str, dialect: Dialect) -> _Line:
     """Say what a line is: blank, text, a row of numbers, or doubtful (some cells are numbers, some not)."""
+    cells = tuple(dialect.split(text))
+    values = tuple(map(dialect.number, cells))
+    if len(values) > 1 and None not in values:
+        return _Line(sort="row", number=number, text=text, cells=cells, values=values)
     if _is_comment(text):
         return _Line(sort="text", number=number, text=text, cells=(), values=())
-    body = text.partition("#")[0] if "#" in text else text  # a remark behind the numbers
+    body, mark, _ = text.partition("#")
     if NOTHING_SAID.fullmatch(body):
         return _Line(sort="blank", number=number, text=text, cells=(), values=())
-    cells = tuple(dialect.split(body))
-    values = tuple(map(dialect.number, cells))
+    if mark:  # a remark behind the numbers
+        cells = tuple(dialect.split(body))
+        values = tuple(map(dialect.number, cells))
     numbers = len(values) - values.count(None)
     sort: Sort = "doubtful"
     if starts_with_word(cells):
@@ -140,22 +146,18 @@ def _gather_rows(lines: Sequence[_Line], width: int, source: Source) -> list[Row
         if line.sort == "blank" or (line.sort != "row" and _is_heading(lines, at, source)):
             parted = True
             continue
-        if line.sort == "row" and len(line.cells) > width:
+        if len(line.cells) > width:
             source.fail(
                 f"{len(line.cells)} cells where most rows have {width}",
                 line=line.number,
-                remedy="give every row the same columns, and numbers without thousands separators",
+                remedy="give every row the same columns, no thousands separators, and put # before a remark",
             )
         if parted and rows:
             block += 1
         parted = False
-        rows.append(Row(line=line.number, block=block, cells=line.cells))
-    return rows if rows[-1].block * 3 < len(rows) else [_in_one_block(row) for row in rows]
-
-
-def _in_one_block(row: Row) -> Row:
-    """Ignore blank lines when they stand between all rows."""
-    return Row(line=row.line, block=0, cells=row.cells)
+        rows.append(Row(line.number, block, line.cells, line.values))
+    spaced = rows[-1].block * 3 >= len(rows)  # blank lines between all rows say nothing
+    return [row._replace(block=0) for row in rows] if spaced else rows
 
 
 def _is_heading(lines: Sequence[_Line], at: int, source: Source) -> bool:
@@ -198,6 +200,6 @@ def _refuse_text(texts: Sequence[str], source: Source) -> NoReturn:
         source.fail(
             "has only one column of numbers",
             line=single[0],
-            remedy="give two columns, kinetic energy in eV and ordinate, parted by comma, semicolon, tab or blank",
+            remedy="give two columns, energy in eV and ordinate, parted by comma, semicolon, tab or blanks",
         )
     source.fail("holds no table of numbers", line=1, remedy=TEXT_REMEDY)
