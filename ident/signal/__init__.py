@@ -1,0 +1,18 @@
+"""From raw ordinates to a differential spectrum with its noise: kind, spikes, noise, differentiation."""
+
+from __future__ import annotations
+
+from .differential import Differential, differentiate
+from .kind import settle_kind
+from .noise import NoiseModel, estimate_noise
+from .spikes import Spike, find_spikes
+
+__all__ = [
+    "Differential",
+    "NoiseModel",
+    "Spike",
+    "differentiate",
+    "estimate_noise",
+    "find_spikes",
+    "settle_kind",
+]
