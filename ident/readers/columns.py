@@ -27,7 +27,7 @@ class Choice:
 
 
 def choose_columns(
-    names: Sequence[str], column: str | None, source: Source, *, energies: Sequence[int]
+    names: Sequence[str], column: str | None, source: Source, *, energies: Sequence[int], passed: int = 0
 ) -> Choice:
     """Pick the ordinate, as asked for or the first that is one, and the energies on its left.
 
@@ -39,6 +39,8 @@ def choose_columns(
         A name (case, blanks and punctuation forgiven), a number counted from 1, or "sum".
     energies : sequence of int
         Positions of the energy columns; empty when the format keeps the energies elsewhere.
+    passed : int
+        How many columns in front are no ordinates unless asked for.
 
     Raises
     ------
@@ -48,7 +50,7 @@ def choose_columns(
     if column is not None:
         picked = _find_column(names, column.strip(), source, energies)
         return Choice(energy=_energy_for(picked[0], energies), ordinates=tuple(picked))
-    others = [at for at in range(len(names)) if at not in energies]
+    others = [at for at in range(passed, len(names)) if at not in energies]
     ordinates = [at for at in others if role_of(names[at]) == "ordinate"] or others
     if not ordinates:
         source.fail("has no ordinate column", remedy=f"the columns are {_listed(names, range(len(names)))}")

@@ -43,7 +43,8 @@ def read_delimited(
     """
     table = read_table(source)
     energies, found = _find_energies(table)
-    choice = choose_columns(table.names, column, source, energies=energies)
+    counted = 1 if found else 0
+    choice = choose_columns(table.names, column, source, energies=energies, passed=counted)
     _check_axis(table, choice, source)
     _refuse_double_commas(table, source)
     scans = _read_scans(table, choice, source)

@@ -8,6 +8,7 @@ from typing import Literal
 
 from .cells import Dialect
 
+COMMENT_MARKS = ("#", "%", ";", "!", "//", "'", "*")
 Role = Literal["energy", "other", "ordinate"]
 
 UNIT = re.compile(
@@ -56,8 +57,13 @@ def find_names(
     units = [entry for entry in fitting if all(UNIT.fullmatch(cell) for cell in entry[2] if cell)]
     named = [entry for entry in fitting if entry not in units]
     said = [entry for entry in named if any(role_of(cell) == "energy" for cell in entry[2])]
+    prose = dialect.separator == " "  # any remark of two words would name two columns
     last = len(head) - (2 if units else 1)
-    chosen = said[-1:] or [entry for entry in named if entry[0] >= last] or units[-1:]
+    chosen = (
+        said[-1:]
+        or [entry for entry in named if entry[0] >= last and not (prose and is_remark(head[entry[0]][1]))]
+        or units[-1:]
+    )
     if not chosen:
         return None
     at, number, cells = chosen[-1]
@@ -65,6 +71,11 @@ def find_names(
     if below:
         cells = [_with_unit(cell, unit) for cell, unit in zip(cells, below[0][2], strict=True)]
     return number, cells
+
+
+def is_remark(text: str) -> bool:
+    """Tell whether a line begins with a comment mark."""
+    return text.lstrip().startswith(COMMENT_MARKS)
 
 
 def _name_cells(text: str, columns: int, dialect: Dialect) -> list[str] | None:
@@ -80,6 +91,12 @@ def _name_cells(text: str, columns: int, dialect: Dialect) -> list[str] | None:
         tidy = [" ".join(cell.strip(" \t\"'").split()) for cell in cells]
         if len(tidy) == columns and not all(dialect.number(cell) is not None for cell in tidy):
             return tidy
+        if (
+            len(tidy) > columns
+            and dialect.separator != " "
+            and any(role_of(cell) == "energy" for cell in tidy)
+        ):
+            return tidy[:columns]  # names of columns that are empty
     return None
 
 

@@ -89,7 +89,11 @@ def _read_time(text: str) -> str | None:
 
 def guess_kind(name: str, names: Sequence[str], texts: Sequence[str]) -> Kind:
     """Say "derivative" when the chosen column or the header says so; "auto" when nothing does."""
-    if any(DERIVATIVE.search(each) and not DENIED.search(each) for each in names):
+    texts = [
+        *texts,
+        " ".join(names),
+    ]  # a remark of two words may have been taken for the names of two columns
+    if any(DERIVATIVE.search(each) for each in names) and not DENIED.search(texts[-1]):
         return "derivative" if DERIVATIVE.search(name) else "auto"
     said = [text for text in texts if DERIVATIVE.search(text)]
     return "derivative" if said and not any(DENIED.search(text) for text in said) else "auto"

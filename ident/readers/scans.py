@@ -16,6 +16,10 @@ MIN_POINTS = 5  # a shorter piece holds no minimum that could be told from noise
 GAP_STEPS = 3.0  # a step this many times the local one is a gap between windows
 STEP_CHANGE = 1.5  # a lasting change of step by this factor starts another window
 LOCAL = 5  # steps looked at on each side
+SORT_THEM = (
+    "sort the rows by energy, put a blank line between windows, "
+    "and check that the energies are in the first column or named so"
+)
 NOT_TWICE = "remove the duplicates, or put a blank line between sweeps of the same range"
 
 
@@ -75,6 +79,7 @@ def _split_restarts(scan: Scan, source: Source) -> list[Scan]:
         )
     direction = 1.0 if np.count_nonzero(steps > 0) * 2 >= steps.size else -1.0
     cuts = np.flatnonzero(steps * direction < 0) + 1
+    _refuse_strays(scan, cuts, direction, source)
     bounds = [0, *cuts.tolist(), len(scan)]
     lengths = np.diff(bounds)
     if len(lengths) > 1 and lengths.min() < MIN_POINTS:
@@ -82,9 +87,25 @@ def _split_restarts(scan: Scan, source: Source) -> list[Scan]:
         source.fail(
             f"the energies are in no order ({scan.energy_ev[at]:g} eV after {scan.energy_ev[at - 1]:g} eV)",
             line=int(scan.line[at]),
-            remedy="sort the rows by energy, and check that the energies are in the first column or named so",
+            remedy=SORT_THEM,
         )
     return [scan[low:high] for low, high in itertools.pairwise(bounds)]
+
+
+def _refuse_strays(scan: Scan, cuts: NDArray[np.int64], direction: float, source: Source) -> None:
+    """Refuse a point out of order: without it the energies would go on as if nothing had been."""
+    energy = scan.energy_ev
+    usual = GAP_STEPS * float(np.median(np.abs(np.diff(energy))))
+    for cut in cuts.tolist():
+        for stray in (cut - 1, cut):
+            if 1 <= stray < energy.size - 1:
+                across = (energy[stray + 1] - energy[stray - 1]) * direction
+                if 0 < across <= usual:
+                    source.fail(
+                        f"the energy {energy[stray]:g} eV is out of order",
+                        line=int(scan.line[stray]),
+                        remedy=SORT_THEM,
+                    )
 
 
 def _split_gaps(run: Scan) -> list[Scan]:

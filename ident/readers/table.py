@@ -9,10 +9,9 @@ from dataclasses import dataclass
 from typing import Literal, NamedTuple, NoReturn
 
 from .cells import NOT_A_WORD, UNICODE_SIGNS, Dialect, guess_dialect, starts_with_word
-from .names import find_names
+from .names import find_names, is_remark
 from .source import TEXT_REMEDY, Source
 
-COMMENT_MARKS = ("#", "%", ";", "!", "//", "'", "*")
 NOTHING_SAID = re.compile(r"[\W_]*")  # separators only, or a ruled line
 Sort = Literal["blank", "text", "row", "doubtful"]
 
@@ -71,7 +70,7 @@ def read_table(source: Source) -> Table:
     texts = [
         (line if line.isascii() else line.translate(UNICODE_SIGNS)).strip(" \f\v") for line in source.lines
     ]
-    dialect = guess_dialect([text for text in texts if not _is_comment(text)])
+    dialect = guess_dialect([text for text in texts if not is_remark(text)])
     if dialect is None:
         _refuse_text(texts, source)
     lines = [_sort_line(number, text, dialect) for number, text in enumerate(texts, start=1)]
@@ -100,17 +99,13 @@ def strip_mark(text: str) -> str:
     return text.strip().lstrip("#%;!/'*").strip().strip('"').strip()
 
 
-def _is_comment(text: str) -> bool:
-    return text.lstrip().startswith(COMMENT_MARKS)
-
-
 def _sort_line(number: int, text: str, dialect: Dialect) -> _Line:
     """Say what a line is: blank, text, a row of numbers, or doubtful (some cells are numbers, some not)."""
     cells = tuple(dialect.split(text))
     values = tuple(map(dialect.number, cells))
     if len(values) > 1 and None not in values:
         return _Line(sort="row", number=number, text=text, cells=cells, values=values)
-    if _is_comment(text):
+    if is_remark(text):
         return _Line(sort="text", number=number, text=text, cells=(), values=())
     body, mark, _ = text.partition("#")
     if NOTHING_SAID.fullmatch(body):

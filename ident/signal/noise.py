@@ -12,6 +12,7 @@ from functools import cache
 from itertools import combinations
 
 import numpy as np
+from numpy.typing import NDArray
 
 from ..spectrum import FloatArray
 
@@ -19,6 +20,7 @@ THIRD_DIFFERENCE = np.array([-1.0, 3.0, -3.0, 1.0])
 SPACINGS = (1, 2, 3, 4, 6)
 NORMAL_MEDIAN = 0.6745  # median of |x| for a standard normal
 BLOCK = 32
+IndexArray = NDArray[np.int64]
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)
@@ -111,7 +113,7 @@ def _best_subset(variance: FloatArray, columns: list[FloatArray], keep: np.ndarr
     return best
 
 
-def _local_excess(variance: FloatArray, model: FloatArray, size: int, centre: FloatArray) -> FloatArray:
+def _local_excess(variance: FloatArray, model: FloatArray, size: int, centre: IndexArray) -> FloatArray:
     """Where blocks are noisier than the model over some width, believe the blocks (up to twice the noise)."""
     ratio = np.clip(variance / model, 1.0, 4.0)
     if ratio.size >= 3:
