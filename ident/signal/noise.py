@@ -157,8 +157,8 @@ def _kernels(derivative: bool) -> tuple[tuple[FloatArray, FloatArray, float], ..
         raw.append(np.array([1.0, 0.0, -1.0]))
         raw.append(np.array([1.0, -1.0]))
     out = []
-    for kernel in raw:
-        kernel = kernel / np.sqrt(np.sum(kernel**2))
+    for weights in raw:
+        kernel = weights / np.sqrt(np.sum(weights**2))
         spread = []
         for spacing in SPACINGS:
             difference = np.zeros(3 * spacing + 1)

@@ -170,7 +170,7 @@ def test_thousands_that_could_be_decimals_are_refused(tmp_path: Path) -> None:
         f"{energy:.0f};{value:,.0f}"
         for energy, value in zip(axis(100, 150, 1), axis(960, 1060, 2), strict=True)
     ]
-    with pytest.raises(InputError, match="could be 1000 or 1.000.*without thousands separators"):
+    with pytest.raises(InputError, match=r"could be 1000 or 1\.000.*without thousands separators"):
         read_spectrum(write(tmp_path, "\n".join(lines)))
 
 
