@@ -80,9 +80,7 @@ def read_spectrum(
 
     Parameters and errors are those of `read_spectra`.
     """
-    spectra = read_spectra(
-        path, column=column, kind=kind, ordinate=ordinate, separate=separate, stream=stream
-    )
+    spectra = read_spectra(path, column=column, kind=kind, ordinate=ordinate, separate=separate, stream=stream)
     first = spectra[0]
     if len(spectra) == 1:
         return first

@@ -97,19 +97,13 @@ def _find_column(names: Sequence[str], column: str, source: Source, energies: Se
     found = next((hits for hits in tries if hits), [])
     listed = _listed(names, range(len(names)))
     if not found:
-        source.fail(
-            f"has no column {column!r}", remedy=f"the columns are {listed}; name one or give its number"
-        )
+        source.fail(f"has no column {column!r}", remedy=f"the columns are {listed}; name one or give its number")
     if len(found) > 1 and wanted != "sum":
         source.fail(f"several columns fit {column!r}: {_listed(names, found)}", remedy="give its number")
     if len({_energy_for(at, energies) for at in found}) > 1:
-        source.fail(
-            f"{_listed(names, found)} have energies of their own and cannot be summed", remedy="choose one"
-        )
+        source.fail(f"{_listed(names, found)} have energies of their own and cannot be summed", remedy="choose one")
     if found[0] in energies:
-        source.fail(
-            f"column {names[found[0]]!r} holds the energies", remedy=f"choose an ordinate among {listed}"
-        )
+        source.fail(f"column {names[found[0]]!r} holds the energies", remedy=f"choose an ordinate among {listed}")
     return found
 
 

@@ -61,9 +61,7 @@ def read_delimited(
         return (_build(windows, source, facts, counts, warnings),)
     long_enough = [window for window in windows if len(window) >= MIN_TOTAL] or windows
     if len(long_enough) < len(windows):
-        warnings.append(
-            f"{len(windows) - len(long_enough)} windows of fewer than {MIN_TOTAL} points left out"
-        )
+        warnings.append(f"{len(windows) - len(long_enough)} windows of fewer than {MIN_TOTAL} points left out")
     spectra = [_build([window], source, facts, counts, warnings) for window in long_enough]
     return number_names(spectra, source, from_first=True)
 
@@ -73,9 +71,7 @@ def list_table_columns(source: Source) -> tuple[str, ...]:
     return read_table(source).names
 
 
-def _build(
-    windows: list[Scan], source: Source, facts: _Facts, counts: bool | None, warnings: list[str]
-) -> Spectrum:
+def _build(windows: list[Scan], source: Source, facts: _Facts, counts: bool | None, warnings: list[str]) -> Spectrum:
     return build_spectrum(
         windows,
         source,
@@ -144,9 +140,7 @@ def _read_scans(table: Table, choice: Choice, source: Source) -> list[Scan]:
     wanted = (energy_at, *choice.ordinates)
     kept = [row for row in table.rows if any(row.cells[at : at + 1] not in ((), ("",)) for at in wanted)]
     if not kept:
-        source.fail(
-            f"column {table.names[choice.ordinates[0]]!r} is empty", remedy="choose another with --column"
-        )
+        source.fail(f"column {table.names[choice.ordinates[0]]!r} is empty", remedy="choose another with --column")
     for at in wanted:
         cells = [row.cells[at] for row in kept if at < len(row.cells)]
         _check_grouping(cells, [row.line for row in kept if at < len(row.cells)], table, source)
@@ -175,9 +169,7 @@ def _refuse_cell(table: Table, line: int, cell: str, at: int, source: Source) ->
     """Say what is wrong with a cell."""
     place = f"column {at + 1}" if not table.named else f"column {at + 1} ({table.names[at]})"
     if not cell:
-        source.fail(
-            f"no value in {place}", line=line, remedy="remove the row, or export the file again if it was cut"
-        )
+        source.fail(f"no value in {place}", line=line, remedy="remove the row, or export the file again if it was cut")
     shown = repr(cell if len(cell) <= 30 else cell[:27] + "...")
     if any(mark in cell for mark in ".,") and any(char.isdigit() for char in cell):
         remedy = "write all numbers with one decimal sign and no thousands separators"

@@ -33,9 +33,7 @@ class Cursor:
     def need(self, count: int) -> None:
         """Refuse a file that ends before so many more lines."""
         if count > self.end - self.at:
-            self.source.fail(
-                f"the file ends inside {self.part}, so it is truncated", line=self.end or 1, remedy=AGAIN
-            )
+            self.source.fail(f"the file ends inside {self.part}, so it is truncated", line=self.end or 1, remedy=AGAIN)
 
     def text(self) -> str:
         """Take one line."""

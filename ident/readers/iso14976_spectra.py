@@ -87,8 +87,7 @@ def list_iso14976_columns(source: Source) -> tuple[str, ...]:
 def _names(block: Block) -> tuple[str, ...]:
     """Label and unit of each corresponding variable."""
     return tuple(
-        (label.strip() or f"variable {at}")
-        + (f" [{unit.strip()}]" if unit.strip().lower() not in NO_UNIT else "")
+        (label.strip() or f"variable {at}") + (f" [{unit.strip()}]" if unit.strip().lower() not in NO_UNIT else "")
         for at, (label, unit) in enumerate(block.labels, start=1)
     )
 
@@ -128,9 +127,7 @@ def _read_part(block: Block, preamble: Preamble, column: str | None, source: Sou
     offset = 1 if irregular else 0
     intensity = reduce(np.add, [block.values[:, at + offset] for at in choice.ordinates])
     energy = _energies(block, irregular, source)
-    scan, warnings = _cut_missing(
-        Scan(energy_ev=energy, intensity=intensity, line=_lines(block)), block, source
-    )
+    scan, warnings = _cut_missing(Scan(energy_ev=energy, intensity=intensity, line=_lines(block)), block, source)
     name = own[choice.ordinates[0]]
     kind = KINDS[(block.text(9) or "").casefold()]
     return _Part(
@@ -172,9 +169,7 @@ def _energies(block: Block, irregular: bool, source: Source) -> FloatArray:
         return abscissa
     start, increment = block.number_of(31, 2), block.number_of(31, 3)
     if start is None or not increment:
-        source.fail(
-            "the abscissa has no start or no increment", line=line + 2, remedy="export the file again"
-        )
+        source.fail("the abscissa has no start or no increment", line=line + 2, remedy="export the file again")
     return np.asarray(start + increment * np.arange(len(block.values)), dtype=np.float64)
 
 
@@ -258,9 +253,7 @@ def _same_range(one: _Part, other: _Part) -> bool:
     )
 
 
-def _build(
-    group: Sequence[_Part], preamble: Preamble, source: Source, kind: Kind, ordinate: Ordinate
-) -> Spectrum:
+def _build(group: Sequence[_Part], preamble: Preamble, source: Source, kind: Kind, ordinate: Ordinate) -> Spectrum:
     """Make one spectrum of its parts."""
     counts = {part.counts for part in group}
     ordinates = {part.ordinate for part in group}
@@ -284,9 +277,7 @@ def _header(group: Sequence[_Part], preamble: Preamble) -> tuple[Header, list[st
     beam_ev = block.number_of(14)
     warnings = []
     if beam_ev is not None and 0 < beam_ev < LOWEST_BEAM_EV:
-        warnings.append(
-            f"the source energy of {beam_ev:g} eV is not believed: give the beam energy with --beam"
-        )
+        warnings.append(f"the source energy of {beam_ev:g} eV is not believed: give the beam energy with --beam")
         beam_ev = None
     dwell, scans = block.number_of(34), block.number_of(35)
     comments = [text for text in preamble.comments if said(text)]

@@ -32,9 +32,7 @@ COLUMNS_ARE = re.compile(r"^(?:columns?|fields?|data)\s*[:=]\s*", re.IGNORECASE)
 TOKEN = re.compile(r"[^\s\[(]+(?:\([^)\s]*\))?(?:\s*[\[(][^\])]*[\])])?|[\[(][^\])]*[\])]")
 
 
-def find_names(
-    head: Sequence[tuple[int, str]], columns: int, dialect: Dialect
-) -> tuple[int, list[str]] | None:
+def find_names(head: Sequence[tuple[int, str]], columns: int, dialect: Dialect) -> tuple[int, list[str]] | None:
     """Find the line that names the columns, and a line of units below it.
 
     Parameters
@@ -91,11 +89,7 @@ def _name_cells(text: str, columns: int, dialect: Dialect) -> list[str] | None:
         tidy = [" ".join(cell.strip(" \t\"'").split()) for cell in cells]
         if len(tidy) == columns and not all(dialect.number(cell) is not None for cell in tidy):
             return tidy
-        if (
-            len(tidy) > columns
-            and dialect.separator != " "
-            and any(role_of(cell) == "energy" for cell in tidy)
-        ):
+        if len(tidy) > columns and dialect.separator != " " and any(role_of(cell) == "energy" for cell in tidy):
             return tidy[:columns]  # names of columns that are empty
     return None
 

@@ -32,13 +32,9 @@ KEYS = {
     "operator": re.compile(r"^(?:operator|user|measured by)$", re.IGNORECASE),
     "experiment": re.compile(r"^experiment(?:\s?(?:id|name|identifier))?$", re.IGNORECASE),
     "technique": re.compile(r"^(?:technique|method)$", re.IGNORECASE),
-    "acquired": re.compile(
-        r"^(?:acquired|acquisition (?:date|time)|date(?:\s?(?:and|/|&)?\s?time)?)$", re.IGNORECASE
-    ),
+    "acquired": re.compile(r"^(?:acquired|acquisition (?:date|time)|date(?:\s?(?:and|/|&)?\s?time)?)$", re.IGNORECASE),
 }
-BEAM = re.compile(
-    r"^(?:primary|electron)?\s?(?:beam|source|gun)?\s?(?:energy|voltage)$|^beam$", re.IGNORECASE
-)
+BEAM = re.compile(r"^(?:primary|electron)?\s?(?:beam|source|gun)?\s?(?:energy|voltage)$|^beam$", re.IGNORECASE)
 VOLTS = re.compile(r"(?P<number>\d+(?:[.,]\d+)?)\s*(?P<kilo>k)?(?:e?V)\b", re.IGNORECASE)
 
 

@@ -43,9 +43,7 @@ class Scan:
     sweeps: int = 1
 
     def __getitem__(self, part: slice) -> Scan:
-        return replace(
-            self, energy_ev=self.energy_ev[part], intensity=self.intensity[part], line=self.line[part]
-        )
+        return replace(self, energy_ev=self.energy_ev[part], intensity=self.intensity[part], line=self.line[part])
 
     def __len__(self) -> int:
         return int(self.energy_ev.size)
@@ -74,9 +72,7 @@ def _split_restarts(scan: Scan, source: Source) -> list[Scan]:
     same = np.flatnonzero(steps == 0)
     if same.size:
         at = int(same[0]) + 1
-        source.fail(
-            f"the energy {scan.energy_ev[at]:g} eV is repeated", line=int(scan.line[at]), remedy=NOT_TWICE
-        )
+        source.fail(f"the energy {scan.energy_ev[at]:g} eV is repeated", line=int(scan.line[at]), remedy=NOT_TWICE)
     direction = 1.0 if np.count_nonzero(steps > 0) * 2 >= steps.size else -1.0
     cuts = np.flatnonzero(steps * direction < 0) + 1
     _refuse_strays(scan, cuts, direction, source)

@@ -88,9 +88,7 @@ def read_source(path: str | PathLike[str], stream: IO[bytes] | None = None) -> S
     name = fspath(path)
     data = _read_stream(stream) if name == "-" else _read_file(name)
     if len(data) > MAX_BYTES:
-        raise InputError(
-            f"is longer than {MAX_BYTES // 1024**2} MB", source=label_of(name), remedy=TEXT_REMEDY
-        )
+        raise InputError(f"is longer than {MAX_BYTES // 1024**2} MB", source=label_of(name), remedy=TEXT_REMEDY)
     if not data.strip():
         raise InputError("is empty", source=label_of(name), remedy=TEXT_REMEDY)
     text = _decode(data, label_of(name))

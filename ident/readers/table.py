@@ -67,9 +67,7 @@ def read_table(source: Source) -> Table:
     InputError
         When the text holds no rows of two or more numbers, or when a line among the rows is damaged.
     """
-    texts = [
-        (line if line.isascii() else line.translate(UNICODE_SIGNS)).strip(" \f\v") for line in source.lines
-    ]
+    texts = [(line if line.isascii() else line.translate(UNICODE_SIGNS)).strip(" \f\v") for line in source.lines]
     dialect = guess_dialect([text for text in texts if not is_remark(text)])
     if dialect is None:
         _refuse_text(texts, source)

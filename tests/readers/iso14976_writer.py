@@ -10,6 +10,9 @@ from dataclasses import dataclass, field
 from typing import Any
 
 IDENTIFIER = "VAMAS Surface Chemical Analysis Standard Data Transfer Format 1988 May 4"
+ION_TECHNIQUES = (
+    "FABMS", "FABMS energy spec", "ISS", "SIMS", "SIMS energy spec", "SNMS", "SNMS energy spec"
+)  # fmt: skip
 PROFILES = ("MAPDP", "MAPSVDP", "SDP", "SDPSV")
 
 
@@ -103,7 +106,7 @@ def _items(file: WriterFile, block: WriterBlock) -> dict[int, list[Any]]:
     items[10] = list(block.xy) if mode in ("MAP", "MAPDP") else []
     items[11] = list(block.experimental)
     items[12] = ["electron gun"]
-    items[13] = [18, 1, 1] if profile else []
+    items[13] = [18, 1, 1] if profile or block.technique in ION_TECHNIQUES else []
     items[14] = [block.source_energy]
     items[15] = ["1E37"]
     items[16] = [0.1, 0.1]

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import contextlib
-import contextlib
 import io
 import os
 from pathlib import Path
@@ -162,9 +161,7 @@ IRREGULAR = render(
         scan="IRREGULAR",
     )
 )
-TABLE = "Energy (eV);Sweep 1;Sweep 2\n" + rows(
-    ENERGY, curve(ENERGY), curve(ENERGY) / 2, separator=";", decimal=","
-)
+TABLE = "Energy (eV);Sweep 1;Sweep 2\n" + rows(ENERGY, curve(ENERGY), curve(ENERGY) / 2, separator=";", decimal=",")
 TOKENS = ["nan", "inf", "1E37", "-1", "", "1e999", "abc", "0", "9" * 12, "1e308", "\x00", "#", ",", ";", "\t", "\r",
           '"', "1.234,5", "keV", "binding", "\n\n", "\ufeff", "1_0", "\u0663"]  # fmt: skip
 

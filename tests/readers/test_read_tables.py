@@ -39,8 +39,7 @@ def test_decimal_comma(tmp_path: Path, separator: str) -> None:
 
 def test_quoted_decimal_comma(tmp_path: Path) -> None:
     lines = [
-        f'"{energy:.1f}","{value:.2f}"'.replace(".", ",")
-        for energy, value in zip(ENERGY, COUNTS / 4, strict=True)
+        f'"{energy:.1f}","{value:.2f}"'.replace(".", ",") for energy, value in zip(ENERGY, COUNTS / 4, strict=True)
     ]
     assert_is_curve(read_spectrum(write(tmp_path, "\n".join(lines))), counts=COUNTS / 4)
 
@@ -109,9 +108,7 @@ def test_blank_line_between_all_rows(tmp_path: Path) -> None:
 
 def test_fortran_exponents_and_unicode_minus(tmp_path: Path) -> None:
     values = COUNTS - 2100
-    lines = [
-        f"{energy:.3E} {value:.4E}".replace("E", "D") for energy, value in zip(ENERGY, values, strict=True)
-    ]
+    lines = [f"{energy:.3E} {value:.4E}".replace("E", "D") for energy, value in zip(ENERGY, values, strict=True)]
     spectrum = read_spectrum(write(tmp_path, "\n".join(lines).replace("-2", "\u22122")))
     assert_is_curve(spectrum, counts=np.array([float(f"{value:.4E}") for value in values]))
 
@@ -166,19 +163,13 @@ def test_thousands_that_are_clear(tmp_path: Path) -> None:
 
 
 def test_thousands_that_could_be_decimals_are_refused(tmp_path: Path) -> None:
-    lines = [
-        f"{energy:.0f};{value:,.0f}"
-        for energy, value in zip(axis(100, 150, 1), axis(960, 1060, 2), strict=True)
-    ]
+    lines = [f"{energy:.0f};{value:,.0f}" for energy, value in zip(axis(100, 150, 1), axis(960, 1060, 2), strict=True)]
     with pytest.raises(InputError, match=r"could be 1000 or 1\.000.*without thousands separators"):
         read_spectrum(write(tmp_path, "\n".join(lines)))
 
 
 def test_fixed_decimals_are_no_thousands(tmp_path: Path) -> None:
-    lines = [
-        f"{energy:.3f};{value / 100:.3f}".replace(".", ",")
-        for energy, value in zip(ENERGY, COUNTS, strict=True)
-    ]
+    lines = [f"{energy:.3f};{value / 100:.3f}".replace(".", ",") for energy, value in zip(ENERGY, COUNTS, strict=True)]
     assert_is_curve(read_spectrum(write(tmp_path, "\n".join(lines))), counts=COUNTS / 100)
 
 
@@ -230,9 +221,7 @@ def test_column_errors_name_the_columns(tmp_path: Path) -> None:
 
 
 def test_errors_and_times_are_no_ordinates(tmp_path: Path) -> None:
-    text = "Time (s);Energy (eV);Error;Intensity\n" + rows(
-        ENERGY * 0 + 7, ENERGY, COUNTS**0.5, COUNTS, separator=";"
-    )
+    text = "Time (s);Energy (eV);Error;Intensity\n" + rows(ENERGY * 0 + 7, ENERGY, COUNTS**0.5, COUNTS, separator=";")
     spectrum = read_spectrum(write(tmp_path, text))
     assert_is_curve(spectrum)
     assert spectrum.warnings == ()
@@ -279,9 +268,7 @@ def test_derivative_by_header_word(tmp_path: Path, word: str) -> None:
     assert read_spectrum(tmp_path / "spectrum.txt", kind="direct").kind == "direct"
 
 
-@pytest.mark.parametrize(
-    "remark", ["differential pumping on", "not differentiated", "derivative: no", "N(E)"]
-)
+@pytest.mark.parametrize("remark", ["differential pumping on", "not differentiated", "derivative: no", "N(E)"])
 def test_words_that_do_not_mean_derivative(tmp_path: Path, remark: str) -> None:
     assert read_spectrum(write(tmp_path, f"# {remark}\n" + rows(ENERGY, COUNTS))).kind == "auto"
 

@@ -55,9 +55,7 @@ def test_separate(tmp_path: Path) -> None:
 
 def test_steps_that_change_part_windows(tmp_path: Path) -> None:
     """Two windows that touch but were recorded with different steps (common practice, no source)."""
-    text = rows(axis(100, 150, 1), curve(axis(100, 150, 1))) + rows(
-        axis(150.2, 170, 0.2), curve(axis(150.2, 170, 0.2))
-    )
+    text = rows(axis(100, 150, 1), curve(axis(100, 150, 1))) + rows(axis(150.2, 170, 0.2), curve(axis(150.2, 170, 0.2)))
     spectrum = read_spectrum(write(tmp_path, text))
     assert [window.step_ev for window in spectrum.windows] == pytest.approx([1.0, 0.2])
 
@@ -83,9 +81,7 @@ def test_repeated_sweeps_are_summed(tmp_path: Path, between: str) -> None:
     path = write(tmp_path, table(MIDDLE, MIDDLE, MIDDLE, between=between))
     spectrum = read_spectrum(path)
     assert spectrum.ranges_ev == ((250.0, 300.0),)
-    np.testing.assert_array_equal(
-        spectrum.windows[0].intensity, curve(MIDDLE, 1) + curve(MIDDLE, 2) + curve(MIDDLE, 3)
-    )
+    np.testing.assert_array_equal(spectrum.windows[0].intensity, curve(MIDDLE, 1) + curve(MIDDLE, 2) + curve(MIDDLE, 3))
     assert "3 recordings of 250 to 300 eV were summed" in spectrum.warnings[0]
     assert spectrum.header.sweeps == 3
     assert len(read_spectra(path, separate=True)) == 3
@@ -93,9 +89,7 @@ def test_repeated_sweeps_are_summed(tmp_path: Path, between: str) -> None:
 
 def test_sweeps_there_and_back(tmp_path: Path) -> None:
     text = rows(MIDDLE, curve(MIDDLE)) + "\n" + rows(MIDDLE[::-1], curve(MIDDLE)[::-1])
-    np.testing.assert_array_equal(
-        read_spectrum(write(tmp_path, text)).windows[0].intensity, 2 * curve(MIDDLE)
-    )
+    np.testing.assert_array_equal(read_spectrum(write(tmp_path, text)).windows[0].intensity, 2 * curve(MIDDLE))
 
 
 def test_overlapping_windows_are_said(tmp_path: Path) -> None:
@@ -136,9 +130,7 @@ def test_coarse_steps_are_warned_of(tmp_path: Path, step: float, warned: bool) -
 
 
 @given(
-    st.lists(
-        st.tuples(st.integers(8, 40), st.sampled_from([0.1, 0.25, 0.5, 1.0, 2.0])), min_size=1, max_size=5
-    ),
+    st.lists(st.tuples(st.integers(8, 40), st.sampled_from([0.1, 0.25, 0.5, 1.0, 2.0])), min_size=1, max_size=5),
     st.booleans(),
 )
 @settings(deadline=None, max_examples=60)
