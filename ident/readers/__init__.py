@@ -15,11 +15,11 @@ from .source import read_source
 
 __all__ = ["list_columns", "read_spectra", "read_spectrum"]
 
-Path = str | PathLike[str]
+FilePath = str | PathLike[str]
 
 
 def read_spectra(
-    path: Path,
+    path: FilePath,
     *,
     column: str | None = None,
     kind: Kind = "auto",
@@ -68,7 +68,7 @@ def read_spectra(
 
 
 def read_spectrum(
-    path: Path,
+    path: FilePath,
     *,
     column: str | None = None,
     kind: Kind = "auto",
@@ -88,7 +88,7 @@ def read_spectrum(
     return replace(first, warnings=(*first.warnings, more))
 
 
-def list_columns(path: Path, *, stream: IO[bytes] | None = None) -> tuple[str, ...]:
+def list_columns(path: FilePath, *, stream: IO[bytes] | None = None) -> tuple[str, ...]:
     """Names of the columns of a file in order, "column 3" where it gives none.
 
     For an ISO 14976 file these are the ordinates of its first spectrum. Errors are those of `read_spectra`.

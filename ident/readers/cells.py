@@ -102,10 +102,11 @@ def guess_dialect(lines: Sequence[str]) -> Dialect | None:
 def _row_score(dialect: Dialect, line: str) -> int:
     """Score a line: 3 a row of numbers, 1 a row with other cells among them, 0 no row."""
     cells = [cell for cell in dialect.split(line) if cell]
-    numbers = sum(dialect.number(cell) is not None for cell in cells)
-    if numbers < 2:
-        return 0
-    return 3 if numbers == len(cells) else 1
+    values = [dialect.number(cell) for cell in cells]
+    numbers = len(values) - values.count(None)
+    if numbers == len(values) > 1:
+        return 3
+    return 1 if numbers > 1 and (values[0] is not None or 2 * numbers >= len(values)) else 0
 
 
 def starts_with_word(cells: Sequence[str]) -> bool:

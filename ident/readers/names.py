@@ -9,6 +9,7 @@ from typing import Literal
 from .cells import Dialect
 
 COMMENT_MARKS = ("#", "%", ";", "!", "//", "'", "*")
+LONGEST_HEADER = 4000  # characters; a longer line names no columns
 Role = Literal["energy", "other", "ordinate"]
 
 UNIT = re.compile(
@@ -29,6 +30,7 @@ OTHER = re.compile(
 )
 SWEEP = re.compile(r"(?P<stem>.*?\D)\s*[._#-]?\s*(?P<number>\d+)\s*(?P<unit>[\[(].*)?")
 COLUMNS_ARE = re.compile(r"^(?:columns?|fields?|data)\s*[:=]\s*", re.IGNORECASE)
+PLACE = re.compile(r"\b(?:spot|point|position|location|area|site|level|layer|depth|sample|pixel)", re.IGNORECASE)
 TOKEN = re.compile(r"[^\s\[(]+(?:\([^)\s]*\))?(?:\s*[\[(][^\])]*[\])])?|[\[(][^\])]*[\])]")
 
 
@@ -50,7 +52,9 @@ def find_names(head: Sequence[tuple[int, str]], columns: int, dialect: Dialect) 
     fitting = [
         (at, number, cells)
         for at, (number, text) in enumerate(head)
-        if at >= len(head) - 6 and (cells := _name_cells(text, columns, dialect)) is not None
+        if at >= len(head) - 6
+        and len(text) < LONGEST_HEADER
+        and (cells := _name_cells(text, columns, dialect)) is not None
     ]
     units = [entry for entry in fitting if all(UNIT.fullmatch(cell) for cell in entry[2] if cell)]
     named = [entry for entry in fitting if entry not in units]
@@ -115,7 +119,9 @@ def find_sweeps(names: Sequence[str]) -> list[int]:
     """Return the positions of ordinates that share a stem and differ in a number ("sweep 1", "sweep 2")."""
     groups: dict[str, list[int]] = {}
     for at, name in enumerate(names):
-        match = SWEEP.fullmatch(name.strip())
+        match = SWEEP.fullmatch(name.strip()[:80])
+        if PLACE.search(name):  # "spot 1", "spot 2" are not the same thing twice
+            continue
         if match and role_of(name) == "ordinate" and not name.startswith("column "):
             groups.setdefault(simplify(match["stem"]), []).append(at)
         elif role_of(name) == "ordinate":  # "Counts", "Counts.1": what spreadsheets make of equal names

@@ -18,12 +18,13 @@ DENIED = re.compile(
     r"(?:derivative|differentiat\w+|differential)\s*[:=]\s*(?:no|off|none|false|0)\b",
     re.IGNORECASE,
 )
-EN = re.compile(r"\bE\s?[*\u00b7\u00d7x.]?\s?N\s?\(\s?E\s?\)|\bEN\b", re.IGNORECASE)
-N = re.compile(r"(?<![*\u00b7\u00d7.\w])\s?\bN\s?\(\s?E\s?\)", re.IGNORECASE)
+EN = re.compile(r"\bd?\s?\(?\s?E\s?[*\u00b7\u00d7x.]?\s?N\s?\(\s?E\s?\)|\bd?\s?\(?EN\b", re.IGNORECASE)
+N = re.compile(r"\bd?N\s?\(\s?E\s?\)", re.IGNORECASE)
 RATE = re.compile(r"/\s?s\b|\bcps\b|per\s+sec|\brate\b|norm|\ba\.?\s?u\b|arb", re.IGNORECASE)
 COUNTS = re.compile(r"\bcounts?\b|\bcts\b|\bpulses\b", re.IGNORECASE)
 
 PAIR = re.compile(r"(?P<key>[^:=]{2,40}?)\s*[:=]\s*(?P<value>\S.*)")
+MOST_REMARKS = 200
 KEYS = {
     "sample": re.compile(r"^(?:sample|specimen)(?:\s?(?:id|name|identifier))?$", re.IGNORECASE),
     "location": re.compile(r"^(?:location|position|spot|area|point)$", re.IGNORECASE),
@@ -42,6 +43,7 @@ def read_header(texts: Sequence[str]) -> Header:
     """Fill the header from lines such as "sample: steel" or "beam energy = 5 keV"; all lines are comments."""
     fields: dict[str, str] = {}
     beam_kev: float | None = None
+    texts = texts[:MOST_REMARKS]
     for text in texts:
         match = PAIR.fullmatch(text.strip(" ,;\t"))
         if not match:
@@ -98,7 +100,8 @@ def guess_kind(name: str, names: Sequence[str], texts: Sequence[str]) -> Kind:
 def guess_ordinate(name: str, texts: Sequence[str]) -> Ordinate:
     """Say whether the column, or else the header, calls the ordinate N(E) or E N(E)."""
     for text in (name, " ".join(texts)):
-        en, n = bool(EN.search(text)), bool(N.search(text))
+        rest, found = EN.subn("", text)
+        en, n = found > 0, bool(N.search(rest))
         if en != n:
             return "en" if en else "n"
     return "auto"

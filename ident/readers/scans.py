@@ -167,7 +167,11 @@ def sum_repeats(scans: Sequence[Scan]) -> list[Scan]:
 
 def same_energies(one: Scan, other: Scan) -> bool:
     """Tell whether two ascending scans were taken at the same energies, within a hundredth of a step."""
-    if len(one) != len(other) or len(one) < 2:
+    if (
+        len(one) != len(other)
+        or len(one) < 2
+        or abs(one.energy_ev[0] - other.energy_ev[0]) > one.energy_ev[1] - one.energy_ev[0]
+    ):
         return False
     tolerance = 0.01 * float(np.median(np.diff(one.energy_ev)))
     return bool(np.all(np.abs(one.energy_ev - other.energy_ev) <= tolerance))

@@ -115,7 +115,7 @@ def _sort_line(number: int, text: str, dialect: Dialect) -> _Line:
     sort: Sort = "doubtful"
     if starts_with_word(cells):
         sort = "doubtful" if numbers else "text"
-    elif numbers >= 2:
+    elif numbers >= 2 and (values[0] is not None or 2 * numbers >= len(cells)):  # prose has numbers in it too
         sort = "row"
     return _Line(sort=sort, number=number, text=text, cells=cells, values=values)
 

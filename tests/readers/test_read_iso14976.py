@@ -118,7 +118,8 @@ def test_what_is_not_specified_is_none(tmp_path: Path) -> None:
     ("date", "expected"),
     [((2021, 3, 4, 10, 20, 30, -5), "2021-03-04T10:20:30-05:00"),
      ((2021, 3, 4, 10, 20, 30, "1E37"), "2021-03-04T10:20:30"),
-     ((2021, 13, 4, 10, 20, 30, 0), None), ((-1, -1, -1, -1, -1, -1, 0), None)],
+     ((2021, 13, 4, 10, 20, 30, 0), None),
+     ((-1, -1, -1, -1, -1, -1, 0), None)],
 )  # fmt: skip
 def test_time_of_recording(tmp_path: Path, date: tuple[Any, ...], expected: str | None) -> None:
     (spectrum,) = read(tmp_path, WriterFile([region(date=date)]))

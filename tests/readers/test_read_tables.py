@@ -312,6 +312,26 @@ def test_beam_energy(tmp_path: Path, line: str, kev: float | None) -> None:
     assert header.beam_kev == kev
 
 
+@pytest.mark.parametrize(
+    ("name", "expected"),
+    [("N(E)", "n"), ("dN(E)/dE", "n"), ("E * N(E)", "en"), ("EN(E)", "en"), ("E\u00b7N(E)", "en"), ("d(EN(E))/dE", "en"),
+     ("Counts", "auto")],
+)  # fmt: skip
+def test_ordinate_is_told_by_its_name(tmp_path: Path, name: str, expected: str) -> None:
+    text = f"Energy (eV);{name}\n" + rows(ENERGY, COUNTS, separator=";")
+    assert read_spectrum(write(tmp_path, text)).ordinate == expected
+
+
+def test_spots_are_no_sweeps(tmp_path: Path) -> None:
+    path = write(tmp_path, "Energy (eV),Spot 1,Spot 2\n" + rows(ENERGY, COUNTS, COUNTS, separator=","))
+    assert "sweeps" not in read_spectrum(path).warnings[0]
+
+
+def test_long_lines_do_not_take_long(tmp_path: Path) -> None:
+    """A header line of a megabyte is passed over; searching it for names would take hours."""
+    assert_is_curve(read_spectrum(write(tmp_path, "x" + "(" * 1_000_000 + "\n" + rows(ENERGY, COUNTS))))
+
+
 def test_unknown_setting() -> None:
     with pytest.raises(SettingError, match="auto, direct, derivative"):
         read_spectra("-", kind="second", stream=io.BytesIO(b""))  # type: ignore[arg-type]
