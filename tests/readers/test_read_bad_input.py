@@ -33,7 +33,7 @@ CASES = {
     "only blanks": (" \n\t\n", "is empty", None),
     "byte-order mark only": (b"\xef\xbb\xbf", "is empty", None),
     "prose": ("To whom it may concern:\nno numbers here.\n", "no table of numbers", 1),
-    "prose with numbers": ("of 100 parts 3 or 4 failed\n| it took 5 days, and 6 more for 7 of them |\n" * 15, "no table", 1),
+    "prose with numbers": ("of 100 parts 3 or 4 failed\n| it took 5 days and 6 more for 7 |\n" * 15, "no table", 1),
     "one column": ("\n".join(str(value) for value in curve(ENERGY)), "only one column of numbers", 1),
     "NaN ordinate": (with_line(7, "103.0 NaN"), "'NaN' in column 2 is not a finite number", 7),
     "NaN energy": (with_line(7, "nan 2000"), "'nan' in column 1 is not a finite number", 7),

@@ -314,8 +314,8 @@ def test_beam_energy(tmp_path: Path, line: str, kev: float | None) -> None:
 
 @pytest.mark.parametrize(
     ("name", "expected"),
-    [("N(E)", "n"), ("dN(E)/dE", "n"), ("E * N(E)", "en"), ("EN(E)", "en"), ("E\u00b7N(E)", "en"), ("d(EN(E))/dE", "en"),
-     ("Counts", "auto")],
+    [("N(E)", "n"), ("dN(E)/dE", "n"), ("E * N(E)", "en"), ("EN(E)", "en"), ("E\u00b7N(E)", "en"),
+     ("d(EN(E))/dE", "en"), ("Counts", "auto")],
 )  # fmt: skip
 def test_ordinate_is_told_by_its_name(tmp_path: Path, name: str, expected: str) -> None:
     text = f"Energy (eV);{name}\n" + rows(ENERGY, COUNTS, separator=";")
