@@ -1,0 +1,163 @@
+"""The minima of a differential spectrum: where, how deep, how sure, before any element is named."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+
+import numpy as np
+
+from ..errors import InputError
+from ..signal import Differential, differentiate, settle_kind
+from ..signal.widths import FWHM_PER_SIGMA, usual_sigma_ev
+from ..spectrum import FloatArray, Spectrum
+from .pursuit import Feature, filter_field, pursue
+from .refine import refine, rendered
+from .shapes import ASYMMETRY
+
+THRESHOLD = 4.5  # noise widths
+FEWEST_POINTS = 20
+
+__all__ = ["Analysis", "Artefact", "DepthNoise", "Minimum", "analyse"]
+
+
+@dataclass(frozen=True, kw_only=True)
+class Minimum:
+    """One minimum of the differential spectrum."""
+
+    energy_ev: float
+    sigma_ev: float  # standard deviation of the energy
+    depth: float  # below the local level, ordinate per eV; always positive
+    peak_to_peak: float  # from the positive lobe below to the minimum
+    width_ev: float  # full width at half maximum of the direct line behind it
+    significance: float  # depth over the noise of that depth
+    window: int  # which window it was found in, from 0
+
+
+@dataclass(frozen=True, kw_only=True)
+class Artefact:
+    """Something in the data that is no line, and what it is."""
+
+    energy_ev: float
+    what: str
+
+
+@dataclass(frozen=True, kw_only=True, eq=False)
+class DepthNoise:
+    """Noise of the depth of an ordinary line, over one window."""
+
+    energy_ev: FloatArray
+    noise: FloatArray
+
+
+@dataclass(frozen=True, kw_only=True, eq=False)
+class Analysis:
+    """A spectrum after its minima were found."""
+
+    spectrum: Spectrum
+    minima: tuple[Minimum, ...]  # rising in energy
+    artefacts: tuple[Artefact, ...]
+    warnings: tuple[str, ...]
+    differentials: tuple[Differential, ...]
+    depth_noise: tuple[DepthNoise, ...]
+
+
+def analyse(spectrum: Spectrum, *, resolution: float | None = None) -> Analysis:
+    """Find the minima of a spectrum of one or more windows.
+
+    Parameters
+    ----------
+    spectrum : Spectrum
+        Direct or differential; told apart when its kind is "auto".
+    resolution : float, optional
+        Relative resolution of the analyser (0.005 for 0.5 %), when known.
+
+    Raises
+    ------
+    InputError
+        When no window has at least 20 points, or all of them are constant.
+    """
+    settled, notes = settle_kind(spectrum)
+    windows = [w for w in settled.windows if w.energy_ev.size >= FEWEST_POINTS and np.ptp(w.intensity) > 0]
+    if not windows:
+        raise InputError(
+            "no window has 20 points or more that are not all equal",
+            source=spectrum.name,
+            remedy="a scan of 20 points or more, over 30 eV at least, can be searched",
+        )
+    settled = replace(settled, windows=tuple(windows))
+    minima: list[Minimum] = []
+    artefacts: list[Artefact] = []
+    differentials, noises = [], []
+    for number, window in enumerate(settled.windows):
+        differential = differentiate(window, derivative=settled.kind == "derivative", resolution=resolution)
+        found, noise = _search(differential, number, resolution)
+        minima.extend(found)
+        noises.append(noise)
+        differentials.append(differential)
+        artefacts.extend(_spike_notes(differential))
+    return Analysis(
+        spectrum=settled,
+        minima=tuple(sorted(minima, key=lambda m: m.energy_ev)),
+        artefacts=tuple(artefacts),
+        warnings=spectrum.warnings + notes,
+        differentials=tuple(differentials),
+        depth_noise=tuple(noises),
+    )
+
+
+def _search(
+    differential: Differential, number: int, resolution: float | None
+) -> tuple[list[Minimum], DepthNoise]:
+    """Strongest first, refine, then once more on what is left over."""
+    derivative = differential.derivative
+    field = filter_field(differential, derivative, resolution)
+    features = pursue(differential, derivative, field, threshold=THRESHOLD)
+    refined = refine(differential, derivative, features)
+    kept = tuple(feature for feature, _ in refined)
+    rest = derivative - rendered(differential.energy_ev, kept)
+    second = filter_field(differential, rest, resolution)
+    more = pursue(differential, rest, second, threshold=THRESHOLD + 1.0, known=kept)
+    if more:
+        refined = refine(differential, derivative, kept + more)
+    usual = usual_sigma_ev(differential.energy_ev, resolution)
+    noise = _noise_at_width(second.noise, second.bank.sigmas_ev, usual)
+    minima = [_minimum(f, s, second.noise, second.bank.sigmas_ev, differential, number) for f, s in refined]
+    return [m for m in minima if m.significance >= THRESHOLD], DepthNoise(energy_ev=differential.energy_ev, noise=noise)
+
+
+def _noise_at_width(noise: FloatArray, sigmas_ev: FloatArray, wanted_ev: FloatArray) -> FloatArray:
+    """Noise (w, n) at the width wanted in each channel (n,), interpolated in ln width."""
+    if sigmas_ev.size == 1:
+        return noise[0]
+    place = np.interp(np.log(wanted_ev), np.log(sigmas_ev), np.arange(sigmas_ev.size))
+    low = np.minimum(place.astype(int), sigmas_ev.size - 2)
+    part = place - low
+    index = np.arange(noise.shape[1])
+    return noise[low, index] ** (1 - part) * noise[low + 1, index] ** part
+
+
+def _minimum(
+    feature: Feature, spread_ev: float, noise: FloatArray, sigmas_ev: FloatArray, differential: Differential, number: int
+) -> Minimum:
+    energy = differential.energy_ev
+    at = int(np.clip(np.searchsorted(energy, feature.energy_ev), 0, energy.size - 1))
+    local = float(_noise_at_width(noise[:, at : at + 1], sigmas_ev, np.array([feature.sigma_ev]))[0])
+    return Minimum(
+        energy_ev=feature.energy_ev,
+        sigma_ev=float(np.hypot(spread_ev, 0.05 * feature.sigma_ev)),
+        depth=feature.depth,
+        peak_to_peak=feature.depth * (1.0 + 1.0 / ASYMMETRY),
+        width_ev=feature.sigma_ev * FWHM_PER_SIGMA,
+        significance=feature.depth / local,
+        window=number,
+    )
+
+
+def _spike_notes(differential: Differential) -> list[Artefact]:
+    notes = []
+    for spike in differential.spikes:
+        energy = float(np.mean(differential.energy_ev[spike.index : spike.index + spike.channels]))
+        width = "one channel" if spike.channels == 1 else f"{spike.channels} channels"
+        what = f"spike of {width}" if spike.up or differential.recorded else f"dead point of {width}"
+        notes.append(Artefact(energy_ev=energy, what=what))
+    return notes

@@ -1,0 +1,163 @@
+"""Find minima strongest first: several widths at once, the width settled by local least squares."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from ..signal.differential import Differential
+from ..signal.widths import narrowest_sigma_ev, widest_sigma_ev
+from ..spectrum import FloatArray
+from .shapes import ASYMMETRY, Bank, filter_bank
+
+PARABOLA_BELOW_EV = 160.0
+EDGE_EV = 8.0
+SHAPE_TOLERANCE = 0.07  # part of a strong line's depth that its unknown shape may leave beside it
+MOST = 110
+
+
+@dataclass(frozen=True, kw_only=True)
+class Feature:
+    """A minimum as first found: energy, depth and width, before refinement."""
+
+    energy_ev: float
+    depth: float
+    sigma_ev: float
+
+
+@dataclass(frozen=True, kw_only=True, eq=False)
+class Field:
+    """Filter outputs over one window: depth and noise of that depth for every width and channel, (w, n)."""
+
+    bank: Bank
+    depth: FloatArray
+    noise: FloatArray
+    allowed: FloatArray  # (w, n) bool: widths a line may have there
+
+
+def filter_field(differential: Differential, derivative: FloatArray, resolution: float | None) -> Field:
+    """Run the bank over a window; below 160 eV with filters that a steep background does not fool."""
+    energy, step = differential.energy_ev, differential.step_ev
+    fields = []
+    for parabola in (True, False):
+        bank = filter_bank(round(step, 4), energy.size, parabola)
+        depth = np.stack([_correlate(derivative, f) for f in bank.filters])
+        gain = np.array([differential.filter_gain(f[::-1]) for f in bank.filters])
+        fields.append((bank, depth, gain))
+    (_, low_depth, low_gain), (bank, depth, gain) = fields
+    low = energy < PARABOLA_BELOW_EV
+    depth = np.where(low, low_depth, depth)
+    noise = np.where(low, low_gain[:, None], gain[:, None]) * differential.sigma
+    return Field(bank=bank, depth=depth, noise=noise, allowed=_allowed(differential, bank, resolution))
+
+
+def _correlate(values: FloatArray, weights: FloatArray) -> FloatArray:
+    """Correlation with reflected-and-inverted ends, which carry a slope on without inventing a line."""
+    half = weights.size // 2
+    if values.size <= half + 1:
+        padded = np.pad(values, half, mode="edge")
+    else:
+        padded = np.pad(values, half, mode="reflect", reflect_type="odd")
+    return np.convolve(padded, weights[::-1], mode="valid")
+
+
+def _allowed(differential: Differential, bank: Bank, resolution: float | None) -> FloatArray:
+    energy = differential.energy_ev
+    smear = 0.7 * differential.step_ev
+    low = np.hypot(0.8 * narrowest_sigma_ev(energy, resolution), 0.3 * smear)
+    high = np.hypot(widest_sigma_ev(energy, resolution), smear)
+    sigma = bank.sigmas_ev[:, None]
+    allowed = (sigma >= low) & (sigma <= high)
+    allowed[int(np.argmin(np.abs(np.log(bank.sigmas_ev / float(np.median(low))))))] |= ~np.any(allowed, axis=0)
+    edge = min(EDGE_EV, 0.12 * float(energy[-1] - energy[0]))
+    allowed &= (energy <= energy[-1] - edge) & (energy >= energy[0] + 0.5 * edge)
+    return allowed
+
+
+def pursue(
+    differential: Differential,
+    derivative: FloatArray,
+    field: Field,
+    *,
+    threshold: float,
+    known: tuple[Feature, ...] = (),
+) -> tuple[Feature, ...]:
+    """Take minima one after another, strongest first, each time removing its shape from what is left."""
+    bank, energy = field.bank, differential.energy_ev
+    left = derivative.copy()
+    depth = field.depth.copy()
+    floor = _tolerance(energy, known)
+    found: list[Feature] = []
+    significance = np.where(field.allowed, depth / field.noise, 0.0)
+    for _ in range(MOST):
+        flat = int(np.argmax(significance))
+        width, at = divmod(flat, energy.size)
+        if significance[width, at] < threshold:
+            break
+        width, at = _settle_width(left, field, width, at)
+        amplitude = float(depth[width, at])
+        if amplitude < floor[at] or amplitude <= 0 or significance[width, at] < 0.7 * threshold:
+            near = slice(max(0, at - 1), at + 2)
+            significance[:, near] = 0.0
+            field.allowed[:, near] = False
+            continue
+        found.append(Feature(energy_ev=float(energy[at]), depth=amplitude, sigma_ev=float(bank.sigmas_ev[width])))
+        _remove(left, depth, bank, width, at, amplitude)
+        floor = np.maximum(floor, _tolerance(energy, (found[-1],)))
+        low, high = max(0, at - 2 * bank.half), min(energy.size, at + 2 * bank.half + 1)
+        part = slice(low, high)
+        significance[:, part] = np.where(field.allowed[:, part], depth[:, part] / field.noise[:, part], 0.0)
+    return tuple(found)
+
+
+def _settle_width(left: FloatArray, field: Field, width: int, at: int) -> tuple[int, int]:
+    """Width and channel that leave least of the local curve over, over one common stretch."""
+    bank = field.bank
+    step = bank.sigmas_ev[width] / _channels(bank, width)
+    low = max(0, at - int(np.ceil(2.6 * ASYMMETRY * bank.sigmas_ev[width] / step)))
+    high = min(left.size, at + int(np.ceil(2.2 * bank.sigmas_ev[width] / step)) + 1)
+    patch = left[low:high] - np.mean(left[low:high])
+    best, gained = (width, at), -np.inf
+    for shift in range(-2, 3):
+        centre = at + shift
+        if not 0 <= centre < left.size:
+            continue
+        start = low - centre + bank.half
+        if start < 0 or start + patch.size > bank.shapes.shape[1]:
+            continue
+        shapes = bank.shapes[:, start : start + patch.size]
+        shapes = shapes - shapes.mean(axis=1, keepdims=True)
+        product = shapes @ patch
+        gain = np.where(field.allowed[:, centre] & (product > 0), product**2 / np.sum(shapes**2, axis=1), -np.inf)
+        top = int(np.argmax(gain))
+        if gain[top] > gained:
+            best, gained = (top, centre), float(gain[top])
+    return best
+
+
+def _channels(bank: Bank, width: int) -> float:
+    """Channels that one sigma spans: from where the shape has its minimum to where it crosses zero."""
+    shape = bank.shapes[width]
+    zero = np.flatnonzero(shape[: bank.half] > 0)
+    return float(max(bank.half - zero[-1], 1)) if zero.size else 1.0
+
+
+def _remove(left: FloatArray, depth: FloatArray, bank: Bank, width: int, at: int, amplitude: float) -> None:
+    half, n = bank.half, left.size
+    low, high = max(0, at - half), min(n, at + half + 1)
+    left[low:high] -= amplitude * bank.shapes[width, low - at + half : high - at + half]
+    reach = 2 * half
+    low, high = max(0, at - reach), min(n, at + reach + 1)
+    depth[:, low:high] -= amplitude * bank.overlap[width, :, low - at + reach : high - at + reach]
+
+
+def _tolerance(energy: FloatArray, features: tuple[Feature, ...]) -> FloatArray:
+    """How deep a feature must be beside strong lines not to be taken for the rest of their shape."""
+    floor = np.zeros_like(energy)
+    for feature in features:
+        away = (energy - feature.energy_ev) / feature.sigma_ev
+        reach = np.where(away < 0, np.exp(-0.5 * (away / 4.5) ** 2), np.exp(-0.5 * (away / 3.5) ** 2))
+        inner = 0.35 * np.exp(-0.5 * (away / 1.1) ** 2)
+        floor = np.maximum(floor, feature.depth * np.maximum(SHAPE_TOLERANCE * reach, inner))
+    return floor

@@ -1,0 +1,100 @@
+"""Refine minima in groups by least squares: energies below the step, depths shared out, widths free."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from ..signal.differential import Differential
+from ..spectrum import FloatArray
+from .pursuit import Feature
+from .shapes import ASYMMETRY, line_shape
+
+LARGEST_GROUP = 7
+ROUNDS = 4
+WIDTH_FREEDOM = 0.25  # prior standard deviation of ln sigma about the width that the search chose
+
+
+def refine(
+    differential: Differential, derivative: FloatArray, features: tuple[Feature, ...]
+) -> tuple[tuple[Feature, float], ...]:
+    """Refine features of one window; give each with the standard deviation of its energy in eV."""
+    ordered = sorted(features, key=lambda feature: feature.energy_ev)
+    out: list[tuple[Feature, float]] = []
+    for group in _groups(ordered):
+        out.extend(_refine_group(differential, derivative, group))
+    return tuple(out)
+
+
+def _groups(features: list[Feature]) -> list[list[Feature]]:
+    groups: list[list[Feature]] = []
+    for feature in features:
+        if groups:
+            last = groups[-1][-1]
+            near = feature.energy_ev - last.energy_ev < 2.0 * last.sigma_ev + 2.6 * ASYMMETRY * feature.sigma_ev
+            if near and len(groups[-1]) < LARGEST_GROUP:
+                groups[-1].append(feature)
+                continue
+        groups.append([feature])
+    return groups
+
+
+def _refine_group(
+    differential: Differential, derivative: FloatArray, group: list[Feature]
+) -> list[tuple[Feature, float]]:
+    energy = differential.energy_ev
+    first, last = group[0], group[-1]
+    low = int(np.searchsorted(energy, first.energy_ev - 3.0 * ASYMMETRY * first.sigma_ev - 1.0))
+    high = int(np.searchsorted(energy, last.energy_ev + 2.6 * last.sigma_ev + 1.0))
+    x, y = energy[low:high], derivative[low:high]
+    count = len(group)
+    start = np.array([[f.energy_ev, np.log(f.sigma_ev)] for f in group]).T
+    position, width = start[0].copy(), start[1].copy()
+    depth = np.array([f.depth for f in group])
+    if x.size < 3 * count + 3:
+        return [(f, 0.5 * f.sigma_ev) for f in group]
+    scale = float(np.max(depth))
+    background = np.stack([np.ones_like(x), np.linspace(-1.0, 1.0, x.size)], axis=1)
+    noise = max(float(np.mean(differential.sigma[low:high])) * differential.filter_gain(np.ones(1)), 1e-300)
+    information = np.eye(3 * count + 2)
+    for _ in range(ROUNDS):
+        shapes, slopes, stretches = _jacobian(x, position, width)
+        design = np.concatenate([shapes, slopes * depth, stretches * depth, background * scale], axis=1)
+        misfit = y - shapes @ depth
+        rest = max(noise, float(np.std(misfit - background @ np.linalg.lstsq(background, misfit, rcond=None)[0])))
+        ridge = np.concatenate(
+            [np.full(count, 1e-9 / scale**2), np.exp(-2 * width), np.full(count, WIDTH_FREEDOM**-2), np.zeros(2)]
+        )
+        information = design.T @ design / rest**2 + np.diag(ridge)
+        pull = np.concatenate(
+            [np.zeros(count), (start[0] - position) * np.exp(-2 * width), (start[1] - width) / WIDTH_FREEDOM**2, [0, 0]]
+        )
+        step = np.linalg.solve(information + 1e-12 * np.eye(information.shape[0]), design.T @ misfit / rest**2 + pull)
+        depth = np.maximum(depth + step[:count], 0.02 * scale * (depth > 0))
+        position = position + np.clip(step[count : 2 * count], -1.5, 1.5)
+        width = width + np.clip(step[2 * count : 3 * count], -0.3, 0.3)
+    spread = np.sqrt(np.clip(np.diag(np.linalg.inv(information))[count : 2 * count], 1e-6, None))
+    return [
+        (Feature(energy_ev=float(p), depth=float(d), sigma_ev=float(np.exp(w))), float(s))
+        for p, d, w, s in zip(position, depth, width, spread, strict=True)
+    ]
+
+
+def _jacobian(x: FloatArray, position: FloatArray, width: FloatArray) -> tuple[FloatArray, FloatArray, FloatArray]:
+    """Shapes (n, f) and their derivatives with position and with ln sigma."""
+    sigma = np.exp(width)
+    offset = x[:, None] - position
+    shape = line_shape(offset, sigma)
+    h = 0.02
+    moved = line_shape(offset - h * sigma, sigma)
+    wider = line_shape(offset, sigma * (1.0 + h))
+    return shape, (moved - shape) / (h * sigma), (wider - shape) / h
+
+
+def rendered(energy_ev: FloatArray, features: tuple[Feature, ...]) -> FloatArray:
+    """The sum of the features' shapes on an energy axis (n,), in the units of their depths."""
+    total = np.zeros_like(energy_ev)
+    for feature in features:
+        low = np.searchsorted(energy_ev, feature.energy_ev - 7.0 * feature.sigma_ev)
+        high = np.searchsorted(energy_ev, feature.energy_ev + 4.0 * feature.sigma_ev)
+        total[low:high] += feature.depth * line_shape(energy_ev[low:high] - feature.energy_ev, feature.sigma_ev)
+    return total
