@@ -8,6 +8,7 @@ import numpy as np
 
 from ..errors import InputError
 from ..signal import Differential, differentiate, settle_kind
+from ..signal.baseline import slope_baseline
 from ..signal.widths import FWHM_PER_SIGMA, usual_sigma_ev
 from ..spectrum import FloatArray, Spectrum
 from .pursuit import Feature, filter_field, pursue
@@ -16,6 +17,7 @@ from .shapes import ASYMMETRY
 
 THRESHOLD = 4.5  # noise widths
 FEWEST_POINTS = 20
+SLOPE_TRUST = 0.01  # part of the background's slope that its model may leave behind
 
 __all__ = ["Analysis", "Artefact", "DepthNoise", "Minimum", "analyse"]
 
@@ -109,13 +111,16 @@ def _search(
     differential: Differential, number: int, resolution: float | None
 ) -> tuple[list[Minimum], DepthNoise]:
     """Strongest first, refine, then once more on what is left over."""
-    derivative = differential.derivative
-    field = filter_field(differential, derivative, resolution)
+    channel_noise = differential.sigma * differential.filter_gain(np.ones(1))
+    baseline = slope_baseline(differential.energy_ev, differential.derivative, channel_noise)
+    derivative = differential.derivative - baseline
+    trust = SLOPE_TRUST * np.abs(baseline)
+    field = filter_field(differential, derivative, resolution, trust)
     features = pursue(differential, derivative, field, threshold=THRESHOLD)
     refined = refine(differential, derivative, features)
     kept = tuple(feature for feature, _ in refined)
     rest = derivative - rendered(differential.energy_ev, kept)
-    second = filter_field(differential, rest, resolution)
+    second = filter_field(differential, rest, resolution, trust)
     more = pursue(differential, rest, second, threshold=THRESHOLD + 1.0, known=kept)
     if more:
         refined = refine(differential, derivative, kept + more)

@@ -31,12 +31,16 @@ class Field:
     """Filter outputs over one window: depth and noise of that depth for every width and channel, (w, n)."""
 
     bank: Bank
+    low_bank: Bank  # the same widths with the filters used below 160 eV
+    low_end: int  # first channel above 160 eV
     depth: FloatArray
     noise: FloatArray
     allowed: FloatArray  # (w, n) bool: widths a line may have there
 
 
-def filter_field(differential: Differential, derivative: FloatArray, resolution: float | None) -> Field:
+def filter_field(
+    differential: Differential, derivative: FloatArray, resolution: float | None, trust: FloatArray
+) -> Field:
     """Run the bank over a window; below 160 eV with filters that a steep background does not fool."""
     energy, step = differential.energy_ev, differential.step_ev
     fields = []
@@ -45,11 +49,18 @@ def filter_field(differential: Differential, derivative: FloatArray, resolution:
         depth = np.stack([_correlate(derivative, f) for f in bank.filters])
         gain = np.array([differential.filter_gain(f[::-1]) for f in bank.filters])
         fields.append((bank, depth, gain))
-    (_, low_depth, low_gain), (bank, depth, gain) = fields
+    (low_bank, low_depth, low_gain), (bank, depth, gain) = fields
     low = energy < PARABOLA_BELOW_EV
     depth = np.where(low, low_depth, depth)
-    noise = np.where(low, low_gain[:, None], gain[:, None]) * differential.sigma
-    return Field(bank=bank, depth=depth, noise=noise, allowed=_allowed(differential, bank, resolution))
+    noise = np.hypot(np.where(low, low_gain[:, None], gain[:, None]) * differential.sigma, trust)
+    return Field(
+        bank=bank,
+        low_bank=low_bank,
+        low_end=int(np.count_nonzero(low)),
+        depth=depth,
+        noise=noise,
+        allowed=_allowed(differential, bank, resolution),
+    )
 
 
 def _correlate(values: FloatArray, weights: FloatArray) -> FloatArray:
@@ -103,7 +114,7 @@ def pursue(
             field.allowed[:, near] = False
             continue
         found.append(Feature(energy_ev=float(energy[at]), depth=amplitude, sigma_ev=float(bank.sigmas_ev[width])))
-        _remove(left, depth, bank, width, at, amplitude)
+        _remove(left, depth, field, width, at, amplitude)
         floor = np.maximum(floor, _tolerance(energy, (found[-1],)))
         low, high = max(0, at - 2 * bank.half), min(energy.size, at + 2 * bank.half + 1)
         part = slice(low, high)
@@ -143,13 +154,17 @@ def _channels(bank: Bank, width: int) -> float:
     return float(max(bank.half - zero[-1], 1)) if zero.size else 1.0
 
 
-def _remove(left: FloatArray, depth: FloatArray, bank: Bank, width: int, at: int, amplitude: float) -> None:
-    half, n = bank.half, left.size
+def _remove(left: FloatArray, depth: FloatArray, field: Field, width: int, at: int, amplitude: float) -> None:
+    bank, n = field.bank, left.size
+    half = bank.half
     low, high = max(0, at - half), min(n, at + half + 1)
     left[low:high] -= amplitude * bank.shapes[width, low - at + half : high - at + half]
     reach = 2 * half
     low, high = max(0, at - reach), min(n, at + reach + 1)
-    depth[:, low:high] -= amplitude * bank.overlap[width, :, low - at + reach : high - at + reach]
+    border = int(np.clip(field.low_end, low, high))
+    for part, overlap in (((low, border), field.low_bank.overlap), ((border, high), bank.overlap)):
+        start, stop = part
+        depth[:, start:stop] -= amplitude * overlap[width, :, start - at + reach : stop - at + reach]
 
 
 def _tolerance(energy: FloatArray, features: tuple[Feature, ...]) -> FloatArray:
