@@ -153,7 +153,7 @@ def _minimum(
         depth=feature.depth,
         peak_to_peak=feature.depth * (1.0 + 1.0 / ASYMMETRY),
         width_ev=feature.sigma_ev * FWHM_PER_SIGMA,
-        significance=feature.depth / local,
+        significance=min(feature.depth / local, 1.3 * feature.significance),
         window=number,
     )
 

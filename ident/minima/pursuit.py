@@ -24,6 +24,7 @@ class Feature:
     energy_ev: float
     depth: float
     sigma_ev: float
+    significance: float = 0.0  # when it was taken
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)
@@ -82,7 +83,8 @@ def _allowed(differential: Differential, bank: Bank, resolution: float | None) -
     allowed = (sigma >= low) & (sigma <= high)
     allowed[int(np.argmin(np.abs(np.log(bank.sigmas_ev / float(np.median(low))))))] |= ~np.any(allowed, axis=0)
     edge = min(EDGE_EV, 0.12 * float(energy[-1] - energy[0]))
-    allowed &= (energy <= energy[-1] - edge) & (energy >= energy[0] + 0.5 * edge)
+    clear = np.minimum(2.2 * sigma, 0.25 * float(energy[-1] - energy[0]))
+    allowed &= (energy <= energy[-1] - np.maximum(edge, clear)) & (energy >= energy[0] + np.maximum(0.5 * edge, clear))
     return allowed
 
 
@@ -113,7 +115,14 @@ def pursue(
             significance[:, near] = 0.0
             field.allowed[:, near] = False
             continue
-        found.append(Feature(energy_ev=float(energy[at]), depth=amplitude, sigma_ev=float(bank.sigmas_ev[width])))
+        found.append(
+            Feature(
+                energy_ev=float(energy[at]),
+                depth=amplitude,
+                sigma_ev=float(bank.sigmas_ev[width]),
+                significance=float(significance[width, at]),
+            )
+        )
         _remove(left, depth, field, width, at, amplitude)
         floor = np.maximum(floor, _tolerance(energy, (found[-1],)))
         low, high = max(0, at - 2 * bank.half), min(energy.size, at + 2 * bank.half + 1)

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 
 from ..signal.differential import Differential
@@ -11,6 +13,7 @@ from .shapes import ASYMMETRY, line_shape
 
 LARGEST_GROUP = 7
 ROUNDS = 4
+DEPTH_FREEDOM = 0.5  # prior standard deviation of a depth, relative: crowded minima must not blow each other up
 WIDTH_FREEDOM = 0.25  # prior standard deviation of ln sigma about the width that the search chose
 
 
@@ -49,7 +52,8 @@ def _refine_group(
     count = len(group)
     start = np.array([[f.energy_ev, np.log(f.sigma_ev)] for f in group]).T
     position, width = start[0].copy(), start[1].copy()
-    depth = np.array([f.depth for f in group])
+    first_depth = np.array([f.depth for f in group])
+    depth = first_depth.copy()
     if x.size < 3 * count + 3:
         return [(f, 0.5 * f.sigma_ev) for f in group]
     scale = float(np.max(depth))
@@ -62,11 +66,11 @@ def _refine_group(
         misfit = y - shapes @ depth
         rest = max(noise, float(np.std(misfit - background @ np.linalg.lstsq(background, misfit, rcond=None)[0])))
         ridge = np.concatenate(
-            [np.full(count, 1e-9 / scale**2), np.exp(-2 * width), np.full(count, WIDTH_FREEDOM**-2), np.zeros(2)]
+            [(DEPTH_FREEDOM * first_depth) ** -2, np.exp(-2 * width), np.full(count, WIDTH_FREEDOM**-2), np.zeros(2)]
         )
         information = design.T @ design / rest**2 + np.diag(ridge)
         pull = np.concatenate(
-            [np.zeros(count), (start[0] - position) * np.exp(-2 * width), (start[1] - width) / WIDTH_FREEDOM**2, [0, 0]]
+            [(first_depth - depth) * (DEPTH_FREEDOM * first_depth) ** -2, (start[0] - position) * np.exp(-2 * width), (start[1] - width) / WIDTH_FREEDOM**2, [0, 0]]
         )
         step = np.linalg.solve(information + 1e-12 * np.eye(information.shape[0]), design.T @ misfit / rest**2 + pull)
         depth = np.maximum(depth + step[:count], 0.02 * scale * (depth > 0))
@@ -74,8 +78,8 @@ def _refine_group(
         width = width + np.clip(step[2 * count : 3 * count], -0.3, 0.3)
     spread = np.sqrt(np.clip(np.diag(np.linalg.inv(information))[count : 2 * count], 1e-6, None))
     return [
-        (Feature(energy_ev=float(p), depth=float(d), sigma_ev=float(np.exp(w))), float(s))
-        for p, d, w, s in zip(position, depth, width, spread, strict=True)
+        (replace(f, energy_ev=float(p), depth=float(d), sigma_ev=float(np.exp(w))), float(s))
+        for f, p, d, w, s in zip(group, position, depth, width, spread, strict=True)
     ]
 
 

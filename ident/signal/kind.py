@@ -58,4 +58,18 @@ def _upside_down(windows: tuple[Window, ...]) -> bool:
         wrong += float(np.sum(np.clip(-pair - size, 0, None) * np.clip(low - 0.5 * np.abs(high), 0, None)))
         right += float(np.sum(np.clip(-values, 0, None) ** 3))
         wrong += float(np.sum(np.clip(values, 0, None) ** 3))
-    return wrong > 1.5 * right
+    edge = _edge_slope(windows)
+    return edge > 0 if edge else wrong > 1.5 * right
+
+
+def _edge_slope(windows: tuple[Window, ...]) -> int:
+    """Sign of the differential at the foot of the secondary edge, where N(E) always falls; 0 when not scanned."""
+    energy, values = windows[0].energy_ev, windows[0].intensity
+    foot = (energy < 60.0) & (energy < energy[0] + 15.0)
+    rest = (energy > 90.0) & (energy < 250.0)
+    if np.count_nonzero(foot) < 6 or np.count_nonzero(rest) < 20:
+        return 0
+    level = float(np.median(values[rest]))
+    swing = 1.4826 * float(np.median(np.abs(values[rest] - level)))
+    rise = float(np.median(values[foot])) - level
+    return int(np.sign(rise)) if abs(rise) > 4.0 * swing else 0

@@ -17,7 +17,7 @@ from numpy.typing import NDArray
 from ..spectrum import FloatArray
 
 THIRD_DIFFERENCE = np.array([-1.0, 3.0, -3.0, 1.0])
-SPACINGS = (1, 2, 3, 4, 6)
+SPACINGS = (1, 2, 3, 4, 6, 9)
 NORMAL_MEDIAN = 0.6745  # median of |x| for a standard normal
 BLOCK = 32
 IndexArray = NDArray[np.int64]
@@ -147,6 +147,7 @@ def _correlation(values: FloatArray, sigma: FloatArray, *, derivative: bool) -> 
 @cache
 def _kernels(derivative: bool) -> tuple[tuple[FloatArray, FloatArray, float], ...]:
     raw = [np.ones(1), np.array([1.0, 2.0, 1.0]), np.ones(3), np.array([1.0, 4.0, 6.0, 4.0, 1.0]), np.ones(5)]
+    raw.extend(part ** np.arange(40.0) for part in (0.15, 0.25, 0.35, 0.45, 0.55, 0.65, 0.75, 0.85))  # time constant
     for half in range(2, 13):
         x = np.arange(-half, half + 1, dtype=float)
         raw.append(1.0 - x**2 * 5.0 / (3.0 * half**2 + 3.0 * half - 1.0))  # Savitzky-Golay, smoothing, parabola
