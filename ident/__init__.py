@@ -1,0 +1,62 @@
+"""Name the elements on a surface from its Auger electron spectrum, with probabilities and reasons.
+
+>>> from ident import identify, read_spectrum
+>>> answer = identify(read_spectrum("part.csv"))  # doctest: +SKIP
+>>> answer.to_frame()  # doctest: +SKIP
+
+Names are loaded when they are first used, so that a question costs only what it needs.
+"""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING, Any
+
+if TYPE_CHECKING:
+    from .errors import IdentError
+    from .identify import Identification, identify
+    from .lookup import candidates_at, element_card
+    from .matching.settings import Settings
+    from .readers import read_spectra, read_spectrum
+    from .spectrum import Spectrum
+
+__version__ = "0.1.0"
+
+__all__ = [
+    "IdentError",
+    "Identification",
+    "Settings",
+    "Spectrum",
+    "__version__",
+    "candidates_at",
+    "element_card",
+    "identify",
+    "read_spectra",
+    "read_spectrum",
+]
+
+_HOMES = {
+    "IdentError": "errors",
+    "Identification": "identify",
+    "Settings": "matching.settings",
+    "Spectrum": "spectrum",
+    "candidates_at": "lookup",
+    "element_card": "lookup",
+    "identify": "identify",
+    "read_spectra": "readers",
+    "read_spectrum": "readers",
+}
+
+
+def __getattr__(name: str) -> Any:
+    home = _HOMES.get(name)
+    if home is None:
+        raise AttributeError(f"module 'ident' has no attribute {name!r}")
+    from importlib import import_module
+
+    value = getattr(import_module(f"{__name__}.{home}"), name)
+    globals()[name] = value
+    return value
+
+
+def __dir__() -> list[str]:
+    return sorted([*globals(), *_HOMES])

@@ -1,0 +1,64 @@
+"""What the analyst tells the matcher beside the spectrum."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+
+from ..errors import SettingError
+from ..names import symbol_from_name
+
+BEAM_KEV = (0.1, 50.0)  # what electron guns for this job give
+RESOLUTION = (1e-5, 0.05)
+RESOLUTION_EV = (0.01, 20.0)
+NO_AUGER_LINE = ("H", "He")
+
+
+@dataclass(frozen=True, kw_only=True)
+class Settings:
+    """Settings of one identification, checked.
+
+    Raises
+    ------
+    SettingError
+        When a number is outside what can be, or the names contradict each other.
+    UnknownNameError
+        When a name in `expect` or `rule_out` is no element.
+    """
+
+    beam_kev: float | None = None  # primary energy; the header's, or unknown, when None
+    insulator: bool = False  # the axis may be off by tens of eV
+    commonness: bool = True  # use the prior of how often each element is met on surfaces
+    expect: tuple[str, ...] = ()  # symbols that are likelier than usual
+    rule_out: tuple[str, ...] = ()  # symbols that cannot be there
+    resolution: float | None = None  # relative, 0.005 for 0.5 %
+    resolution_ev: float | None = None  # absolute, eV
+
+    def __post_init__(self) -> None:
+        _check("beam_kev", self.beam_kev, BEAM_KEV, "keV")
+        _check("resolution", self.resolution, RESOLUTION, "(0.005 for 0.5 %)")
+        _check("resolution_ev", self.resolution_ev, RESOLUTION_EV, "eV")
+        if self.resolution is not None and self.resolution_ev is not None:
+            raise SettingError("a resolution is either relative or in eV, not both; give one of them")
+        object.__setattr__(self, "expect", _symbols("expect", self.expect))
+        object.__setattr__(self, "rule_out", _symbols("rule_out", self.rule_out))
+        both = sorted(set(self.expect) & set(self.rule_out))
+        if both:
+            raise SettingError(f"{', '.join(both)} cannot be expected and ruled out at once; take it out of one list")
+        never = [symbol for symbol in self.expect if symbol in NO_AUGER_LINE]
+        if never:
+            raise SettingError(f"{never[0]} has too few electrons for an Auger transition; it cannot be expected")
+
+
+def _check(name: str, value: float | None, limits: tuple[float, float], unit: str) -> None:
+    if value is None:
+        return
+    low, high = limits
+    if not (math.isfinite(value) and low <= value <= high):
+        raise SettingError(f"{name} {value:g} is out of the question; it lies between {low:g} and {high:g} {unit}")
+
+
+def _symbols(setting: str, names: tuple[str, ...]) -> tuple[str, ...]:
+    if isinstance(names, str):
+        raise SettingError(f"{setting} is a sequence of names, such as ('C', 'oxygen'), not one text")
+    return tuple(dict.fromkeys(symbol_from_name(name) for name in names))
