@@ -1,0 +1,11 @@
+"""Evidence to words: every reason has a code, a side and a sentence with numbers in it.
+
+The rules are in `rules`; each is a small class whose name is the code and whose docstring is the claim.
+"""
+
+from __future__ import annotations
+
+from .reason import Reason, Rule, Side, Subject
+from .rules import RULES, explain
+
+__all__ = ["RULES", "Reason", "Rule", "Side", "Subject", "explain"]

@@ -1,0 +1,157 @@
+"""Rules on the element as a whole: chemistry, commonness, rivals, how much it rests on."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from .reason import Rule, Side, Subject, Weighed
+from .words import joined, times
+
+LARGE_SHIFT_EV = 5.0
+RARE_LOG_ODDS = -4.6  # one surface in a hundred
+SURE = 0.95
+
+
+class ShiftFitsState(Rule):
+    """The lines are shifted as they are in a known chemical state."""
+
+    side: Side = "for"
+
+    def says(self, subject: Subject) -> Iterator[Weighed]:
+        state = subject.element.state
+        if state is not None:
+            over = f", rather than {state.next_name}" if state.next_name else ""
+            yield (
+                state.log_odds,
+                f"its lines are shifted by {subject.element.shift_ev:+.1f} eV; {state.name} shifts them by "
+                f"{state.shift_ev:+.1f} eV{over}",
+            )
+
+
+class ShiftLarge(Rule):
+    """The lines must be shifted far, and no tabulated state does that."""
+
+    side: Side = "against"
+
+    def says(self, subject: Subject) -> Iterator[Weighed]:
+        element = subject.element
+        if element.state is None and abs(element.shift_ev) >= LARGE_SHIFT_EV:
+            yield (
+                0.3 * abs(element.shift_ev),
+                f"needs a chemical shift of {element.shift_ev:+.1f} eV, and no state in the tables gives that",
+            )
+
+
+class CommonOnSurfaces(Rule):
+    """The element is on nearly every surface that has seen air."""
+
+    side: Side = "for"
+
+    def says(self, subject: Subject) -> Iterator[Weighed]:
+        if subject.element.common:
+            yield max(0.1, subject.element.prior_log_odds), "found on nearly every surface that has seen air"
+
+
+class RareOnSurfaces(Rule):
+    """The element is seldom met, so that it takes more to believe it."""
+
+    side: Side = "against"
+
+    def says(self, subject: Subject) -> Iterator[Weighed]:
+        odds = subject.element.prior_log_odds
+        if odds < RARE_LOG_ODDS:
+            yield 0.3 * abs(odds), "seldom met on technical surfaces, so it takes more evidence than most"
+
+
+class OneLowLine(Rule):
+    """The element rests on one line below 110 eV, where nearly every heavy element has one."""
+
+    side: Side = "against"
+
+    def says(self, subject: Subject) -> Iterator[Weighed]:
+        if subject.element.single_low_line and subject.met:
+            found = subject.met[0].found_ev or subject.met[0].expected_ev
+            yield 2.0, f"rests on one line at {found:.0f} eV alone; below 110 eV many elements have one"
+
+
+class RestsOnOneLine(Rule):
+    """One line alone speaks for the element."""
+
+    side: Side = "against"
+
+    def says(self, subject: Subject) -> Iterator[Weighed]:
+        if len(subject.met) == 1 and not subject.element.single_low_line and len(subject.element.lines) > 1:
+            yield 0.8, f"one line alone speaks for it ({subject.met[0].transition})"
+
+
+class RivalLessLikely(Rule):
+    """Another element could stand at one of the minima, but fits worse."""
+
+    side: Side = "for"
+
+    def says(self, subject: Subject) -> Iterator[Weighed]:
+        for rival in subject.element.rivals:
+            if rival.probability < subject.element.probability:
+                lacks = _lacks(rival.missing)
+                why = f", but it needs {lacks}" if lacks else f", but it is less likely ({rival.probability:.2f})"
+                yield 0.6, f"{rival.element} {rival.transition} could stand at {rival.at_ev:.1f} eV{why}"
+
+
+class RivalLikelier(Rule):
+    """Another element explains one of the minima better."""
+
+    side: Side = "against"
+
+    def says(self, subject: Subject) -> Iterator[Weighed]:
+        for rival in subject.element.rivals:
+            if rival.probability >= subject.element.probability and subject.element.probability < SURE:
+                yield (
+                    1.5,
+                    f"{rival.element} {rival.transition} explains {rival.at_ev:.1f} eV as well or better "
+                    f"(probability {rival.probability:.2f})",
+                )
+
+
+class OnlyCandidate(Rule):
+    """No other element in the tables explains the strongest of these minima as well."""
+
+    side: Side = "for"
+
+    def says(self, subject: Subject) -> Iterator[Weighed]:
+        own = subject.own
+        if own and not subject.element.rivals and subject.element.probability >= 0.5 and own[0].found_ev is not None:
+            yield 0.5, f"no other element explains the minimum at {own[0].found_ev:.1f} eV as well"
+
+
+class CannotBeSeparated(Rule):
+    """This scan cannot tell the element from another one."""
+
+    side: Side = "untested"
+
+    def says(self, subject: Subject) -> Iterator[Weighed]:
+        symbol = subject.element.element
+        for pair in subject.evidence.inseparable:
+            if symbol in pair.elements:
+                others = joined([element for element in pair.elements if element != symbol], last="or")
+                yield 1.2, f"at {pair.at_ev:.1f} eV this scan cannot tell it from {others}"
+
+
+def _lacks(missing: tuple[tuple[str, float, float], ...]) -> str:
+    return joined(
+        [f"{energy:.0f} eV ({transition}), not seen at {times(strength)} times the noise"
+         for transition, energy, strength in missing[:1]]
+    )
+
+
+WHOLE_RULES: tuple[type[Rule], ...] = (
+    ShiftFitsState,
+    ShiftLarge,
+    CommonOnSurfaces,
+    RareOnSurfaces,
+    OneLowLine,
+    RestsOnOneLine,
+    RivalLessLikely,
+    RivalLikelier,
+    OnlyCandidate,
+    CannotBeSeparated,
+)
