@@ -7,16 +7,19 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from ..errors import InputError
-from ..signal import Differential, differentiate, settle_kind
+from ..signal import Differential, differentiate, noise_kernels, settle_kind
 from ..signal.baseline import slope_baseline
 from ..signal.widths import FWHM_PER_SIGMA, usual_sigma_ev
 from ..spectrum import FloatArray, Spectrum
 from .pursuit import Feature, filter_field, pursue
-from .refine import refine, rendered
+from .refine import prune, refine, rendered
 from .shapes import ASYMMETRY
 
 THRESHOLD = 4.5  # noise widths
 FEWEST_POINTS = 20
+# Minima are sought in rounds, each down to this part of the most significant one left, and refined in between, so
+# that what a strong line leaves over is not taken for weak ones.
+TIERS = (0.2, 0.06, 0.0)
 SLOPE_TRUST = 0.01  # part of the background's slope that its model may leave behind
 
 __all__ = ["Analysis", "Artefact", "DepthNoise", "Minimum", "analyse"]
@@ -90,8 +93,11 @@ def analyse(spectrum: Spectrum, *, resolution: float | None = None) -> Analysis:
     minima: list[Minimum] = []
     artefacts: list[Artefact] = []
     differentials, noises = [], []
+    derivative = settled.kind == "derivative"
+    kernels = noise_kernels(settled.windows, derivative=derivative) if len(windows) > 1 else {}
     for number, window in enumerate(settled.windows):
-        differential = differentiate(window, derivative=settled.kind == "derivative", resolution=resolution)
+        kernel = kernels.get(round(window.step_ev, 2))
+        differential = differentiate(window, derivative=derivative, resolution=resolution, kernel=kernel)
         found, noise = _search(differential, number, resolution)
         minima.extend(found)
         noises.append(noise)
@@ -107,27 +113,43 @@ def analyse(spectrum: Spectrum, *, resolution: float | None = None) -> Analysis:
     )
 
 
-def _search(
-    differential: Differential, number: int, resolution: float | None
-) -> tuple[list[Minimum], DepthNoise]:
-    """Strongest first, refine, then once more on what is left over."""
+def _search(differential: Differential, number: int, resolution: float | None) -> tuple[list[Minimum], DepthNoise]:
+    """Strongest first, refine, then again on what is left over."""
     channel_noise = differential.sigma * differential.filter_gain(np.ones(1))
     baseline = slope_baseline(differential.energy_ev, differential.derivative, channel_noise)
     derivative = differential.derivative - baseline
     trust = SLOPE_TRUST * np.abs(baseline)
-    field = filter_field(differential, derivative, resolution, trust)
-    features = pursue(differential, derivative, field, threshold=THRESHOLD)
-    refined = refine(differential, derivative, features)
-    kept = tuple(feature for feature, _ in refined)
-    rest = derivative - rendered(differential.energy_ev, kept)
-    second = filter_field(differential, rest, resolution, trust)
-    more = pursue(differential, rest, second, threshold=THRESHOLD + 1.0, known=kept)
-    if more:
-        refined = refine(differential, derivative, kept + more)
+    refined: tuple[tuple[Feature, float], ...] = ()
+    rest = derivative
+    for part in TIERS:
+        field = filter_field(differential, rest, resolution, trust)
+        noise = field.noise
+        kept = tuple(feature for feature, _ in refined)
+        more = pursue(differential, rest, field, threshold=THRESHOLD, part=part, known=kept)
+        if more:
+            refined = _refined(differential, derivative, kept + more, refined)
+            rest = derivative - rendered(differential.energy_ev, tuple(feature for feature, _ in refined))
     usual = usual_sigma_ev(differential.energy_ev, resolution)
-    noise = _noise_at_width(second.noise, second.bank.sigmas_ev, usual)
-    minima = [_minimum(f, s, second.noise, second.bank.sigmas_ev, differential, number) for f, s in refined]
-    return [m for m in minima if m.significance >= THRESHOLD], DepthNoise(energy_ev=differential.energy_ev, noise=noise)
+    usual_noise = _noise_at_width(noise, field.bank.sigmas_ev, usual)
+    minima = [_minimum(f, s, noise, field.bank.sigmas_ev, differential, number) for f, s in refined]
+    depth_noise = DepthNoise(energy_ev=differential.energy_ev, noise=usual_noise)
+    return [m for m in minima if m.significance >= THRESHOLD], depth_noise
+
+
+def _refined(
+    differential: Differential,
+    derivative: FloatArray,
+    features: tuple[Feature, ...],
+    done: tuple[tuple[Feature, float], ...],
+) -> tuple[tuple[Feature, float], ...]:
+    """Refine, merge what came together, and refine once more where something was merged."""
+    refined = refine(differential, derivative, features, done)
+    pruned = prune(refined)
+    if len(pruned) == len(refined):
+        return refined
+    known = set(refined)
+    settled = tuple(pair for pair in pruned if pair in known)
+    return refine(differential, derivative, tuple(feature for feature, _ in pruned), settled)
 
 
 def _noise_at_width(noise: FloatArray, sigmas_ev: FloatArray, wanted_ev: FloatArray) -> FloatArray:
@@ -142,7 +164,12 @@ def _noise_at_width(noise: FloatArray, sigmas_ev: FloatArray, wanted_ev: FloatAr
 
 
 def _minimum(
-    feature: Feature, spread_ev: float, noise: FloatArray, sigmas_ev: FloatArray, differential: Differential, number: int
+    feature: Feature,
+    spread_ev: float,
+    noise: FloatArray,
+    sigmas_ev: FloatArray,
+    differential: Differential,
+    number: int,
 ) -> Minimum:
     energy = differential.energy_ev
     at = int(np.clip(np.searchsorted(energy, feature.energy_ev), 0, energy.size - 1))

@@ -44,22 +44,23 @@ def filter_field(
 ) -> Field:
     """Run the bank over a window; below 160 eV with filters that a steep background does not fool."""
     energy, step = differential.energy_ev, differential.step_ev
-    fields = []
-    for parabola in (True, False):
-        bank = filter_bank(round(step, 4), energy.size, parabola)
-        depth = np.stack([_correlate(derivative, f) for f in bank.filters])
-        gain = np.array([differential.filter_gain(f[::-1]) for f in bank.filters])
-        fields.append((bank, depth, gain))
-    (low_bank, low_depth, low_gain), (bank, depth, gain) = fields
-    low = energy < PARABOLA_BELOW_EV
-    depth = np.where(low, low_depth, depth)
-    noise = np.hypot(np.where(low, low_gain[:, None], gain[:, None]) * differential.sigma, trust)
+    bank = filter_bank(round(step, 4), energy.size, False)
+    low_bank = filter_bank(round(step, 4), energy.size, True)
+    low_end = int(np.count_nonzero(energy < PARABOLA_BELOW_EV))
+    depth = np.stack([_correlate(derivative, f) for f in bank.filters])
+    gain = np.array([differential.filter_gain(f[::-1]) for f in bank.filters])
+    noise = gain[:, None] * differential.sigma
+    if low_end:
+        part = derivative[: min(energy.size, low_end + bank.half)]
+        depth[:, :low_end] = np.stack([_correlate(part, f)[:low_end] for f in low_bank.filters])
+        low_gain = np.array([differential.filter_gain(f[::-1]) for f in low_bank.filters])
+        noise[:, :low_end] = low_gain[:, None] * differential.sigma[:low_end]
     return Field(
         bank=bank,
         low_bank=low_bank,
-        low_end=int(np.count_nonzero(low)),
+        low_end=low_end,
         depth=depth,
-        noise=noise,
+        noise=np.hypot(noise, trust),
         allowed=_allowed(differential, bank, resolution),
     )
 
@@ -94,15 +95,20 @@ def pursue(
     field: Field,
     *,
     threshold: float,
+    part: float = 0.0,
     known: tuple[Feature, ...] = (),
 ) -> tuple[Feature, ...]:
-    """Take minima one after another, strongest first, each time removing its shape from what is left."""
+    """Take minima one after another, strongest first, each time removing its shape from what is left.
+
+    Stops at `threshold` noise widths, or at this `part` of the most significant one if that is more.
+    """
     bank, energy = field.bank, differential.energy_ev
     left = derivative.copy()
     depth = field.depth.copy()
-    floor = _tolerance(energy, known)
+    floor = tolerance(energy, known)
     found: list[Feature] = []
     significance = np.where(field.allowed, depth / field.noise, 0.0)
+    threshold = max(threshold, part * float(np.max(significance)))
     for _ in range(MOST):
         flat = int(np.argmax(significance))
         width, at = divmod(flat, energy.size)
@@ -124,7 +130,7 @@ def pursue(
             )
         )
         _remove(left, depth, field, width, at, amplitude)
-        floor = np.maximum(floor, _tolerance(energy, (found[-1],)))
+        floor = np.maximum(floor, tolerance(energy, (found[-1],)))
         low, high = max(0, at - 2 * bank.half), min(energy.size, at + 2 * bank.half + 1)
         part = slice(low, high)
         significance[:, part] = np.where(field.allowed[:, part], depth[:, part] / field.noise[:, part], 0.0)
@@ -176,7 +182,7 @@ def _remove(left: FloatArray, depth: FloatArray, field: Field, width: int, at: i
         depth[:, start:stop] -= amplitude * overlap[width, :, start - at + reach : stop - at + reach]
 
 
-def _tolerance(energy: FloatArray, features: tuple[Feature, ...]) -> FloatArray:
+def tolerance(energy: FloatArray, features: tuple[Feature, ...]) -> FloatArray:
     """How deep a feature must be beside strong lines not to be taken for the rest of their shape."""
     floor = np.zeros_like(energy)
     for feature in features:

@@ -8,7 +8,7 @@ import numpy as np
 
 from ..signal.differential import Differential
 from ..spectrum import FloatArray
-from .pursuit import Feature
+from .pursuit import Feature, tolerance
 from .shapes import ASYMMETRY, line_shape
 
 LARGEST_GROUP = 7
@@ -18,14 +18,45 @@ WIDTH_FREEDOM = 0.25  # prior standard deviation of ln sigma about the width tha
 
 
 def refine(
-    differential: Differential, derivative: FloatArray, features: tuple[Feature, ...]
+    differential: Differential,
+    derivative: FloatArray,
+    features: tuple[Feature, ...],
+    done: tuple[tuple[Feature, float], ...] = (),
 ) -> tuple[tuple[Feature, float], ...]:
-    """Refine features of one window; give each with the standard deviation of its energy in eV."""
+    """Refine features of one window; give each with the standard deviation of its energy in eV.
+
+    Groups all of whose features are `done` are taken over as they are.
+    """
+    spread = dict(done)
     ordered = sorted(features, key=lambda feature: feature.energy_ev)
     out: list[tuple[Feature, float]] = []
     for group in _groups(ordered):
-        out.extend(_refine_group(differential, derivative, group))
+        if all(feature in spread for feature in group):
+            out.extend((feature, spread[feature]) for feature in group)
+        else:
+            out.extend(_refine_group(differential, derivative, group))
     return tuple(out)
+
+
+def prune(refined: tuple[tuple[Feature, float], ...]) -> tuple[tuple[Feature, float], ...]:
+    """Merge features that refinement moved onto each other; drop those a stronger one's shape can account for."""
+    kept: list[tuple[Feature, float]] = []
+    for feature, sigma in sorted(refined, key=lambda pair: -pair[0].depth):
+        twin = next((k for k, (other, _) in enumerate(kept) if _one_line(feature, other)), None)
+        if twin is not None:
+            other = kept[twin][0]
+            merged = replace(other, depth=other.depth + 0.8 * feature.depth, significance=other.significance + 1e-9)
+            kept[twin] = (merged, kept[twin][1])
+            continue
+        at = np.array([feature.energy_ev])
+        if feature.depth > float(tolerance(at, tuple(other for other, _ in kept))[0]):
+            kept.append((feature, sigma))
+    return tuple(kept)
+
+
+def _one_line(first: Feature, second: Feature) -> bool:
+    """Whether two minima stand closer than any two lines could be told apart."""
+    return abs(first.energy_ev - second.energy_ev) < 0.75 * max(first.sigma_ev, second.sigma_ev)
 
 
 def _groups(features: list[Feature]) -> list[list[Feature]]:
@@ -70,12 +101,17 @@ def _refine_group(
         )
         information = design.T @ design / rest**2 + np.diag(ridge)
         pull = np.concatenate(
-            [(first_depth - depth) * (DEPTH_FREEDOM * first_depth) ** -2, (start[0] - position) * np.exp(-2 * width), (start[1] - width) / WIDTH_FREEDOM**2, [0, 0]]
+            [
+                (first_depth - depth) * (DEPTH_FREEDOM * first_depth) ** -2,
+                (start[0] - position) * np.exp(-2 * width),
+                (start[1] - width) / WIDTH_FREEDOM**2,
+                [0, 0],
+            ]
         )
         step = np.linalg.solve(information + 1e-12 * np.eye(information.shape[0]), design.T @ misfit / rest**2 + pull)
         depth = np.maximum(depth + step[:count], 0.02 * scale * (depth > 0))
         position = position + np.clip(step[count : 2 * count], -1.5, 1.5)
-        width = width + np.clip(step[2 * count : 3 * count], -0.3, 0.3)
+        width = np.clip(width + np.clip(step[2 * count : 3 * count], -0.3, 0.3), start[1] - 0.7, start[1] + 0.7)
     spread = np.sqrt(np.clip(np.diag(np.linalg.inv(information))[count : 2 * count], 1e-6, None))
     return [
         (replace(f, energy_ev=float(p), depth=float(d), sigma_ev=float(np.exp(w))), float(s))

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from .differential import Differential, differentiate
+from .differential import Differential, differentiate, noise_kernels
 from .kind import settle_kind
 from .noise import NoiseModel, estimate_noise
 from .spikes import Spike, find_spikes
@@ -14,5 +14,6 @@ __all__ = [
     "differentiate",
     "estimate_noise",
     "find_spikes",
+    "noise_kernels",
     "settle_kind",
 ]

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from ..spectrum import FloatArray, Window
-from .noise import NoiseModel, estimate_noise
+from .noise import NoiseKernel, NoiseModel, estimate_noise, shared_kernel
 from .spikes import Spike, find_spikes
 from .widths import usual_sigma_ev
 
@@ -30,7 +30,18 @@ class Differential:
         return float(np.sqrt(np.sum(np.convolve(weights, self.kernel) ** 2)))
 
 
-def differentiate(window: Window, *, derivative: bool, resolution: float | None = None) -> Differential:
+def noise_kernels(windows: tuple[Window, ...], *, derivative: bool) -> dict[float, NoiseKernel]:
+    """Kernel of the noise for every step among the windows, the step rounded to 0.01 eV."""
+    grouped: dict[float, list[FloatArray]] = {}
+    for window in windows:
+        energy, values, _ = _even(window)
+        grouped.setdefault(round(float(energy[1] - energy[0]), 2), []).append(values)
+    return {step: shared_kernel(values, derivative=derivative) for step, values in grouped.items()}
+
+
+def differentiate(
+    window: Window, *, derivative: bool, resolution: float | None = None, kernel: NoiseKernel | None = None
+) -> Differential:
     """Differentiate a window once; recorded differential data are only put on an even grid.
 
     The Savitzky-Golay slope (parabola) spans about one narrow line, and never fewer than three channels, so
@@ -38,10 +49,10 @@ def differentiate(window: Window, *, derivative: bool, resolution: float | None 
     """
     energy, values, resampled = _even(window)
     step = float(energy[1] - energy[0])
-    noise = estimate_noise(energy, values, derivative=derivative)
+    noise = estimate_noise(energy, values, derivative=derivative, kernel=kernel)
     spikes, values = find_spikes(energy, values, noise.sigma, resolution)
     if spikes:
-        noise = estimate_noise(energy, values, derivative=derivative)
+        noise = estimate_noise(energy, values, derivative=derivative, kernel=kernel)
     if derivative:
         return Differential(
             energy_ev=energy, derivative=values, sigma=noise.sigma, kernel=noise.kernel,

@@ -7,6 +7,7 @@ noise is measured by third differences over several spacings and the kernel that
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cache
 from itertools import combinations
@@ -20,6 +21,8 @@ THIRD_DIFFERENCE = np.array([-1.0, 3.0, -3.0, 1.0])
 SPACINGS = (1, 2, 3, 4, 6, 9)
 NORMAL_MEDIAN = 0.6745  # median of |x| for a standard normal
 BLOCK = 32
+SHORT = 150  # channels; a window this short may be mostly line
+NORMAL_THIRD = 0.3853  # 30 % quantile of |x| for a standard normal
 IndexArray = NDArray[np.int64]
 
 
@@ -35,21 +38,42 @@ class NoiseModel:
         return float(np.sqrt(np.sum(np.convolve(weights, self.kernel) ** 2)))
 
 
-def estimate_noise(energy_ev: FloatArray, intensity: FloatArray, *, derivative: bool) -> NoiseModel:
-    """Estimate noise and its correlation for one evenly stepped window; (n,) eV and (n,) ordinates."""
+@dataclass(frozen=True, kw_only=True, eq=False)
+class NoiseKernel:
+    """What white noise went through: weights whose squares sum to one, and channel noise over what third
+    differences of neighbouring channels suggest.
+    """
+
+    weights: FloatArray
+    factor: float
+
+
+WHITE = NoiseKernel(weights=np.ones(1), factor=1.0)
+
+
+def estimate_noise(
+    energy_ev: FloatArray, intensity: FloatArray, *, derivative: bool, kernel: NoiseKernel | None = None
+) -> NoiseModel:
+    """Estimate noise and its correlation for one evenly stepped window; (n,) eV and (n,) ordinates.
+
+    The kernel is found from this window when none is given.
+    """
     shape = _variance_columns(energy_ev, intensity, derivative=derivative)
     first = np.abs(_third_difference(intensity, 1))
     block = min(BLOCK, max(8, first.size // 4))
     count = first.size // block
     blocked = first[: count * block].reshape(count, block)
-    variance = (np.median(blocked, axis=1) / NORMAL_MEDIAN) ** 2 / 20.0
+    # the quiet part of each block: a line's slopes must not count as noise
+    part, normal = (0.5, NORMAL_MEDIAN) if first.size > SHORT else (0.3, NORMAL_THIRD)
+    variance = (np.quantile(blocked, part, axis=1) / normal) ** 2 / 20.0
     centre = np.arange(count) * block + block // 2 + 1
     weights = _fit_variance(variance, [column[centre] for column in shape])
     model = np.sum([w * column for w, column in zip(weights, shape, strict=True)], axis=0)
     model = np.maximum(model, 1e-4 * float(np.max(model)) + _smallest(intensity))
-    kernel, factor = _correlation(intensity, np.sqrt(model), derivative=derivative)
+    if kernel is None:
+        kernel = shared_kernel([intensity / np.sqrt(model)], derivative=derivative)
     excess = _local_excess(variance, model[centre], intensity.size, centre)
-    return NoiseModel(sigma=np.sqrt(model * excess) * factor, kernel=kernel)
+    return NoiseModel(sigma=np.sqrt(model * excess) * kernel.factor, kernel=kernel.weights)
 
 
 def _smallest(intensity: FloatArray) -> float:
@@ -82,15 +106,26 @@ def _fit_variance(variance: FloatArray, columns: list[FloatArray]) -> FloatArray
     best = np.zeros(len(columns))
     best[0] = float(np.median(variance))
     floor = 1e-12 * float(np.max(variance)) + 1e-300
+    scale = np.maximum(_smoothed(variance), floor)
     for _ in range(3):
-        scale = np.maximum(variance, floor)
         best = _best_subset(variance, columns, keep, scale)
         fitted = np.sum([w * c for w, c in zip(best, columns, strict=True)], axis=0)
         ratio = variance / np.maximum(fitted, floor)
+        # weights come from the fit and not from the blocks: dividing by scattered values would pull it down
+        scale = np.maximum(fitted, floor)
+        best = best * float(np.median(ratio[keep]))
         keep = (ratio < 2.5 * max(1.0, float(np.median(ratio)))) & (ratio > 0.1)
         if np.count_nonzero(keep) < 3:
             break
     return best
+
+
+def _smoothed(variance: FloatArray) -> FloatArray:
+    """Medians of five blocks, so that a block on a line does not count."""
+    if variance.size < 5:
+        return np.full(variance.size, float(np.median(variance)))
+    padded = np.pad(variance, 2, mode="edge")
+    return np.median(np.stack([padded[k : k + variance.size] for k in range(5)]), axis=0)
 
 
 def _best_subset(variance: FloatArray, columns: list[FloatArray], keep: np.ndarray, scale: FloatArray) -> FloatArray:
@@ -123,25 +158,39 @@ def _local_excess(variance: FloatArray, model: FloatArray, size: int, centre: In
     return np.where(excess > 1.6, excess, 1.0)
 
 
-def _correlation(values: FloatArray, sigma: FloatArray, *, derivative: bool) -> tuple[FloatArray, float]:
-    """Kernel of the noise, and channel noise over what third differences of spacing one suggest."""
-    normal = values / sigma
-    seen = []
-    for spacing in SPACINGS:
-        if 3 * spacing + 12 > normal.size:
-            break
-        seen.append(float(np.median(np.abs(_third_difference(normal, spacing)))) / NORMAL_MEDIAN / np.sqrt(20.0))
-    if len(seen) < 3 or seen[0] <= 0 or seen[1] < 1.25 * seen[0]:
-        return np.ones(1), 1.0
-    observed = np.log(np.array(seen) / seen[0])
-    best, lowest = (np.ones(1), 1.0), np.inf
+def shared_kernel(windows: Sequence[FloatArray], *, derivative: bool) -> NoiseKernel:
+    """Kernel that the noise of windows (n,) of one step went through, each window evenly stepped.
+
+    Lines add to what third differences over wide spacings show, and never take from it, so of several windows
+    the one that shows least counts, and in each the quiet quarter of its channels.
+    """
+    ratios = [ratio for ratio in (_spreads(values) for values in windows) if ratio is not None]
+    if not ratios:
+        return WHITE
+    most = max(ratio.size for ratio in ratios)
+    observed = np.min(np.stack([np.pad(r, (0, most - r.size), constant_values=np.inf) for r in ratios]), axis=0)
+    if observed[1] < np.log(1.25):
+        return WHITE
+    best, lowest = WHITE, np.inf
     for kernel, spread, factor in _kernels(derivative):
         gap = observed - spread[: observed.size]
-        # Lines add to what wide spacings show, so an excess is forgiven more than a lack.
         misfit = float(np.sum(np.where(gap < 0, 3.0 * gap**2, np.minimum(gap**2, 0.5))))
         if misfit < lowest:
-            best, lowest = (kernel, factor), misfit
+            best, lowest = NoiseKernel(weights=kernel, factor=factor), misfit
     return best
+
+
+def _spreads(values: FloatArray) -> FloatArray | None:
+    """Ln of what third differences over each spacing show, relative to spacing one; None if too short."""
+    seen = []
+    for spacing in SPACINGS:
+        difference = np.abs(_third_difference(values, spacing))
+        if difference.size < 24:
+            break
+        seen.append(float(np.quantile(difference, 0.25)))
+    if len(seen) < 3 or min(seen) <= 0:
+        return None
+    return np.log(np.array(seen) / seen[0])
 
 
 @cache
