@@ -5,11 +5,14 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from ..signal.differential import Differential
 from ..signal.widths import narrowest_sigma_ev, widest_sigma_ev
 from ..spectrum import FloatArray
 from .shapes import ASYMMETRY, Bank, filter_bank
+
+BoolArray = NDArray[np.bool_]
 
 PARABOLA_BELOW_EV = 160.0
 EDGE_EV = 8.0
@@ -36,7 +39,7 @@ class Field:
     low_end: int  # first channel above 160 eV
     depth: FloatArray
     noise: FloatArray
-    allowed: FloatArray  # (w, n) bool: widths a line may have there
+    allowed: BoolArray  # (w, n) bool: widths a line may have there
 
 
 def filter_field(
@@ -75,7 +78,7 @@ def _correlate(values: FloatArray, weights: FloatArray) -> FloatArray:
     return np.convolve(padded, weights[::-1], mode="valid")
 
 
-def _allowed(differential: Differential, bank: Bank, resolution: float | None) -> FloatArray:
+def _allowed(differential: Differential, bank: Bank, resolution: float | None) -> BoolArray:
     energy = differential.energy_ev
     smear = 0.7 * differential.step_ev
     low = np.hypot(0.8 * narrowest_sigma_ev(energy, resolution), 0.3 * smear)
@@ -132,8 +135,8 @@ def pursue(
         _remove(left, depth, field, width, at, amplitude)
         floor = np.maximum(floor, tolerance(energy, (found[-1],)))
         low, high = max(0, at - 2 * bank.half), min(energy.size, at + 2 * bank.half + 1)
-        part = slice(low, high)
-        significance[:, part] = np.where(field.allowed[:, part], depth[:, part] / field.noise[:, part], 0.0)
+        near = slice(low, high)
+        significance[:, near] = np.where(field.allowed[:, near], depth[:, near] / field.noise[:, near], 0.0)
     return tuple(found)
 
 
