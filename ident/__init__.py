@@ -13,7 +13,7 @@ from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
     from .errors import IdentError
-    from .identify import Identification, identify
+    from .identification import Identification, identify
     from .lookup import candidates_at, element_card
     from .matching.settings import Settings
     from .readers import read_spectra, read_spectrum
@@ -36,12 +36,12 @@ __all__ = [
 
 _HOMES = {
     "IdentError": "errors",
-    "Identification": "identify",
+    "Identification": "identification",
     "Settings": "matching.settings",
     "Spectrum": "spectrum",
     "candidates_at": "lookup",
     "element_card": "lookup",
-    "identify": "identify",
+    "identify": "identification",
     "read_spectra": "readers",
     "read_spectrum": "readers",
 }

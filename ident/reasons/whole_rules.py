@@ -124,7 +124,7 @@ class OnlyCandidate(Rule):
 
 
 class CannotBeSeparated(Rule):
-    """This scan cannot tell the element from another one."""
+    """The scan cannot tell the element from another one."""
 
     side: Side = "untested"
 

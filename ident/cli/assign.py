@@ -1,0 +1,78 @@
+"""`ident assign`: which elements are here."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from typing import TYPE_CHECKING, Any
+
+import click
+
+from .options import KNOWING, READING, format_option, with_options
+
+if TYPE_CHECKING:
+    from ..identification import Identification
+    from ..matching.settings import Settings
+    from ..spectrum import Spectrum
+
+
+@click.command("assign")
+@click.argument("spectra", nargs=-1, required=True, metavar="SPECTRUM...")
+@format_option
+@with_options(READING)
+@with_options(KNOWING)
+def command(spectra: tuple[str, ...], form: str, **given: Any) -> int:
+    """Name the elements in each SPECTRUM, ranked, with probability and reasons.
+
+    SPECTRUM is a text table (energy and ordinate in columns) or an ISO 14976 file; - reads standard input.
+
+    Example: ident assign --rule-out Co survey.csv
+    """
+    from ..identification import identify
+    from .inputs import Reading, answer_each
+
+    settings = _settings(given)
+    reading = Reading(**{key: given[key] for key in ("kind", "ordinate", "column", "separate", "within", "quiet")})
+    if form == "csv":
+        _write_head()
+
+    def answer(spectrum: Spectrum) -> tuple[bool, Sequence[str]]:
+        found = identify(spectrum, settings)
+        click.echo(_rendered(found, form), nl=False)
+        return found.minima > 0, found.warnings
+
+    return answer_each(spectra, reading, answer)
+
+
+def _settings(given: dict[str, Any]) -> Settings:
+    from ..matching.settings import Settings
+
+    unit, number = given["resolution"] or (None, None)
+    return Settings(
+        beam_kev=given["beam"],
+        insulator=given["insulator"],
+        commonness=not given["no_commonness"],
+        expect=given["expect"],
+        rule_out=given["rule_out"],
+        resolution=number if unit == "relative" else None,
+        resolution_ev=number if unit == "ev" else None,
+    )
+
+
+def _write_head() -> None:
+    from ..report.csv_rows import ASSIGN_COLUMNS, render_rows
+
+    click.echo(render_rows([ASSIGN_COLUMNS]), nl=False)
+
+
+def _rendered(found: Identification, form: str) -> str:
+    if form == "json":
+        from ..report.json_lines import render_json
+
+        return render_json(found.to_dict())
+    if form == "csv":
+        from ..report.csv_rows import assign_rows, render_rows
+
+        return render_rows(assign_rows(found))
+    from ..report.text_assign import render_assign
+
+    return render_assign(found)

@@ -1,0 +1,42 @@
+"""`ident at`: what could explain a minimum at an energy."""
+
+from __future__ import annotations
+
+import click
+
+from ..lookup import Candidate, candidates_at
+from .options import format_option
+
+
+@click.command("at", context_settings={"ignore_unknown_options": True})
+@click.argument("energies", nargs=-1, required=True, type=float, metavar="ENERGY...")
+@click.option("--within", type=float, metavar="EV", help="Only lines at most this many eV away.")
+@format_option
+def command(energies: tuple[float, ...], within: float | None, form: str) -> int:
+    """Name the elements that could explain a minimum at each ENERGY, and what else must then be seen.
+
+    ENERGY is that of the derivative minimum in eV, on the handbook scale.
+
+    Example: ident at 651
+    """
+    found = [(energy, candidates_at(energy, within=within)) for energy in energies]
+    if form == "csv":
+        from ..report.csv_rows import AT_COLUMNS, at_rows, render_rows
+
+        rows = [row for energy, candidates in found for row in at_rows(energy, candidates)]
+        click.echo(render_rows([AT_COLUMNS, *rows]), nl=False)
+        return 0
+    for energy, candidates in found:
+        click.echo(_rendered(energy, candidates, form), nl=False)
+    return 0
+
+
+def _rendered(energy_ev: float, candidates: tuple[Candidate, ...], form: str) -> str:
+    if form == "json":
+        from ..lookup import at_answer
+        from ..report.json_lines import render_json
+
+        return render_json(at_answer(energy_ev, candidates))
+    from ..report.text_lookup import render_at
+
+    return render_at(energy_ev, candidates)

@@ -1,0 +1,46 @@
+"""`ident element`: the reference card of an element."""
+
+from __future__ import annotations
+
+import click
+
+from ..errors import UnknownNameError
+from ..lookup import ElementCard, card_answer, element_card
+from .options import format_option
+from .say import complain
+
+
+@click.command("element")
+@click.argument("names", nargs=-1, required=True, metavar="NAME...")
+@format_option
+def command(names: tuple[str, ...], form: str) -> int:
+    """Show the reference card of each element NAME: its lines, their rivals, the line that decides, sources.
+
+    NAME is a symbol or a name; small misspellings are forgiven.
+
+    Example: ident element titanium
+    """
+    cards, failed = [], False
+    for name in names:
+        try:
+            cards.append(element_card(name))
+        except UnknownNameError as unknown:
+            complain(str(unknown))
+            failed = True
+    if cards:
+        click.echo(_rendered(cards, form), nl=False)
+    return 1 if failed else 0
+
+
+def _rendered(cards: list[ElementCard], form: str) -> str:
+    if form == "json":
+        from ..report.json_lines import render_json
+
+        return "".join(render_json(card_answer(card)) for card in cards)
+    if form == "csv":
+        from ..report.csv_rows import ELEMENT_COLUMNS, element_rows, render_rows
+
+        return render_rows([ELEMENT_COLUMNS, *[row for card in cards for row in element_rows(card)]])
+    from ..report.text_lookup import render_card
+
+    return "".join(render_card(card) for card in cards)

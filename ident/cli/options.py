@@ -1,0 +1,105 @@
+"""The options that commands share, and how their words are read."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Callable, Iterable
+from typing import Any, TypeVar
+
+import click
+
+Function = TypeVar("Function", bound=Callable[..., Any])
+
+
+class ResolutionType(click.ParamType):
+    """A resolution: "0.5%" of the energy, or "1.2eV" throughout."""
+
+    name = "resolution"
+
+    def convert(self, value: Any, param: click.Parameter | None, ctx: click.Context | None) -> tuple[str, float]:
+        """Give what it is relative to ("relative" or "ev") and the number."""
+        if isinstance(value, tuple):
+            return value
+        found = re.fullmatch(r"\s*(\d+(?:[.,]\d*)?|[.,]\d+)\s*(%|ev)\s*", str(value), flags=re.IGNORECASE)
+        if not found:
+            self.fail(f"{value!r} is no resolution; write it as 0.5% or 1.2eV", param, ctx)
+        number = float(found[1].replace(",", "."))
+        return ("relative", number / 100.0) if found[2] == "%" else ("ev", number)
+
+
+class RangeType(click.ParamType):
+    """A range of energies, "LO:HI" in eV."""
+
+    name = "range"
+
+    def convert(self, value: Any, param: click.Parameter | None, ctx: click.Context | None) -> tuple[float, float]:
+        """Give both ends."""
+        if isinstance(value, tuple):
+            return value
+        try:
+            low, high = (float(part) for part in str(value).split(":"))
+        except ValueError:
+            self.fail(f"{value!r} is no range; write it as 100:1200, in eV", param, ctx)
+        if not 0 <= low < high < float("inf"):
+            self.fail(f"{value!r} does not run from a lower to a higher energy", param, ctx)
+        return low, high
+
+
+def _names(_: click.Context, __: click.Parameter, value: Iterable[str]) -> tuple[str, ...]:
+    """Read names given in several options, or with commas or blanks between."""
+    return tuple(name for text in value for name in re.split(r"[,;\s]+", text) if name)
+
+
+format_option = click.option(
+    "--format",
+    "form",
+    type=click.Choice(["text", "json", "csv"]),
+    default="text",
+    show_default=True,
+    help="How to answer; json is one object a line.",
+)
+
+READING = (
+    click.option(
+        "--kind",
+        type=click.Choice(["auto", "direct", "derivative"]),
+        default="auto",
+        show_default=True,
+        help="What was recorded; overrules what the file says.",
+    ),
+    click.option(
+        "--ordinate",
+        type=click.Choice(["auto", "n", "en"]),
+        default="auto",
+        show_default=True,
+        help="N(E) or E N(E).",
+    ),
+    click.option(
+        "--column", metavar="NAME", help='Which ordinate of several: its name, its number, or "sum" of all sweeps.'
+    ),
+    click.option("--separate", is_flag=True, help="Take blocks and windows of a file for spectra of their own."),
+    click.option("--within", type=RangeType(), metavar="LO:HI", help="Use this range of the energies only, in eV."),
+    click.option(
+        "--resolution", type=ResolutionType(), metavar="0.5%|1.2eV", help="Energy resolution of the analyser."
+    ),
+    click.option("--quiet", is_flag=True, help="No progress and no warnings on standard error."),
+)
+
+KNOWING = (
+    click.option("--beam", type=float, metavar="KEV", help="Primary energy in keV, when the file does not say it."),
+    click.option("--expect", multiple=True, callback=_names, metavar="NAMES", help="Elements likelier than usual."),
+    click.option("--rule-out", multiple=True, callback=_names, metavar="NAMES", help="Elements that cannot be there."),
+    click.option("--insulator", is_flag=True, help="The sample may charge: allow the axis tens of eV."),
+    click.option("--no-commonness", is_flag=True, help="Take every element for equally common."),
+)
+
+
+def with_options(options: Iterable[Callable[[Function], Function]]) -> Callable[[Function], Function]:
+    """Put options on a command, first one on top."""
+
+    def decorate(function: Function) -> Function:
+        for option in reversed(tuple(options)):
+            function = option(function)
+        return function
+
+    return decorate

@@ -1,0 +1,24 @@
+"""What goes to standard error: one line each, escaped."""
+
+from __future__ import annotations
+
+import sys
+
+import click
+
+from ..report.escape import printable
+
+
+def complain(text: str) -> None:
+    """Say an error on one line."""
+    click.echo(f"ident: {printable(' '.join(text.split()))}", err=True)
+
+
+def warn(text: str) -> None:
+    """Say a warning on one line."""
+    complain(f"warning: {text}")
+
+
+def on_terminal() -> bool:
+    """Tell whether a person watches both streams, and so has the warnings before his eyes already."""
+    return sys.stdout.isatty() and sys.stderr.isatty()

@@ -1,0 +1,50 @@
+"""`ident tables`: list, check and rebuild the open tables."""
+
+from __future__ import annotations
+
+import click
+
+from .options import format_option
+from .say import complain
+
+
+@click.command("tables")
+@click.option("--check", "what", flag_value="check", help="Rebuild the derived tables and compare with those here.")
+@click.option("--rebuild", "what", flag_value="rebuild", help="Rebuild the derived tables and write them.")
+@format_option
+def command(what: str | None, form: str) -> int:
+    """List the open tables; check them, or rebuild the derived ones from their inputs.
+
+    Example: ident tables --check
+    """
+    if what == "check":
+        return _check()
+    if what == "rebuild":
+        return _rebuild()
+    return _list(form)
+
+
+def _check() -> int:
+    from ..deriving import check_tables
+
+    differences = check_tables()
+    for difference in differences:
+        complain(difference)
+    if not differences:
+        click.echo("the tables are what their inputs give")
+    return 1 if differences else 0
+
+
+def _rebuild() -> int:
+    from ..deriving import rebuild_tables
+
+    rebuild_tables()
+    click.echo("the derived tables are rebuilt")
+    return 0
+
+
+def _list(form: str) -> int:
+    from .. import tables
+
+    click.echo("\n".join(str(item) for item in tables.list_tables()))
+    return 0

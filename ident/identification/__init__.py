@@ -1,0 +1,43 @@
+"""The front door: `identify(spectrum, ...) -> Identification`.
+
+The module is not called after its function, so that `ident.identify` is always the function.
+"""
+
+from __future__ import annotations
+
+from .answer import (
+    ArtefactNote,
+    Assignment,
+    Identification,
+    Inseparable,
+    Limit,
+    LineNote,
+    Rival,
+    Scale,
+    State,
+    Unexplained,
+    Untestable,
+    Verdict,
+    minima_answer,
+    verdict_of,
+)
+from .build import identify, relative_resolution
+
+__all__ = [
+    "ArtefactNote",
+    "Assignment",
+    "Identification",
+    "Inseparable",
+    "Limit",
+    "LineNote",
+    "Rival",
+    "Scale",
+    "State",
+    "Unexplained",
+    "Untestable",
+    "Verdict",
+    "identify",
+    "minima_answer",
+    "relative_resolution",
+    "verdict_of",
+]

@@ -1,0 +1,208 @@
+"""From a spectrum to an answer: analyse, weigh, explain, and put it together."""
+
+from __future__ import annotations
+
+from dataclasses import asdict, fields, replace
+from typing import TYPE_CHECKING, Any
+
+from ..errors import SettingError
+from ..matching.evidence import ElementEvidence, Evidence, InseparableEvidence, RivalEvidence, UntestableEvidence
+from ..matching.settings import Settings
+from ..reasons import explain
+from ..spectrum import Spectrum
+from .answer import (
+    ArtefactNote,
+    Assignment,
+    Identification,
+    Inseparable,
+    Limit,
+    LineNote,
+    Rival,
+    Scale,
+    State,
+    Unexplained,
+    Untestable,
+    verdict_of,
+)
+from .cautions import cautions_for
+
+if TYPE_CHECKING:
+    from ..minima import Analysis
+
+WIDE_SCAN = 2.0  # highest over lowest energy from which one relative resolution is a rough word
+
+
+def identify(spectrum: Spectrum, settings: Settings | None = None, **settings_given: Any) -> Identification:
+    """Name the elements that a spectrum shows.
+
+    Parameters
+    ----------
+    spectrum : Spectrum
+        Direct or differential, one or more windows; `Spectrum.from_arrays` makes one without a file.
+    settings : Settings, optional
+        What the analyst knows beside the spectrum.
+    **settings_given
+        The fields of `Settings` one by one instead, such as `insulator=True` or `rule_out=("Co",)`.
+
+    Returns
+    -------
+    Identification
+        Elements of probability 0.01 and more with reasons; `to_dict()` for JSON, `to_frame()` for a table.
+
+    Raises
+    ------
+    InputError
+        When the spectrum cannot be searched (too few points, constant).
+    SettingError
+        When a setting makes no sense.
+    """
+    from ..matching import weigh
+    from ..minima import analyse
+
+    chosen = _settle(settings, settings_given)
+    if chosen.beam_kev is None and spectrum.header.beam_kev is not None:
+        chosen = _with_beam(chosen, spectrum.header.beam_kev)
+    resolution, notes = relative_resolution(spectrum, chosen)
+    analysis = analyse(spectrum, resolution=resolution)
+    return assemble(analysis, weigh(analysis, chosen), chosen, notes)
+
+
+def relative_resolution(spectrum: Spectrum, settings: Settings) -> tuple[float | None, tuple[str, ...]]:
+    """Give the relative resolution and a warning where it stands for one in eV over a wide scan."""
+    if settings.resolution_ev is None:
+        return settings.resolution, ()
+    ranges = spectrum.ranges_ev
+    low, high = ranges[0][0], ranges[-1][1]
+    middle = 0.5 * (low + high)
+    if low > 0 and high / low < WIDE_SCAN:
+        return settings.resolution_ev / middle, ()
+    relative = settings.resolution_ev / middle
+    return relative, (f"the resolution of {settings.resolution_ev:g} eV is taken as {relative:.2%} throughout",)
+
+
+def assemble(
+    analysis: Analysis, evidence: Evidence, settings: Settings, notes: tuple[str, ...] = ()
+) -> Identification:
+    """Put an answer together from what was found and weighed."""
+    spectrum = analysis.spectrum
+    assignments = tuple(_assignment(element, evidence) for element in evidence.elements)
+    scale = Scale(
+        offset_ev=evidence.scale.offset_ev,
+        offset_sigma_ev=evidence.scale.offset_sigma_ev,
+        slope=evidence.scale.slope,
+        slope_sigma=evidence.scale.slope_sigma,
+        charging=evidence.scale.charging,
+    )
+    return Identification(
+        spectrum=spectrum.name,
+        sha256=spectrum.sha256,
+        edition=edition(),
+        settings=asdict(settings),
+        header=asdict(spectrum.header),
+        kind=spectrum.kind,
+        ranges_ev=spectrum.ranges_ev,
+        scale=scale,
+        minima=len(analysis.minima),
+        assignments=assignments,
+        inseparable=tuple(_inseparable(pair) for pair in evidence.inseparable),
+        unexplained=tuple(
+            Unexplained(energy_ev=u.energy_ev, significance=u.significance, candidates=u.candidates)
+            for u in evidence.unexplained
+        ),
+        limits=tuple(
+            Limit(element=limit.element, atomic_percent=limit.atomic_percent, line_ev=limit.line_ev)
+            for limit in evidence.limits
+        ),
+        untestable=_untestable(evidence),
+        artefacts=tuple(ArtefactNote(energy_ev=a.energy_ev, what=a.what) for a in analysis.artefacts),
+        cautions=cautions_for(assignments, scale),
+        warnings=(*analysis.warnings, *notes),
+    )
+
+
+def edition() -> str:
+    """Say which edition of program and tables made an answer."""
+    from .. import __version__, tables
+
+    return f"ident {__version__}, tables {tables.edition()}"
+
+
+def _settle(settings: Settings | None, given: dict[str, Any]) -> Settings:
+    known = {field.name for field in fields(Settings)}
+    strange = sorted(set(given) - known)
+    if strange:
+        raise SettingError(f"{strange[0]!r} is no setting; there are {', '.join(sorted(known))}")
+    for name in ("expect", "rule_out"):
+        if name in given and not isinstance(given[name], str):
+            given = {**given, name: tuple(given[name])}
+    return replace(settings, **given) if settings is not None else Settings(**given)
+
+
+def _with_beam(settings: Settings, beam_kev: float) -> Settings:
+    """Take the beam energy of the header, unless it cannot be one."""
+    try:
+        return replace(settings, beam_kev=beam_kev)
+    except SettingError:
+        return settings
+
+
+def _assignment(element: ElementEvidence, evidence: Evidence) -> Assignment:
+    return Assignment(
+        element=element.element,
+        z=element.z,
+        probability=element.probability,
+        verdict=verdict_of(element.probability),
+        lines=tuple(
+            LineNote(
+                transition=line.transition,
+                expected_ev=line.expected_ev,
+                sigma_ev=line.sigma_ev,
+                found_ev=line.found_ev,
+                share=line.share,
+                status=line.status,
+                relative_height=line.relative_height,
+            )
+            for line in element.lines
+        ),
+        state=State(name=element.state.name, shift_ev=element.state.shift_ev) if element.state else None,
+        reasons=explain(element, evidence),
+        rivals=tuple(_rival(rival) for rival in element.rivals),
+    )
+
+
+def _rival(rival: RivalEvidence) -> Rival:
+    text = f"{rival.element} {rival.transition}, {abs(rival.deviation_sd):.1f} sd away"
+    if rival.missing:
+        transition, energy_ev, _ = rival.missing[0]
+        text += f"; its line at {energy_ev:.0f} eV ({transition}) is not there"
+    return Rival(element=rival.element, at_ev=rival.at_ev, text=text)
+
+
+def _inseparable(pair: InseparableEvidence) -> Inseparable:
+    return Inseparable(elements=pair.elements, at_ev=pair.at_ev, settle=_settling(pair))
+
+
+def _settling(pair: InseparableEvidence) -> str:
+    if pair.settle_ev is None:
+        return "no Auger line in the tables decides; ask another technique, such as photoelectron spectroscopy"
+    line = f"{pair.settle_element} {pair.settle_transition} at {pair.settle_ev:.0f} eV"
+    if pair.in_range:
+        return f"scan {line} longer: it is in range, but too weak here to decide"
+    return f"scan {pair.settle_ev - 25:.0f} to {pair.settle_ev + 25:.0f} eV: {line} decides"
+
+
+def _untestable(evidence: Evidence) -> tuple[Untestable, ...]:
+    fixed = tuple(Untestable(element=symbol, why="too few electrons for an Auger transition") for symbol in ("H", "He"))
+    rest = (u for u in evidence.untestable if u.element not in ("H", "He"))
+    return fixed + tuple(Untestable(element=u.element, why=_why(u)) for u in rest)
+
+
+def _why(item: UntestableEvidence) -> str:
+    if item.cause == "no Auger line":
+        return "too few electrons for an Auger transition"
+    if item.cause == "no table line":
+        return "the tables hold no line of it between 20 and 3200 eV"
+    if item.cause == "coarse step":
+        return "the step of the scan is too coarse for its lines"
+    where = f", the strongest at {item.nearest_ev:.0f} eV" if item.nearest_ev is not None else ""
+    return f"its strong lines are outside the scan{where}"

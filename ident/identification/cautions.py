@@ -1,0 +1,47 @@
+"""What must be said along with some answers: hazards, and what Auger data cannot carry."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from .answer import Assignment, Scale
+
+CAUTION_FROM = 0.05  # a hazard is mentioned as soon as it is possible
+
+# Common practice, no source: what safety sheets of these elements and their compounds agree on.
+HAZARDS = {
+    "Be": "beryllium and its oxide are toxic as dust",
+    "As": "arsenic compounds are toxic",
+    "Cd": "cadmium compounds are toxic",
+    "Hg": "mercury is toxic and leaves vapour in the vacuum system",
+    "Tl": "thallium compounds are toxic, through the skin too",
+    "Pb": "lead compounds are toxic",
+    "Cr": "chromium may be there as chromate, which is toxic; the spectrum does not tell",
+    "Ba": "soluble barium compounds are toxic; the spectrum does not tell which it is",
+    "Th": "thorium is radioactive",
+    "U": "uranium is radioactive and toxic",
+}
+BEAM_SENSITIVE = ("F", "Cl", "Br", "I", "Na", "K")
+
+
+def cautions_for(assignments: Sequence[Assignment], scale: Scale) -> tuple[str, ...]:
+    """Give the cautions that apply to these assignments."""
+    said = [
+        f"{a.element}: {HAZARDS[a.element]}; follow local rules before touching the sample"
+        for a in assignments
+        if a.element in HAZARDS and a.probability >= CAUTION_FROM
+    ]
+    if any(a.state is not None and a.probability >= CAUTION_FROM for a in assignments):
+        said.append(
+            "Auger data alone do not give the oxidation state reliably; states named here are those whose shift fits "
+            "best, and photoelectron spectra or a reference sample should confirm them"
+        )
+    touchy = [a.element for a in assignments if a.element in BEAM_SENSITIVE and a.probability >= 0.5]
+    if touchy:
+        said.append(
+            f"{', '.join(touchy)}: the electron beam can drive it off or draw it in; compare a first quick scan with "
+            "a later one before taking its strength seriously"
+        )
+    if scale.charging == "yes":
+        said.append("the sample charges: energies are moved by several eV, and lines may be broadened or doubled")
+    return tuple(said)

@@ -1,0 +1,50 @@
+"""How text answers are laid out: headings, columns, wrapped paragraphs."""
+
+from __future__ import annotations
+
+import math
+import textwrap
+from collections.abc import Iterable, Sequence
+
+WIDTH = 100
+INDENT = "  "
+
+
+def heading(text: str) -> str:
+    """A heading with a rule under it."""
+    return f"{text}\n{'-' * min(len(text), WIDTH)}"
+
+
+def columns(head: Sequence[str], rows: Sequence[Sequence[str]], *, right: Iterable[int] = ()) -> list[str]:
+    """Lay cells out in columns as wide as needed; those of `right` are set to the right."""
+    flush = set(right)
+    table = [list(head), *[list(row) for row in rows]]
+    widths = [max(len(row[place]) for row in table) for place in range(len(head))]
+    out = []
+    for row in table:
+        cells = [
+            cell.rjust(width) if place in flush else cell.ljust(width)
+            for place, (cell, width) in enumerate(zip(row, widths, strict=True))
+        ]
+        out.append(INDENT + "   ".join(cells).rstrip())
+    return out
+
+
+def hanging(label: str, text: str, *, width: int = 10, indent: str = INDENT) -> str:
+    """A label, then text that wraps under itself."""
+    first = indent + label.ljust(width)
+    return textwrap.fill(
+        text,
+        WIDTH,
+        initial_indent=first,
+        subsequent_indent=" " * len(first),
+        break_long_words=False,
+        break_on_hyphens=False,
+    )
+
+
+def probability(value: float) -> str:
+    """Two decimals, never rounded up over a verdict's threshold; the ends are said as bounds."""
+    if value >= 0.995:
+        return "> 0.99"
+    return f"{math.floor(value * 100) / 100:.2f}"

@@ -1,0 +1,122 @@
+"""The answer of `ident assign` in plain text, meant to be read from top to bottom."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from typing import TYPE_CHECKING
+
+from .escape import printable
+from .layout import columns, hanging, heading, probability
+
+if TYPE_CHECKING:
+    from ..identification import Assignment, Identification, Untestable
+
+MOST_LINES = 3
+MOST_REASONS = 6
+MOST_UNEXPLAINED = 8
+
+
+def render_assign(answer: Identification) -> str:
+    """Write one answer, with an empty line after it."""
+    parts = [*_top(answer), "", *_table(answer), *_why(answer)]
+    notes = [*_axis(answer), *_doubts(answer), *_not_seen(answer), *_remarks(answer)]
+    return printable_lines([*parts, "", *notes]) + "\n\n"
+
+
+def printable_lines(parts: list[str]) -> str:
+    """Join parts; control characters inside a line are shown and not obeyed."""
+    return "\n".join(printable(line) for part in parts for line in part.split("\n"))
+
+
+def _top(answer: Identification) -> list[str]:
+    ranges = ", ".join(f"{low:.0f} to {high:.0f} eV" for low, high in answer.ranges_ev)
+    what = f"{answer.kind} spectrum, {ranges}, {answer.minima} minima above the noise"
+    sample = answer.header.get("sample")
+    lines = [heading(_one_line(answer.spectrum)), hanging("", what, width=0)]
+    if sample:
+        lines.append(hanging("", f"sample: {_one_line(sample)}", width=0))
+    return lines
+
+
+def _one_line(text: str) -> str:
+    return printable(text)
+
+
+def _table(answer: Identification) -> list[str]:
+    if not answer.assignments:
+        said = "Nothing stands above the noise." if not answer.minima else "No element is supported by these minima."
+        return ["  " + said]
+    rows = [(a.element, a.verdict, probability(a.probability), _deciding(a)) for a in answer.assignments]
+    return columns(("element", "verdict", "probability", "rests on (eV)"), rows, right=(2,))
+
+
+def _deciding(assignment: Assignment) -> str:
+    met = [line for line in assignment.lines if line.status == "met" and line.found_ev is not None]
+    told = [f"{line.transition} {line.found_ev:.0f}" for line in met[:MOST_LINES]]
+    more = [f"{len(met) - MOST_LINES} more"] if len(met) > MOST_LINES else []
+    return ", ".join([*told, *more])
+
+
+def _why(answer: Identification) -> Iterator[str]:
+    for assignment in answer.assignments:
+        yield ""
+        state = f", as {assignment.state.name}" if assignment.state else ""
+        yield f"{assignment.element}: {assignment.verdict}{state}"
+        side = ""
+        for reason in sorted(assignment.reasons[:MOST_REASONS], key=lambda r: _SIDES.index(r.side)):
+            yield hanging(reason.side if reason.side != side else "", reason.text)
+            side = reason.side
+
+
+_SIDES = ("for", "against", "untested")
+
+
+def _axis(answer: Identification) -> Iterator[str]:
+    scale = answer.scale
+    direction = "high" if scale.offset_ev >= 0 else "low"
+    yield hanging(
+        "axis",
+        f"reads {abs(scale.offset_ev):.1f} +- {scale.offset_sigma_ev:.1f} eV {direction} at 0 eV, slope "
+        f"{scale.slope:+.2%} +- {scale.slope_sigma:.2%}, against Fermi-referenced lines; charging: {scale.charging}",
+        width=14,
+        indent="",
+    )
+
+
+def _doubts(answer: Identification) -> Iterator[str]:
+    for pair in answer.inseparable:
+        names = " or ".join(pair.elements)
+        yield _note("cannot tell", f"{names} at {pair.at_ev:.1f} eV; to settle it, {pair.settle}")
+    if answer.unexplained:
+        told = [
+            f"{u.energy_ev:.1f} eV, {u.significance:.0f} times the noise"
+            + (f" (nearest: {', '.join(u.candidates)})" if u.candidates else " (no line near)")
+            for u in answer.unexplained[:MOST_UNEXPLAINED]
+        ]
+        more = len(answer.unexplained) - MOST_UNEXPLAINED
+        yield _note("unexplained", "; ".join(told) + (f"; and {more} weaker ones" if more > 0 else ""))
+
+
+def _not_seen(answer: Identification) -> Iterator[str]:
+    if answer.limits:
+        told = [f"{x.element} {x.atomic_percent:.2g} at% ({x.line_ev:.0f} eV)" for x in answer.limits]
+        yield _note("not seen", "more than this would have been: " + ", ".join(told))
+    reasons: dict[str, list[Untestable]] = {}
+    for item in answer.untestable:
+        reasons.setdefault(item.why.split(", the strongest")[0], []).append(item)
+    for why, items in reasons.items():
+        yield _note("untestable", f"{', '.join(item.element for item in items)}: {why}")
+
+
+def _remarks(answer: Identification) -> Iterator[str]:
+    if answer.artefacts:
+        yield _note("artefacts", "; ".join(f"{a.energy_ev:.1f} eV, {a.what}" for a in answer.artefacts))
+    for text in answer.cautions:
+        yield _note("caution", text)
+    for text in answer.warnings:
+        yield _note("warning", text)
+    yield _note("made by", answer.edition)
+
+
+def _note(label: str, text: str) -> str:
+    return hanging(label, _one_line(text), width=14, indent="")

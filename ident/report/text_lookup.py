@@ -1,0 +1,106 @@
+"""The answers of `ident at`, `ident element`, `ident minima` and `ident tables` in plain text."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from typing import TYPE_CHECKING
+
+from .escape import printable
+from .layout import columns, hanging, heading
+from .text_assign import printable_lines
+
+if TYPE_CHECKING:
+    from ..lookup import Candidate, CardLine, ElementCard
+    from ..minima import Analysis
+
+MOST_TOLD = 3  # candidates whose reasons are written out
+
+
+def render_at(energy_ev: float, candidates: Sequence[Candidate]) -> str:
+    """Write what could be at an energy."""
+    parts = [heading(f"{energy_ev:g} eV (handbook scale, derivative minimum)")]
+    if not candidates:
+        return printable_lines([*parts, "  no line of any element is near"]) + "\n\n"
+    rows = [
+        (c.element, c.transition, f"{c.expected_ev:.0f}", f"{c.deviation_ev:+.0f}", f"{c.weight:.2f}", _needs(c))
+        for c in candidates
+    ]
+    head = ("element", "transition", "stands at", "away", "weight", "must then be seen too (eV, of its strongest)")
+    parts += columns(head, rows, right=(2, 3, 4))
+    for candidate in candidates[:MOST_TOLD]:
+        for place, reason in enumerate(candidate.reasons):
+            parts.append(hanging(candidate.element if place == 0 else "", f"{reason.side}: {reason.text}", width=5))
+    return printable_lines(parts) + "\n\n"
+
+
+def _needs(candidate: Candidate) -> str:
+    told = [f"{need.energy_ev:.0f} ({need.relative_height:.0%})" for need in candidate.needs]
+    return ", ".join(told) if told else "nothing"
+
+
+def render_card(card: ElementCard) -> str:
+    """Write the reference card of an element."""
+    parts = [heading(f"{card.element}, {card.name}, Z = {card.z}")]
+    if card.untestable is not None:
+        return printable_lines([*parts, hanging("", card.untestable, width=0)]) + "\n\n"
+    parts.append("  derivative minima on the handbook scale; height 1 is its strongest line")
+    rows = [
+        (
+            f"{line.energy_ev:.0f}",
+            line.transition,
+            f"{line.relative_height:.2f}",
+            f"{line.sigma_ev:.1f}",
+            line.energy_kind,
+            _rivals(line),
+        )
+        for line in card.lines
+    ]
+    head = ("eV", "transition", "height", "+- eV", "energy is", "others near")
+    parts += columns(head, rows, right=(0, 2, 3))
+    if card.deciding is not None:
+        parts.append(
+            hanging("decides", f"{card.deciding.transition} at {card.deciding.energy_ev:.0f} eV: {card.deciding.why}")
+        )
+    for shift in card.shifts:
+        parts.append(hanging("shift", f"{shift.transition} {shift.shift_ev:+.1f} eV in {shift.state}"))
+    states = dict.fromkeys(line.state for line in card.lines if line.state)
+    if states:
+        parts.append(hanging("refers to", ", ".join(states)))
+    parts.append(hanging("sources", ", ".join(card.sources)))
+    return printable_lines(parts) + "\n\n"
+
+
+def _rivals(line: CardLine) -> str:
+    return ", ".join(f"{rival.element} {rival.energy_ev:.0f}" for rival in line.rivals)
+
+
+def render_minima(analysis: Analysis) -> str:
+    """Write the minima of a spectrum."""
+    spectrum = analysis.spectrum
+    ranges = ", ".join(f"{low:.0f} to {high:.0f} eV" for low, high in spectrum.ranges_ev)
+    parts = [heading(printable(spectrum.name)), f"  {spectrum.kind} spectrum, {ranges}"]
+    rows = [
+        (
+            f"{m.energy_ev:.1f}",
+            f"{m.sigma_ev:.1f}",
+            f"{m.depth:.4g}",
+            f"{m.peak_to_peak:.4g}",
+            f"{m.width_ev:.1f}",
+            f"{m.significance:.1f}",
+        )
+        for m in analysis.minima
+    ]
+    if rows:
+        head = ("minimum (eV)", "+- eV", "depth", "peak to peak", "width (eV)", "over noise")
+        parts += columns(head, rows, right=range(6))
+    else:
+        parts.append("  nothing stands above the noise")
+    parts += [hanging("artefact", f"{a.energy_ev:.1f} eV, {a.what}") for a in analysis.artefacts]
+    parts += [hanging("warning", printable(text)) for text in analysis.warnings]
+    return printable_lines(parts) + "\n\n"
+
+
+def render_table_list(rows: Sequence[tuple[str, str, str]], edition: str) -> str:
+    """Write which tables there are: file, rows, what it holds."""
+    parts = [heading(f"Tables, edition {edition}"), *columns(("file", "rows", "holds"), rows, right=(1,))]
+    return printable_lines(parts) + "\n"
