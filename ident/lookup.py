@@ -23,11 +23,13 @@ SHIFTED_WEIGHT = 0.3  # a line that needs a chemical shift, against one that doe
 LEAST_WEIGHT = 0.005  # of the whole
 RARE = 0.01  # no element counts as rarer than that: a lookup is asked about odd things too
 LIMITS_EV = (10.0, 3500.0)
+CLEARLY_DEEPER = 1.3  # heights are known to about 30 % at best
 NEEDED_HEIGHT = 0.4  # against the line looked up, from which another line must be seen
 MOST_NEEDED = 4
 RIVAL_REACH_EV = 6.0
 RIVAL_HEIGHT = 0.15
 SHOWN_HEIGHT = 0.02
+LOOKUP_CODES = ("line-near", "needs-shift", "common-on-surfaces", "minor-line", "no-second-line")
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -253,7 +255,7 @@ def _reasons(line: tables.Line, expected: float, deviation: float, needs: tuple[
     common = tables.commonness().get(line.symbol, 0.0)
     if common >= 0.5:
         yield Reason(code="common-on-surfaces", side="for", text="found on nearly every surface that has seen air")
-    if needs and needs[0].relative_height > line.relative_height:
+    if needs and needs[0].relative_height > CLEARLY_DEEPER * line.relative_height:
         text = (
             f"not its strongest line: {needs[0].transition} at {needs[0].energy_ev:.0f} eV is "
             f"{needs[0].relative_height / line.relative_height:.1f} times as deep"
@@ -316,7 +318,7 @@ def _decider(lines: tuple[CardLine, ...]) -> Decider | None:
 def _clearness(line: CardLine) -> float:
     common = tables.commonness()
     rivalry = sum(rival.relative_height * max(common.get(rival.element, 0.0), RARE) for rival in line.rivals)
-    low = 0.5 if line.energy_ev < 110.0 else 1.0  # where nearly every heavy element has a line
+    low = 0.25 if line.energy_ev < 110.0 else 1.0  # where nearly every heavy element has a line
     return low * line.relative_height / (1.0 + 5.0 * rivalry)
 
 

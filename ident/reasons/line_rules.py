@@ -126,15 +126,15 @@ class LineTooWeak(Rule):
         if weak:
             line = weak[0]
             strength = times(line.expected_significance or 0.0)
-            tail = f"; {len(weak) - 1} weaker ones neither" if len(weak) > 1 else ""
+            tail = f", nor could {len(weak) - 1} weaker" if len(weak) > 1 else ""
             yield (
                 0.05 + line.relative_height,
-                f"{line_named(line)} would be {strength} times the noise and could not be told{tail}",
+                f"{line_named(line)} would be only {strength} times the noise and could not be told{tail}",
             )
 
 
 class SharedMinimum(Rule):
-    """Most of a minimum that the element could claim is explained by another element."""
+    """A minimum that the element claims is shared with another element."""
 
     side: Side = "untested"
 

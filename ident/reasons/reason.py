@@ -7,6 +7,8 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, ClassVar, Literal
 
+from .words import distinct
+
 if TYPE_CHECKING:
     from ..matching.evidence import ElementEvidence, Evidence, LineEvidence
 
@@ -31,8 +33,8 @@ class Subject:
 
     @property
     def met(self) -> tuple[LineEvidence, ...]:
-        """Lines that met a minimum, strongest first."""
-        return tuple(line for line in self.element.lines if line.status == "met")
+        """Lines that met a minimum, strongest first, one a minimum."""
+        return tuple(distinct([line for line in self.element.lines if line.status == "met"]))
 
     @property
     def own(self) -> tuple[LineEvidence, ...]:

@@ -92,8 +92,7 @@ class RivalLessLikely(Rule):
     def says(self, subject: Subject) -> Iterator[Weighed]:
         for rival in subject.element.rivals:
             if rival.probability < subject.element.probability:
-                lacks = _lacks(rival.missing)
-                why = f", but it needs {lacks}" if lacks else f", but it is less likely ({rival.probability:.2f})"
+                why = f", but {_lacks(rival.missing)}" if rival.missing else f", but its probability is {rival.probability:.2f} only"
                 yield 0.6, f"{rival.element} {rival.transition} could stand at {rival.at_ev:.1f} eV{why}"
 
 
@@ -137,10 +136,8 @@ class CannotBeSeparated(Rule):
 
 
 def _lacks(missing: tuple[tuple[str, float, float], ...]) -> str:
-    return joined(
-        [f"{energy:.0f} eV ({transition}), not seen at {times(strength)} times the noise"
-         for transition, energy, strength in missing[:1]]
-    )
+    transition, energy_ev, strength = missing[0]
+    return f"then {energy_ev:.0f} eV ({transition}) would be {times(strength)} times the noise, and is not there"
 
 
 WHOLE_RULES: tuple[type[Rule], ...] = (

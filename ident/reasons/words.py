@@ -31,3 +31,11 @@ def meeting(line: LineEvidence) -> str:
 def times(ratio: float) -> str:
     """Say a ratio with two figures: "0.88", "14"."""
     return f"{ratio:.0f}" if ratio >= 10 else f"{ratio:.2g}"
+
+
+def distinct(lines: Sequence[LineEvidence]) -> list[LineEvidence]:
+    """Keep the first (strongest) of the lines that met one and the same minimum."""
+    seen: dict[float | None, LineEvidence] = {}
+    for line in lines:
+        seen.setdefault(line.found_ev, line)
+    return list(seen.values())

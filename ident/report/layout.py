@@ -3,11 +3,13 @@
 from __future__ import annotations
 
 import math
+import re
 import textwrap
 from collections.abc import Iterable, Sequence
 
 WIDTH = 100
 INDENT = "  "
+UNIT_AFTER_NUMBER = re.compile(r"(\d) (eV|sd|%|times)\b")
 
 
 def heading(text: str) -> str:
@@ -33,14 +35,15 @@ def columns(head: Sequence[str], rows: Sequence[Sequence[str]], *, right: Iterab
 def hanging(label: str, text: str, *, width: int = 10, indent: str = INDENT) -> str:
     """A label, then text that wraps under itself."""
     first = indent + label.ljust(width)
-    return textwrap.fill(
-        text,
+    filled = textwrap.fill(
+        UNIT_AFTER_NUMBER.sub("\\1\u00a0\\2", text),  # a number and its unit stay on one line
         WIDTH,
         initial_indent=first,
         subsequent_indent=" " * len(first),
         break_long_words=False,
         break_on_hyphens=False,
     )
+    return filled.replace("\u00a0", " ")
 
 
 def probability(value: float) -> str:

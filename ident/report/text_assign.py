@@ -46,19 +46,24 @@ def _table(answer: Identification) -> list[str]:
     if not answer.assignments:
         said = "Nothing stands above the noise." if not answer.minima else "No element is supported by these minima."
         return ["  " + said]
-    rows = [(a.element, a.verdict, probability(a.probability), _deciding(a)) for a in answer.assignments]
+    shown = [a for a in answer.assignments if a.verdict != "not supported"]
+    if not shown:
+        return ["  No element is supported by these minima."]
+    rows = [(a.element, a.verdict, probability(a.probability), _deciding(a)) for a in shown]
     return columns(("element", "verdict", "probability", "rests on (eV)"), rows, right=(2,))
 
 
 def _deciding(assignment: Assignment) -> str:
-    met = [line for line in assignment.lines if line.status == "met" and line.found_ev is not None]
-    told = [f"{line.transition} {line.found_ev:.0f}" for line in met[:MOST_LINES]]
+    met = {line.found_ev: line for line in reversed(assignment.lines) if line.found_ev is not None}
+    told = [f"{line.transition} {line.found_ev:.0f}" for line in list(met.values())[::-1][:MOST_LINES]]
     more = [f"{len(met) - MOST_LINES} more"] if len(met) > MOST_LINES else []
     return ", ".join([*told, *more])
 
 
 def _why(answer: Identification) -> Iterator[str]:
     for assignment in answer.assignments:
+        if assignment.verdict == "not supported":
+            continue
         yield ""
         state = f", as {assignment.state.name}" if assignment.state else ""
         yield f"{assignment.element}: {assignment.verdict}{state}"
@@ -73,28 +78,25 @@ _SIDES = ("for", "against", "untested")
 
 def _axis(answer: Identification) -> Iterator[str]:
     scale = answer.scale
-    direction = "high" if scale.offset_ev >= 0 else "low"
-    yield hanging(
-        "axis",
-        f"reads {abs(scale.offset_ev):.1f} +- {scale.offset_sigma_ev:.1f} eV {direction} at 0 eV, slope "
-        f"{scale.slope:+.2%} +- {scale.slope_sigma:.2%}, against Fermi-referenced lines; charging: {scale.charging}",
-        width=14,
-        indent="",
-    )
+    offset = f"offset {scale.offset_ev:+.1f} +- {scale.offset_sigma_ev:.1f} eV"
+    slope = f"slope {scale.slope:+.2%} +- {scale.slope_sigma:.2%}"
+    yield _note("axis", f"{offset}, {slope} (this axis less Fermi-referenced lines); charging: {scale.charging}")
 
 
 def _doubts(answer: Identification) -> Iterator[str]:
+    aside = [a for a in answer.assignments if a.verdict == "not supported"]
+    if aside:
+        yield _note("set aside", ", ".join(f"{a.element} {probability(a.probability)}" for a in aside))
     for pair in answer.inseparable:
         names = " or ".join(pair.elements)
         yield _note("cannot tell", f"{names} at {pair.at_ev:.1f} eV; to settle it, {pair.settle}")
-    if answer.unexplained:
-        told = [
-            f"{u.energy_ev:.1f} eV, {u.significance:.0f} times the noise"
-            + (f" (nearest: {', '.join(u.candidates)})" if u.candidates else " (no line near)")
-            for u in answer.unexplained[:MOST_UNEXPLAINED]
-        ]
-        more = len(answer.unexplained) - MOST_UNEXPLAINED
-        yield _note("unexplained", "; ".join(told) + (f"; and {more} weaker ones" if more > 0 else ""))
+    shown = answer.unexplained[:MOST_UNEXPLAINED]
+    for place, left in enumerate(shown):
+        near = f"lines near: {', '.join(left.candidates)}" if left.candidates else "no line near"
+        text = f"{left.energy_ev:.1f} eV, {left.significance:.0f} times the noise ({near})"
+        yield _note("unexplained" if place == 0 else "", text)
+    if len(answer.unexplained) > len(shown):
+        yield _note("", f"and {len(answer.unexplained) - len(shown)} weaker")
 
 
 def _not_seen(answer: Identification) -> Iterator[str]:

@@ -66,7 +66,7 @@ def render_card(card: ElementCard) -> str:
     states = dict.fromkeys(line.state for line in card.lines if line.state)
     if states:
         parts.append(hanging("refers to", ", ".join(states)))
-    parts.append(hanging("sources", ", ".join(card.sources)))
+    parts.append(hanging("sources", "; ".join(card.sources)))
     return printable_lines(parts) + "\n\n"
 
 
