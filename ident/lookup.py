@@ -93,6 +93,15 @@ class CardShift:
 
 
 @dataclass(frozen=True, kw_only=True)
+class CardSource:
+    """Where numbers of the card come from."""
+
+    key: str
+    text: str
+    doi: str
+
+
+@dataclass(frozen=True, kw_only=True)
 class Decider:
     """The line that decides whether the element is there, and why that one."""
 
@@ -112,7 +121,7 @@ class ElementCard:
     lines: tuple[CardLine, ...]  # strongest first
     deciding: Decider | None
     shifts: tuple[CardShift, ...]
-    sources: tuple[str, ...]
+    sources: tuple[CardSource, ...]
     untestable: str | None  # why no line can be given, if none can
 
 
@@ -176,7 +185,6 @@ def element_card(name: str) -> ElementCard:
         )
         for row in tables.chemical_shifts(symbol)
     )
-    cited = dict.fromkeys([*(line.source for line in shown), *(shift.source for shift in shifts)])
     return ElementCard(
         element=symbol,
         name=name_of(symbol),
@@ -184,8 +192,18 @@ def element_card(name: str) -> ElementCard:
         lines=shown,
         deciding=_decider(shown),
         shifts=shifts,
-        sources=tuple(cited),
+        sources=_cited([*(line.source for line in shown), *(shift.source for shift in shifts)]),
         untestable=None if shown else _why_no_line(symbol),
+    )
+
+
+def _cited(keys: Iterable[str]) -> tuple[CardSource, ...]:
+    """What the source keys stand for, each once."""
+    known = tables.sources()
+    split = dict.fromkeys(key for text in keys for key in text.split())
+    return tuple(
+        CardSource(key=key, text=known[key].text if key in known else "", doi=known[key].doi if key in known else "")
+        for key in split
     )
 
 

@@ -46,5 +46,20 @@ def _rebuild() -> int:
 def _list(form: str) -> int:
     from .. import tables
 
-    click.echo("\n".join(str(item) for item in tables.list_tables()))
+    files, edition = tables.list_tables(), tables.edition()
+    if form == "json":
+        from ..report.json_lines import render_json
+
+        rows = [{"file": file.name, "rows": file.rows, "bytes": file.size_bytes} for file in files]
+        click.echo(render_json({"edition": edition, "tables": rows}), nl=False)
+    elif form == "csv":
+        from ..report.csv_rows import render_rows
+
+        click.echo(
+            render_rows([("file", "rows", "bytes"), *((f.name, f.rows, f.size_bytes) for f in files)]), nl=False
+        )
+    else:
+        from ..report.text_lookup import render_table_list
+
+        click.echo(render_table_list(files, edition), nl=False)
     return 0

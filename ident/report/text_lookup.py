@@ -12,6 +12,7 @@ from .text_assign import printable_lines
 if TYPE_CHECKING:
     from ..lookup import Candidate, CardLine, ElementCard
     from ..minima import Analysis
+    from ..tables.files import TableFile
 
 MOST_TOLD = 3  # candidates whose reasons are written out
 
@@ -66,7 +67,9 @@ def render_card(card: ElementCard) -> str:
     states = dict.fromkeys(line.state for line in card.lines if line.state)
     if states:
         parts.append(hanging("refers to", ", ".join(states)))
-    parts.append(hanging("sources", "; ".join(card.sources)))
+    for source in card.sources:
+        doi = f", doi {source.doi}" if source.doi else ""
+        parts.append(hanging("source", f"{source.key}: {source.text}{doi}"))
     return printable_lines(parts) + "\n\n"
 
 
@@ -100,7 +103,8 @@ def render_minima(analysis: Analysis) -> str:
     return printable_lines(parts) + "\n\n"
 
 
-def render_table_list(rows: Sequence[tuple[str, str, str]], edition: str) -> str:
-    """Write which tables there are: file, rows, what it holds."""
-    parts = [heading(f"Tables, edition {edition}"), *columns(("file", "rows", "holds"), rows, right=(1,))]
+def render_table_list(files: Sequence[TableFile], edition: str) -> str:
+    """Write which tables there are and how long they are."""
+    rows = [(file.name, str(file.rows), str(file.size_bytes)) for file in files]
+    parts = [heading(f"Tables, edition {edition}"), *columns(("file", "rows", "bytes"), rows, right=(1, 2))]
     return printable_lines(parts) + "\n"
