@@ -80,7 +80,7 @@ def _run(argv: list[str] | None) -> int:
         return WRONG_USAGE
     except click.UsageError as wrong:
         where = f" (see {wrong.ctx.command_path} --help)" if wrong.ctx else ""
-        complain(wrong.format_message() + where)
+        complain(wrong.format_message().rstrip(".") + where)
         return WRONG_USAGE
     except click.Abort:
         complain("stopped")

@@ -15,7 +15,7 @@ if TYPE_CHECKING:
     from ..spectrum import Spectrum
 
 
-@click.command("assign")
+@click.command("assign", short_help="Which elements are here, how sure, and why?")
 @click.argument("spectra", nargs=-1, required=True, metavar="SPECTRUM...")
 @format_option
 @with_options(READING)

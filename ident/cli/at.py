@@ -8,18 +8,22 @@ from ..lookup import Candidate, candidates_at
 from .options import format_option
 
 
-@click.command("at", context_settings={"ignore_unknown_options": True})
+@click.command(
+    "at",
+    short_help="What could a minimum at this energy be?",
+    context_settings={"ignore_unknown_options": True},
+)
 @click.argument("energies", nargs=-1, required=True, type=float, metavar="ENERGY...")
-@click.option("--within", type=float, metavar="EV", help="Only lines at most this many eV away.")
+@click.option("--reach", type=float, metavar="EV", help="Only lines at most this many eV away.")
 @format_option
-def command(energies: tuple[float, ...], within: float | None, form: str) -> int:
+def command(energies: tuple[float, ...], reach: float | None, form: str) -> int:
     """Name the elements that could explain a minimum at each ENERGY, and what else must then be seen.
 
     ENERGY is that of the derivative minimum in eV, on the handbook scale.
 
     Example: ident at 651
     """
-    found = [(energy, candidates_at(energy, within=within)) for energy in energies]
+    found = [(energy, candidates_at(energy, within=reach)) for energy in energies]
     if form == "csv":
         from ..report.csv_rows import AT_COLUMNS, at_rows, render_rows
 

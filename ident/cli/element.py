@@ -10,7 +10,7 @@ from .options import format_option
 from .say import complain
 
 
-@click.command("element")
+@click.command("element", short_help="The reference card of an element.")
 @click.argument("names", nargs=-1, required=True, metavar="NAME...")
 @format_option
 def command(names: tuple[str, ...], form: str) -> int:

@@ -14,7 +14,7 @@ if TYPE_CHECKING:
     from ..spectrum import Spectrum
 
 
-@click.command("minima")
+@click.command("minima", short_help="The derivative minima, before any element is named.")
 @click.argument("spectra", nargs=-1, required=True, metavar="SPECTRUM...")
 @format_option
 @with_options(READING)

@@ -8,7 +8,7 @@ from .options import format_option
 from .say import complain
 
 
-@click.command("tables")
+@click.command("tables", short_help="List, check and rebuild the open tables.")
 @click.option("--check", "what", flag_value="check", help="Rebuild the derived tables and compare with those here.")
 @click.option("--rebuild", "what", flag_value="rebuild", help="Rebuild the derived tables and write them.")
 @format_option
