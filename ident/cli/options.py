@@ -11,38 +11,28 @@ import click
 Function = TypeVar("Function", bound=Callable[..., Any])
 
 
-class ResolutionType(click.ParamType):
-    """A resolution: "0.5%" of the energy, or "1.2eV" throughout."""
-
-    name = "resolution"
-
-    def convert(self, value: Any, param: click.Parameter | None, ctx: click.Context | None) -> tuple[str, float]:
-        """Give what it is relative to ("relative" or "ev") and the number."""
-        if isinstance(value, tuple):
-            return value
-        found = re.fullmatch(r"\s*(\d+(?:[.,]\d*)?|[.,]\d+)\s*(%|ev)\s*", str(value), flags=re.IGNORECASE)
-        if not found:
-            self.fail(f"{value!r} is no resolution; write it as 0.5% or 1.2eV", param, ctx)
-        number = float(found[1].replace(",", "."))
-        return ("relative", number / 100.0) if found[2] == "%" else ("ev", number)
+def _resolution(_: click.Context, __: click.Parameter, value: str | None) -> tuple[str, float] | None:
+    """Read "0.5%" of the energy or "1.2eV" throughout: what it is ("relative" or "ev") and the number."""
+    if value is None:
+        return None
+    found = re.fullmatch(r"\s*(\d+(?:[.,]\d*)?|[.,]\d+)\s*(%|ev)\s*", value, flags=re.IGNORECASE)
+    if not found:
+        raise click.BadParameter(f"{value!r} is no resolution; write it as 0.5% or 1.2eV")
+    number = float(found[1].replace(",", "."))
+    return ("relative", number / 100.0) if found[2] == "%" else ("ev", number)
 
 
-class RangeType(click.ParamType):
-    """A range of energies, "LO:HI" in eV."""
-
-    name = "range"
-
-    def convert(self, value: Any, param: click.Parameter | None, ctx: click.Context | None) -> tuple[float, float]:
-        """Give both ends."""
-        if isinstance(value, tuple):
-            return value
-        try:
-            low, high = (float(part) for part in str(value).split(":"))
-        except ValueError:
-            self.fail(f"{value!r} is no range; write it as 100:1200, in eV", param, ctx)
-        if not 0 <= low < high < float("inf"):
-            self.fail(f"{value!r} does not run from a lower to a higher energy", param, ctx)
-        return low, high
+def _range(_: click.Context, __: click.Parameter, value: str | None) -> tuple[float, float] | None:
+    """Read "LO:HI" in eV."""
+    if value is None:
+        return None
+    try:
+        low, high = (float(part) for part in value.split(":"))
+    except ValueError:
+        raise click.BadParameter(f"{value!r} is no range; write it as 100:1200, in eV") from None
+    if not 0 <= low < high < float("inf"):
+        raise click.BadParameter(f"{value!r} does not run from a lower to a higher energy")
+    return low, high
 
 
 def _names(_: click.Context, __: click.Parameter, value: Iterable[str]) -> tuple[str, ...]:
@@ -78,9 +68,9 @@ READING = (
         "--column", metavar="NAME", help='Which ordinate of several: its name, its number, or "sum" of all sweeps.'
     ),
     click.option("--separate", is_flag=True, help="Take blocks and windows of a file for spectra of their own."),
-    click.option("--within", type=RangeType(), metavar="LO:HI", help="Use this range of the energies only, in eV."),
+    click.option("--within", callback=_range, metavar="LO:HI", help="Use this range of the energies only, in eV."),
     click.option(
-        "--resolution", type=ResolutionType(), metavar="0.5%|1.2eV", help="Energy resolution of the analyser."
+        "--resolution", callback=_resolution, metavar="0.5%|1.2eV", help="Energy resolution of the analyser."
     ),
     click.option("--quiet", is_flag=True, help="No progress and no warnings on standard error."),
 )

@@ -58,7 +58,7 @@ def _check(name: str, value: float | None, limits: tuple[float, float], unit: st
         raise SettingError(f"{name} {value:g} is out of the question; it lies between {low:g} and {high:g} {unit}")
 
 
-def _symbols(setting: str, names: tuple[str, ...]) -> tuple[str, ...]:
+def _symbols(setting: str, names: tuple[str, ...] | str) -> tuple[str, ...]:
     if isinstance(names, str):
         raise SettingError(f"{setting} is a sequence of names, such as ('C', 'oxygen'), not one text")
     return tuple(dict.fromkeys(symbol_from_name(name) for name in names))

@@ -5,7 +5,7 @@ from __future__ import annotations
 import re
 from collections.abc import Iterator
 from dataclasses import dataclass
-from typing import TYPE_CHECKING, ClassVar, Literal
+from typing import TYPE_CHECKING, Literal
 
 from .words import distinct
 
@@ -48,7 +48,7 @@ Weighed = tuple[float, str]  # natural-log odds that a sentence speaks for, and 
 class Rule:
     """Base of the rules; the docstring of each is its claim."""
 
-    side: ClassVar[Side]
+    side: Side
 
     @classmethod
     def code(cls) -> str:
