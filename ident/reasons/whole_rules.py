@@ -92,8 +92,8 @@ class RivalLessLikely(Rule):
     def says(self, subject: Subject) -> Iterator[Weighed]:
         for rival in subject.element.rivals:
             if rival.probability < subject.element.probability:
-                why = f", but {_lacks(rival.missing)}" if rival.missing else f", but its probability is {rival.probability:.2f} only"
-                yield 0.6, f"{rival.element} {rival.transition} could stand at {rival.at_ev:.1f} eV{why}"
+                why = f"but {_lacks(rival.missing)}" if rival.missing else f"with probability {rival.probability:.2f}"
+                yield 0.6, f"{rival.element} {rival.transition} could stand at {rival.at_ev:.1f} eV, {why}"
 
 
 class RivalLikelier(Rule):
