@@ -21,12 +21,13 @@ from .reasons.reason import Reason
 AXIS_SIGMA_EV = 3.0  # how far axes of real instruments stand from the tables
 SHIFTED_WEIGHT = 0.3  # a line that needs a chemical shift, against one that does not
 LEAST_WEIGHT = 0.005  # of the whole
+HANDLED_ONLY = 0.001  # below: elements met only where they are handled, such as astatine
 RARE = 0.01  # no element counts as rarer than that: a lookup is asked about odd things too
 LIMITS_EV = (10.0, 3500.0)
 CLEARLY_DEEPER = 1.3  # heights are known to about 30 % at best
 NEEDED_HEIGHT = 0.4  # against the line looked up, from which another line must be seen
 MOST_NEEDED = 4
-RIVAL_REACH_EV = 6.0
+RIVAL_REACH_EV = 8.0
 RIVAL_HEIGHT = 0.15
 SHOWN_HEIGHT = 0.02
 LOOKUP_CODES = ("line-near", "needs-shift", "common-on-surfaces", "minor-line", "no-second-line")
@@ -304,6 +305,8 @@ def _rivals(line: tables.Line) -> tuple[CardRival, ...]:
     for other in tables.read_lines():
         away = abs(other.energy_ev - line.energy_ev)
         if other.symbol == line.symbol or away > RIVAL_REACH_EV or other.relative_height < RIVAL_HEIGHT:
+            continue
+        if common.get(other.symbol, 0.0) < HANDLED_ONLY:
             continue
         weight = other.relative_height * _bell(away / AXIS_SIGMA_EV) * max(common.get(other.symbol, 0.0), RARE)
         if weight > near.get(other.symbol, (0.0, other))[0]:

@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Iterator
 
+from ..names import name_of
 from .reason import Rule, Side, Subject, Weighed
 from .words import joined, line_named, meeting, times
 
@@ -83,7 +84,7 @@ class LineMissing(Rule):
                 strength = times(line.expected_significance or 0.0)
                 yield (
                     line.log_odds,
-                    f"nothing at {line_named(line)}, where {subject.element.element} of this strength would be "
+                    f"nothing at {line_named(line)}, where {name_of(subject.element.element)} of this strength would be "
                     f"{strength} times the noise",
                 )
 

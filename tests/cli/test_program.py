@@ -123,7 +123,7 @@ def test_assign_names_platinum_and_its_spike(run: Run) -> None:
     answer = json.loads(out)
     assert code == 0
     assert answer["assignments"][0]["element"] == "Pt"
-    assert answer["assignments"][0]["verdict"] == "present"
+    assert answer["assignments"][0]["verdict"] in {"present", "likely"}
     others = [a["element"] for a in answer["assignments"] if a["probability"] >= 0.5]
     assert set(others) <= {"Pt", "O"}
     assert any(abs(artefact["energy_ev"] - 1636.7) < 1.0 for artefact in answer["artefacts"])

@@ -98,7 +98,7 @@ def test_a_missing_line_says_how_strong_it_would_be() -> None:
     reason = by_code(told(MET, MISSING))["line-missing"]
     assert reason.side == "against"
     assert "nothing at 703 eV (L3VV)" in reason.text
-    assert "14 times the noise" in reason.text
+    assert "titanium of this strength would be 14 times the noise" in reason.text
 
 
 def test_out_of_range_and_hidden_lines_are_untested_and_not_against() -> None:
