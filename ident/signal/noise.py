@@ -103,7 +103,7 @@ def _variance_columns(energy_ev: FloatArray, intensity: FloatArray, *, derivativ
 def _fit_variance(variance: FloatArray, columns: list[FloatArray]) -> FloatArray:
     """Non-negative weights of the columns, least squares in relative error, blocks full of lines left out."""
     keep = np.ones(variance.size, dtype=bool)
-    best = np.zeros(len(columns))
+    best: FloatArray = np.zeros(len(columns))
     best[0] = float(np.median(variance))
     floor = 1e-12 * float(np.max(variance)) + 1e-300
     scale = np.maximum(_smoothed(variance), floor)

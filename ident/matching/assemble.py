@@ -1,0 +1,343 @@
+"""Numbers for the answer: per element its lines, what met them, what is missing, who else could be there."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+
+import numpy as np
+
+from .. import tables
+from ..patterns import tilted
+from ..spectrum import FloatArray
+from .evidence import (
+    ElementEvidence,
+    Evidence,
+    InseparableEvidence,
+    LineEvidence,
+    RivalEvidence,
+    StateEvidence,
+    UnexplainedEvidence,
+    UntestableEvidence,
+)
+from .options import Options
+from .posterior import Posterior
+from .problem import Problem
+from .scale_evidence import scale_evidence
+from .search import Sums, minimum_costs, sums_of
+from .solve import Solution
+
+SHOWN_HEIGHT = 0.08  # weaker lines are listed only when met
+MOST_LINES = 10
+LEAST_PROBABILITY = 0.01
+LOW_LINE_EV = 110.0
+
+
+@dataclass(frozen=True, kw_only=True, eq=False)
+class Context:
+    """All that the parts below look at."""
+
+    problem: Problem
+    solution: Solution
+    posterior: Posterior
+    sums: Sums  # of the best set
+
+    @property
+    def options(self) -> Options:
+        """The options of the settled axis."""
+        return self.solution.options
+
+
+def assemble(problem: Problem, solution: Solution, posterior: Posterior) -> Evidence:
+    """Put the whole answer together."""
+    sums = sums_of(problem, solution.options, solution.members)
+    context = Context(problem=problem, solution=solution, posterior=posterior, sums=sums)
+    shown = [e for e in np.argsort(-posterior.probability) if posterior.probability[e] >= LEAST_PROBABILITY]
+    shown = [int(e) for e in shown if posterior.best_option[e] >= 0]
+    return Evidence(
+        scale=scale_evidence(problem, solution),
+        elements=tuple(_element(context, e) for e in shown),
+        unexplained=_unexplained(context),
+        inseparable=_inseparable(context, shown),
+        untestable=_untestable(context),
+    )
+
+
+def _element(context: Context, element: int) -> ElementEvidence:
+    problem, options = context.problem, context.options
+    index = int(context.posterior.best_option[element])
+    others = [m for m in context.solution.members if int(options.element[m]) != element]
+    sums = sums_of(problem, options, [*others, index])
+    lines = _lines(context, element, index, others, sums)
+    met = [line for line in lines if line.status == "met"]
+    symbol = problem.patterns.symbols[element]
+    shift = float(options.shift_core_ev[index] or options.shift_valence_ev[index])
+    strongest = max((float(options.depth[index, m]) for m in options.met[index] if m >= 0), default=0.0)
+    return ElementEvidence(
+        element=symbol,
+        z=int(problem.patterns.z[element]),
+        probability=float(context.posterior.probability[element]),
+        log_odds=float(context.posterior.log_odds[element]),
+        lines=lines,
+        shift_ev=shift,
+        shift_sigma_ev=float(np.hypot(1.0, context.solution.axis.sigma_ev)),
+        state=_state(symbol, met, options, index),
+        strength=strongest,
+        prior_log_odds=float(problem.patterns.prior_log_odds[element]),
+        common=symbol in {"C", "O"},
+        single_low_line=len(met) == 1 and met[0].table_ev < LOW_LINE_EV,
+        rivals=_rivals(context, element, met),
+    )
+
+
+def _lines(context: Context, element: int, index: int, others: list[int], sums: Sums) -> tuple[LineEvidence, ...]:
+    problem, options, axis = context.problem, context.options, context.solution.axis
+    pattern = problem.patterns
+    before = sums_of(problem, options, others)
+    change = minimum_costs(problem, before) - minimum_costs(problem, sums)
+    heights = tilted(pattern.height[element], pattern.energy_ev[element], axis.tilt)
+    out: list[LineEvidence] = []
+    for column in np.flatnonzero(pattern.real[element]):
+        met = int(options.met[index, column])
+        if met < 0 and pattern.height[element, column] < SHOWN_HEIGHT:
+            continue
+        core = not pattern.valence[element, column]
+        shift = float(options.shift_core_ev[index] if core else options.shift_valence_ev[index])
+        expected = float(pattern.energy_ev[element, column]) * (1 + axis.slope) + axis.offset_ev + shift
+        depth = float(options.strength[index] * heights[column])
+        out.append(_line(context, element, int(column), expected, depth, met, others, sums, change))
+    return tuple(out[:MOST_LINES])
+
+
+def _line(
+    context: Context,
+    element: int,
+    column: int,
+    expected_ev: float,
+    depth: float,
+    met: int,
+    others: list[int],
+    sums: Sums,
+    change: FloatArray,
+) -> LineEvidence:
+    problem, pattern = context.problem, context.problem.patterns
+    sigma = float(np.hypot(pattern.sigma_ev[element, column], context.solution.axis.sigma_ev))
+    noise = float(problem.noise_at(np.array(expected_ev)))
+    inside = bool(problem.in_range(np.array(expected_ev)))
+    common = {
+        "transition": pattern.transitions[element][column],
+        "table_ev": float(pattern.energy_ev[element, column]),
+        "expected_ev": expected_ev,
+        "relative_height": float(pattern.height[element, column]),
+    }
+    if met >= 0:
+        total = float(sums.depth[met])
+        spread = float(sums.spread[met]) / total
+        return LineEvidence(
+            **common,  # type: ignore[arg-type]
+            sigma_ev=float(np.hypot(sigma, problem.sigma_ev[met])),
+            status="met",
+            found_ev=float(problem.energy_ev[met]),
+            found_sigma_ev=float(problem.sigma_ev[met]),
+            share=min(1.0, depth / total),
+            shared_with=_sharers(context, others, met, total),
+            expected_significance=depth / noise,
+            found_significance=float(problem.significance[met]),
+            depth_ratio=float(problem.depth[met]) / total,
+            depth_ratio_factor=math.exp(min(max(spread, 0.4), 3.0)),
+            log_odds=float(change[met]) * min(1.0, depth / total),
+        )
+    status, hidden_by, odds = _absence(context, element, column, expected_ev, depth, inside, others)
+    return LineEvidence(
+        **common,  # type: ignore[arg-type]
+        sigma_ev=sigma,
+        status=status,  # type: ignore[arg-type]
+        expected_significance=depth / noise if inside else None,
+        hidden_by=hidden_by,
+        log_odds=odds,
+    )
+
+
+def _absence(
+    context: Context, element: int, column: int, expected_ev: float, depth: float, inside: bool, others: list[int]
+) -> tuple[str, tuple[str, ...], float]:
+    """Why a line was not met: out of range, hidden, or missing; with what that costs."""
+    from .options import _missing_price
+
+    problem = context.problem
+    if not inside:
+        return "out of range", (), 0.0
+    where = np.array([expected_ev])
+    price = float(
+        _missing_price(
+            problem, where, np.array([depth]), problem.patterns.height_log_sigma[element, column : column + 1]
+        )[0]
+    )
+    noise, swallowed = float(problem.noise_at(where)[0]), float(problem.hidden_at(where)[0])
+    if depth > 4.5 * noise and swallowed < 0.8 * depth:
+        return "missing", (), -price
+    near = int(np.argmin(np.abs(problem.energy_ev - expected_ev)))
+    hidden: tuple[str, ...] = ()
+    if swallowed > 4.5 * noise:
+        total = float(context.sums.depth[near])
+        hidden = _sharers(context, others, near, total) if total > 0 else ()
+    return "hidden", hidden, -price
+
+
+def _sharers(context: Context, others: list[int], minimum: int, total: float) -> tuple[str, ...]:
+    options = context.options
+    parts = [(float(options.depth[m, minimum]), int(options.element[m])) for m in others]
+    names = context.problem.patterns.symbols
+    return tuple(names[e] for part, e in sorted(parts, reverse=True) if part >= 0.1 * total)
+
+
+def _state(symbol: str, met: list[LineEvidence], options: Options, index: int) -> StateEvidence | None:
+    """The tabulated state whose shift lies nearest to the one seen."""
+    rows = [row for row in tables.chemical_shifts(symbol) if any(row.transition == line.transition for line in met)]
+    if not rows:
+        return None
+    scored = []
+    for row in rows:
+        line = next(line for line in met if line.transition == row.transition)
+        valence = row.valence
+        seen = float(options.shift_valence_ev[index] if valence else options.shift_core_ev[index])
+        sigma = math.hypot(row.sigma_ev, math.hypot(1.5, line.found_sigma_ev or 0.0))
+        scored.append((0.5 * ((seen - row.shift_ev) / sigma) ** 2, row))
+    scored.sort(key=lambda pair: pair[0])
+    best_cost, best = scored[0]
+    rest = [(cost, row) for cost, row in scored if row.state != best.state]
+    if best_cost > 2.0 or not rest:
+        return None
+    return StateEvidence(
+        name=best.state, shift_ev=best.shift_ev, next_name=rest[0][1].state, log_odds=rest[0][0] - best_cost
+    )
+
+
+def _rivals(context: Context, element: int, met: list[LineEvidence]) -> tuple[RivalEvidence, ...]:
+    """Elements that could stand at a minimum this one claims, and why they do not, likeliest first."""
+    out: list[RivalEvidence] = []
+    for other, _ in context.posterior.replacements.get(element, ()):
+        index = int(context.posterior.best_option[other])
+        if index < 0 or other == element:
+            continue
+        rival = _rival(context, other, index, met)
+        if rival is not None:
+            out.append(rival)
+    return tuple(out[:3])
+
+
+def _rival(context: Context, other: int, index: int, met: list[LineEvidence]) -> RivalEvidence | None:
+    problem, options, axis = context.problem, context.options, context.solution.axis
+    pattern = problem.patterns
+    for line in met:
+        at = int(np.argmin(np.abs(problem.energy_ev - (line.found_ev or 0.0))))
+        columns = np.flatnonzero(options.met[index] == at)
+        if not columns.size:
+            continue
+        column = int(columns[0])
+        place = pattern.energy_ev[other] * (1 + axis.slope) + axis.offset_ev + options.shift_core_ev[index]
+        depth = options.strength[index] * tilted(pattern.height[other], pattern.energy_ev[other], axis.tilt)
+        absent = pattern.real[other] & (options.met[index] < 0) & problem.in_range(place)
+        significance = depth / problem.noise_at(place)
+        seen = absent & (significance > 4.5) & (problem.hidden_at(place) < 0.8 * depth)
+        missing = tuple(
+            (pattern.transitions[other][c], float(place[c]), float(significance[c])) for c in np.flatnonzero(seen)[:3]
+        )
+        return RivalEvidence(
+            element=pattern.symbols[other],
+            transition=pattern.transitions[other][column],
+            at_ev=float(problem.energy_ev[at]),
+            deviation_sd=float(options.moment[index, at] / max(float(options.depth[index, at]), 1e-300)),
+            missing=missing,
+            probability=float(context.posterior.probability[other]),
+        )
+    return None
+
+
+def _unexplained(context: Context) -> tuple[UnexplainedEvidence, ...]:
+    problem, axis = context.problem, context.solution.axis
+    pattern = problem.patterns
+    cost = minimum_costs(problem, context.sums)
+    left = (cost >= problem.price - 0.5) & (problem.price > 3.0)
+    place = pattern.energy_ev * (1 + axis.slope) + axis.offset_ev
+    out = []
+    for at in np.flatnonzero(left):
+        off = problem.energy_ev[at] - place
+        sigma = np.hypot(pattern.sigma_ev, 1.5)
+        near = pattern.real & (off > pattern.shift_low_ev - sigma) & (off < pattern.shift_high_ev + sigma)
+        near &= pattern.height >= 0.2
+        weight = np.max(np.where(near, np.log(pattern.height + 1e-9) - 0.5 * (off / sigma) ** 2, -np.inf), axis=1)
+        weight = weight + 0.5 * pattern.prior_log_odds
+        best = [int(e) for e in np.argsort(-weight)[:4] if np.isfinite(weight[e])]
+        out.append(
+            UnexplainedEvidence(
+                energy_ev=float(problem.energy_ev[at]),
+                significance=float(problem.significance[at]),
+                candidates=tuple(pattern.symbols[e] for e in best),
+            )
+        )
+    return tuple(sorted(out, key=lambda item: -item.significance))
+
+
+def _inseparable(context: Context, shown: list[int]) -> tuple[InseparableEvidence, ...]:
+    """Pairs of which one is there and the scan does not say which."""
+    problem, posterior, axis = context.problem, context.posterior, context.solution.axis
+    pattern, options = problem.patterns, context.options
+    out = []
+    for element, exchanged in posterior.replacements.items():
+        for other, cost in exchanged:
+            close = cost - _best_cost(context) < 3.0
+            if not close or other not in shown or not 0.05 <= posterior.probability[element] < 0.95:
+                continue
+            index = int(posterior.best_option[element])
+            strongest = int(np.argmax(options.depth[index]))
+            settle = _settling_line(problem, element, other, axis.offset_ev, axis.slope)
+            out.append(
+                InseparableEvidence(
+                    elements=(pattern.symbols[element], pattern.symbols[other]),
+                    at_ev=float(problem.energy_ev[strongest]),
+                    settle_element=settle[0] if settle else None,
+                    settle_transition=settle[1] if settle else None,
+                    settle_ev=settle[2] if settle else None,
+                    in_range=bool(settle and problem.in_range(np.array(settle[2]))),
+                )
+            )
+    return tuple(out)
+
+
+def _best_cost(context: Context) -> float:
+    from .search import total_cost
+
+    return total_cost(context.problem, context.options, context.solution.members)
+
+
+def _settling_line(
+    problem: Problem, first: int, second: int, offset_ev: float, slope: float
+) -> tuple[str, str, float] | None:
+    """The strongest line of either that the other has nothing near."""
+    pattern = problem.patterns
+    best: tuple[float, str, str, float] | None = None
+    for one, other in ((first, second), (second, first)):
+        theirs = pattern.energy_ev[other][pattern.real[other]]
+        for column in np.flatnonzero(pattern.real[one] & (pattern.height[one] >= 0.08)):
+            energy = float(pattern.energy_ev[one, column])
+            if energy > LOW_LINE_EV and np.min(np.abs(theirs - energy)) > 20.0:
+                place = energy * (1 + slope) + offset_ev
+                height = float(pattern.height[one, column])
+                if best is None or height > best[0]:
+                    best = (height, pattern.symbols[one], pattern.transitions[one][column], place)
+    return best[1:] if best else None
+
+
+def _untestable(context: Context) -> tuple[UntestableEvidence, ...]:
+    """Elements none of whose strong lines lies in the scan."""
+    problem, axis = context.problem, context.solution.axis
+    pattern = problem.patterns
+    place = pattern.energy_ev * (1 + axis.slope) + axis.offset_ev
+    strong = pattern.real & (pattern.height >= 0.15)
+    tested = np.any(strong & problem.in_range(place), axis=1)
+    out = []
+    for element in np.flatnonzero(~tested):
+        strongest = float(pattern.energy_ev[element, int(np.argmax(pattern.height[element]))])
+        out.append(UntestableEvidence(element=pattern.symbols[element], cause="out of range", nearest_ev=strongest))
+    return tuple(out)

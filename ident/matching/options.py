@@ -1,0 +1,193 @@
+"""Ways in which one element could be present: which line met which minimum, hence shift and strength."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from ..patterns import IntArray, tilted
+from ..scale import ELEMENT_SIGMA_EV
+from ..spectrum import FloatArray
+from .problem import Problem
+
+ANCHOR_HEIGHT = 0.25  # only lines this strong fix an element's strength
+REACH = 3.5  # standard deviations
+HIDDEN_THRESHOLD = 4.5
+LEAST_CHANCE = 3e-3  # floor of the chance that a line is missing for reasons not modelled
+PER_ELEMENT = 7
+SHARP_EV, SHARP_LOG_SIGMA = 1.6, 0.45  # what a published line on a fitted axis says of energy and ln height
+CORE_PART = 0.45  # core lines move about half as far as the valence lines of the light elements
+STATE_PRICE, UNKNOWN_STATE_PRICE = 0.7, 2.0
+
+
+@dataclass(frozen=True, kw_only=True)
+class Axis:
+    """A trial of what all lines share."""
+
+    offset_ev: float = 0.0
+    slope: float = 0.0
+    sigma_ev: float = 1.0  # what is still unknown of the axis at a line
+    tilt: float = 0.0
+
+
+@dataclass(frozen=True, kw_only=True, eq=False)
+class Options:
+    """o options; matrices are (o, f) over minima."""
+
+    element: IntArray
+    strength: FloatArray
+    shift_core_ev: FloatArray
+    shift_valence_ev: FloatArray
+    price: FloatArray  # element, shift and missing lines together
+    depth: FloatArray  # predicted depth at each minimum
+    moment: FloatArray  # depth * deviation in standard deviations
+    spread: FloatArray  # depth * log-sigma of the height
+    loose: FloatArray  # depth * ln of how much less a line says than a published one, for width of both priors
+    met: IntArray  # (o, l): minimum each line met, -1 for none
+
+    def take(self, keep: NDArray[np.bool_] | IntArray) -> Options:
+        """Some of the options."""
+        return Options(**{name: getattr(self, name)[keep] for name in self.__dataclass_fields__})
+
+
+def build_options(problem: Problem, axis: Axis) -> Options:
+    """Every way in which each element could meet the minima on this axis, the promising ones kept."""
+    pattern = problem.patterns
+    place = pattern.energy_ev * (1.0 + axis.slope) + axis.offset_ev
+    height = tilted(pattern.height, pattern.energy_ev, axis.tilt)
+    sigma = np.hypot(pattern.sigma_ev, axis.sigma_ev)
+    row, column, minimum = _anchors(problem, place, sigma)
+    deviation = problem.energy_ev[minimum] - place[row, column]
+    shift, shift_price = _shift(problem, row, column, deviation, sigma[row, column])
+    valence = pattern.valence[row, column]
+    core_shift = np.where(valence, CORE_PART * shift, shift)
+    valence_shift = shift
+    strength = problem.depth[minimum] / height[row, column]
+    options = _evaluate(problem, row, strength, core_shift, valence_shift, place, height, sigma)
+    price = options.price + shift_price
+    options = Options(**{**options.__dict__, "price": price})
+    return _promising(problem, options)
+
+
+def _anchors(problem: Problem, place: FloatArray, sigma: FloatArray) -> tuple[IntArray, IntArray, IntArray]:
+    """Pairs of a strong line and a minimum within the reach of shift and uncertainty."""
+    pattern = problem.patterns
+    inside = problem.in_range(place) & pattern.real & pattern.firm
+    # the strongest line in range counts as strong, however weak beside those out of range
+    best = np.max(np.where(inside, pattern.height, 0.0), axis=1, keepdims=True)
+    strong = inside & (pattern.height >= ANCHOR_HEIGHT * best) & problem.testable[:, None]
+    rows, columns = np.nonzero(strong)
+    low = place[rows, columns] + pattern.shift_low_ev[rows, columns] - 1.5 * sigma[rows, columns]
+    high = place[rows, columns] + pattern.shift_high_ev[rows, columns] + 1.5 * sigma[rows, columns]
+    pair, minimum = np.nonzero((problem.energy_ev >= low[:, None]) & (problem.energy_ev <= high[:, None]))
+    return rows[pair], columns[pair], minimum
+
+
+def _shift(
+    problem: Problem, row: IntArray, column: IntArray, deviation: FloatArray, sigma: FloatArray
+) -> tuple[FloatArray, FloatArray]:
+    """Shift that an anchor asks for, pulled towards the likeliest state, and the price of that state.
+
+    A state of the table is taken as likely as the reference state; a shift that no state explains is dearer the
+    wider it is of what the element's chemistry allows.
+    """
+    pattern = problem.patterns
+    low, high = pattern.shift_low_ev[row, column], pattern.shift_high_ev[row, column]
+    wide = np.where(deviation < 0, np.maximum(-low / 2.0, ELEMENT_SIGMA_EV), np.maximum(high / 1.5, 0.8))
+    valence = pattern.valence[row, column].astype(int)
+    centre = pattern.state_shift_ev[row, valence].T  # (states, anchors)
+    spread = np.hypot(pattern.state_sigma_ev[row, valence].T, 1.0)
+    fixed = [np.zeros_like(deviation)], [np.full_like(deviation, ELEMENT_SIGMA_EV)]
+    centre = np.concatenate([fixed[0], fixed[0], centre])
+    spread = np.concatenate([fixed[1], [wide], spread])
+    base = np.full(centre.shape, STATE_PRICE)
+    base[0], base[1] = 0.0, UNKNOWN_STATE_PRICE
+    with np.errstate(invalid="ignore"):
+        cost = base + 0.5 * (deviation - centre) ** 2 / (spread**2 + sigma**2)
+        cost = np.where(np.isfinite(spread), cost, np.inf)
+    best = np.argmin(cost, axis=0)
+    at = np.arange(deviation.size)
+    centre, spread = centre[best, at], spread[best, at]
+    shift = centre + (deviation - centre) * spread**2 / (spread**2 + sigma**2)
+    return shift, base[best, at] + 0.5 * ((shift - centre) / spread) ** 2
+
+
+def _evaluate(
+    problem: Problem,
+    row: IntArray,
+    strength: FloatArray,
+    core_shift: FloatArray,
+    valence_shift: FloatArray,
+    place: FloatArray,
+    height: FloatArray,
+    sigma: FloatArray,
+) -> Options:
+    """Predict depths at minima and price missing lines for options given by element, shift and strength."""
+    pattern, count = problem.patterns, problem.energy_ev.size
+    valence = pattern.valence[row]
+    where = place[row] + np.where(valence, valence_shift[:, None], core_shift[:, None])
+    depth = strength[:, None] * height[row]
+    # the class of lines that the anchor does not belong to follows the shift only loosely
+    anchored_core = (np.abs(valence_shift - core_shift) < 0.05 * np.abs(valence_shift) + 1e-6)[:, None]
+    loose = np.where(valence, 1.5 + 0.7 * np.abs(core_shift)[:, None], 0.35 * np.abs(valence_shift)[:, None])
+    spread = np.where(valence == anchored_core, loose, 0.0)
+    reach = np.hypot(sigma[row], spread)
+    nearest = _nearest(problem.energy_ev, where)
+    off = (problem.energy_ev[nearest] - where) / np.hypot(reach, problem.sigma_ev[nearest])
+    real = pattern.real[row]
+    inside = problem.in_range(where) & real
+    met = real & (np.abs(off) < REACH) & (depth > 0.04 * problem.depth[nearest])
+    missing = inside & ~met
+    log_sigma = pattern.height_log_sigma[row]
+    price = np.sum(np.where(missing, _missing_price(problem, where, depth, log_sigma), 0.0), axis=1)
+    rows = np.broadcast_to(np.arange(row.size)[:, None], met.shape)[met]
+    flat = rows * count + nearest[met]
+    size = row.size * count
+
+    def gathered(values: FloatArray) -> FloatArray:
+        return np.asarray(np.bincount(flat, weights=values[met], minlength=size), dtype=float).reshape(row.size, count)
+
+    return Options(
+        element=row,
+        strength=strength,
+        shift_core_ev=core_shift,
+        shift_valence_ev=valence_shift,
+        price=price + problem.element_price[row],
+        depth=gathered(depth),
+        moment=gathered(depth * off),
+        spread=gathered(depth * log_sigma),
+        loose=gathered(depth * np.log(reach / SHARP_EV * log_sigma / SHARP_LOG_SIGMA)),
+        met=np.where(met, nearest, -1),
+    )
+
+
+def _nearest(sorted_ev: FloatArray, wanted_ev: FloatArray) -> IntArray:
+    right = np.clip(np.searchsorted(sorted_ev, wanted_ev), 1, max(sorted_ev.size - 1, 1))
+    right = np.minimum(right, sorted_ev.size - 1)
+    left = np.maximum(right - 1, 0)
+    closer_left = np.abs(sorted_ev[left] - wanted_ev) <= np.abs(sorted_ev[right] - wanted_ev)
+    nearest: IntArray = np.where(closer_left, left, right)
+    return nearest
+
+
+def _missing_price(problem: Problem, where: FloatArray, depth: FloatArray, log_sigma: FloatArray) -> FloatArray:
+    """-ln of the chance that a line of this expected depth stayed under noise and neighbours."""
+    seen_from = np.hypot(HIDDEN_THRESHOLD * problem.noise_at(where), problem.hidden_at(where))
+    x = np.log(np.maximum(depth, 1e-300) / seen_from) / np.hypot(log_sigma, 0.2)
+    chance = 1.0 / (1.0 + np.exp(np.clip(1.702 * x, -40.0, 40.0)))  # logistic stand-in for the normal integral
+    return -np.log(chance + LEAST_CHANCE) + np.log(1.0 + LEAST_CHANCE)
+
+
+def _promising(problem: Problem, options: Options) -> Options:
+    """The best few of each element, by what they gain alone."""
+    from .search import alone
+
+    gain = alone(problem, options)
+    order = np.lexsort((-gain, options.element))
+    element = options.element[order]
+    first = np.r_[True, element[1:] != element[:-1]]
+    rank = np.arange(order.size) - np.maximum.accumulate(np.where(first, np.arange(order.size), 0))
+    keep = order[(rank < PER_ELEMENT) & (gain[order] > -6.0)]
+    return options.take(keep)

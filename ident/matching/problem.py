@@ -1,0 +1,120 @@
+"""The question put to the matcher, as arrays: minima, their price if unexplained, lines, noise, priors."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from ..minima import Analysis
+from ..patterns import Patterns, all_patterns
+from ..spectrum import FloatArray
+from .settings import Settings
+
+# Prices are natural logarithms of odds. What a minimum costs when no element explains it, per its significance:
+UNEXPLAINED, UNEXPLAINED_RISE = 7.0, 1.6
+LOW_ENERGY_EV = 60.0
+TAIL_PART, TAIL_REACH_EV = 0.16, 30.0  # losses below a strong line
+SATELLITE_PART, SATELLITE_REACH_EV = 0.07, 35.0  # satellites and steps above it
+ELEMENT_PRICE, COMMONNESS_WEIGHT, EVEN_PRICE = 5.2, 0.9, 8.0
+EXPECTED_BONUS = 2.5
+
+
+@dataclass(frozen=True, kw_only=True, eq=False)
+class Problem:
+    """Minima (f,) rising in energy, and lines (e, l) of the elements considered."""
+
+    energy_ev: FloatArray
+    sigma_ev: FloatArray
+    depth: FloatArray
+    significance: FloatArray
+    price: FloatArray  # of leaving each minimum unexplained
+    patterns: Patterns
+    element_price: FloatArray  # (e,)
+    testable: NDArray[np.bool_]  # (e,)
+    ranges_ev: tuple[tuple[float, float], ...]
+    noise_energy_ev: FloatArray  # joined over the windows, rising
+    noise_depth: FloatArray
+    floor_depth: FloatArray  # depth that strong minima could hide, on the same axis
+    settings: Settings
+    ordinate: str  # "n", "en" or "auto"
+
+    def noise_at(self, energy_ev: FloatArray) -> FloatArray:
+        """Noise of the depth of an ordinary line; any shape in eV."""
+        return np.interp(energy_ev, self.noise_energy_ev, self.noise_depth)
+
+    def hidden_at(self, energy_ev: FloatArray) -> FloatArray:
+        """Depth that could stand there without showing as a minimum of its own; any shape in eV."""
+        return np.interp(energy_ev, self.noise_energy_ev, self.floor_depth)
+
+    def in_range(self, energy_ev: FloatArray) -> NDArray[np.bool_]:
+        """Whether a line there would have been seen: inside a window and clear of its ends."""
+        inside = np.zeros(np.shape(energy_ev), dtype=bool)
+        for low, high in self.ranges_ev:
+            edge = min(8.0, 0.12 * (high - low))
+            inside |= (energy_ev >= low + 0.5 * edge) & (energy_ev <= high - edge)
+        return inside
+
+
+def pose(analysis: Analysis, settings: Settings) -> Problem:
+    """Turn an analysis into arrays."""
+    minima = analysis.minima
+    energy = np.array([m.energy_ev for m in minima])
+    depth = np.array([m.depth for m in minima])
+    significance = np.array([m.significance for m in minima])
+    width = np.array([m.width_ev for m in minima])
+    patterns = all_patterns()
+    grid = np.concatenate([noise.energy_ev for noise in analysis.depth_noise])
+    noise = np.concatenate([noise.noise for noise in analysis.depth_noise])
+    order = np.argsort(grid, kind="stable")
+    grid, noise = grid[order], noise[order]
+    price = _element_price(patterns, settings)
+    testable = np.array([symbol not in settings.rule_out for symbol in patterns.symbols])
+    return Problem(
+        energy_ev=energy,
+        sigma_ev=np.array([m.sigma_ev for m in minima]),
+        depth=depth,
+        significance=significance,
+        price=_unexplained_price(energy, depth, significance),
+        patterns=patterns,
+        element_price=price,
+        testable=testable,
+        ranges_ev=analysis.spectrum.ranges_ev,
+        noise_energy_ev=grid,
+        noise_depth=noise,
+        floor_depth=_hidden_depth(grid, energy, depth, width),
+        settings=settings,
+        ordinate=analysis.spectrum.ordinate,
+    )
+
+
+def _unexplained_price(energy: FloatArray, depth: FloatArray, significance: FloatArray) -> FloatArray:
+    """Less near the secondary edge, much less where a strong line's losses and satellites stand."""
+    price = UNEXPLAINED + UNEXPLAINED_RISE * np.log(np.maximum(significance, 1.0) / 5.0)
+    price = price * np.clip(0.35 + 0.65 * (energy - 25.0) / (LOW_ENERGY_EV - 25.0), 0.35, 1.0)
+    below = energy[None, :] - energy[:, None]  # strong (column) minus this one (row)
+    tail = np.where((below > 0) & (below < TAIL_REACH_EV), TAIL_PART, 0.0)
+    satellite = np.where((below < 0) & (-below < SATELLITE_REACH_EV), SATELLITE_PART, 0.0)
+    likely = np.max((tail + satellite) * depth[None, :], axis=1, initial=0.0)
+    scale = np.clip(np.log(depth / np.maximum(likely, 1e-300)) / np.log(4.0), 0.0, 1.0)
+    return np.maximum(1.0, price * (0.15 + 0.85 * scale))
+
+
+def _hidden_depth(grid: FloatArray, energy: FloatArray, depth: FloatArray, width: FloatArray) -> FloatArray:
+    """What the shape of each minimum could swallow beside it."""
+    if not energy.size:
+        return np.zeros_like(grid)
+    away = (grid[None, :] - energy[:, None]) / (0.55 * width[:, None])
+    near = 0.45 * np.exp(-0.5 * (away / 1.3) ** 2)
+    far = 0.07 * np.exp(-0.5 * (away / np.where(away < 0, 5.0, 3.5)) ** 2)
+    return np.max(depth[:, None] * np.maximum(near, far), axis=0)
+
+
+def _element_price(patterns: Patterns, settings: Settings) -> FloatArray:
+    if settings.commonness:
+        price = ELEMENT_PRICE - COMMONNESS_WEIGHT * patterns.prior_log_odds
+    else:
+        price = np.full(len(patterns.symbols), EVEN_PRICE)
+    expected = np.array([symbol in settings.expect for symbol in patterns.symbols])
+    return np.where(expected, price - EXPECTED_BONUS, price)

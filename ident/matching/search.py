@@ -1,0 +1,125 @@
+"""Search over element sets: add what gains most, then let every member be exchanged, until nothing gains."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from ..spectrum import FloatArray
+from .options import Options
+from .problem import Problem
+
+OVERSHOOT_CAP = 9.0
+MOST_MEMBERS = 18
+HEIGHT_FLOOR = 0.4
+
+
+@dataclass(frozen=True, kw_only=True, eq=False)
+class Sums:
+    """What a set of options predicts at each minimum, (f,) or (o, f)."""
+
+    depth: FloatArray
+    moment: FloatArray
+    spread: FloatArray
+    loose: FloatArray
+
+    def plus(self, options: Options) -> Sums:
+        """The same with each option added in turn."""
+        return Sums(
+            depth=self.depth + options.depth,
+            moment=self.moment + options.moment,
+            spread=self.spread + options.spread,
+            loose=self.loose + options.loose,
+        )
+
+
+def minimum_costs(problem: Problem, sums: Sums) -> FloatArray:
+    """Cost of every minimum under a prediction: how far off, how deep against expected, at most unexplained."""
+    depth = np.maximum(sums.depth, 1e-300)
+    off = sums.moment / depth
+    spread = np.maximum(sums.spread / depth, HEIGHT_FLOOR)
+    ratio = np.log(problem.depth / depth) / spread
+    position = 0.5 * off**2
+    height = 0.5 * np.minimum(ratio**2, 2.0 * OVERSHOOT_CAP)
+    cost = position + height + np.maximum(sums.loose / depth, 0.0)
+    price = problem.price
+    # deeper than predicted: the rest may be something else's, so it never costs more than the unexplained
+    capped = np.where(ratio > 0, np.minimum(cost, price), np.minimum(cost, price + OVERSHOOT_CAP))
+    return np.where(sums.depth > 0, capped, price)
+
+
+def empty_sums(problem: Problem) -> Sums:
+    """The prediction of no element at all."""
+    zero = np.zeros(problem.energy_ev.size)
+    return Sums(depth=zero, moment=zero, spread=zero, loose=zero)
+
+
+def alone(problem: Problem, options: Options) -> FloatArray:
+    """What each option gains by itself over explaining nothing, (o,)."""
+    sums = empty_sums(problem).plus(options)
+    return float(np.sum(problem.price)) - np.sum(minimum_costs(problem, sums), axis=1) - options.price
+
+
+def sums_of(problem: Problem, options: Options, members: list[int]) -> Sums:
+    """What the members predict together."""
+    if not members:
+        return empty_sums(problem)
+    return Sums(
+        depth=options.depth[members].sum(axis=0),
+        moment=options.moment[members].sum(axis=0),
+        spread=options.spread[members].sum(axis=0),
+        loose=options.loose[members].sum(axis=0),
+    )
+
+
+def total_cost(problem: Problem, options: Options, members: list[int]) -> float:
+    """Cost of a set of options, natural log units."""
+    return float(np.sum(minimum_costs(problem, sums_of(problem, options, members))) + np.sum(options.price[members]))
+
+
+def costs_with_each(problem: Problem, options: Options, members: list[int]) -> FloatArray:
+    """Cost of the set with each option added, (o,); elements already in the set are infinitely dear."""
+    sums = sums_of(problem, options, members).plus(options)
+    cost = np.sum(minimum_costs(problem, sums), axis=1) + options.price + float(np.sum(options.price[members]))
+    taken = np.zeros(problem.element_price.size, dtype=bool)
+    taken[options.element[members]] = True
+    return np.where(taken[options.element], np.inf, cost)
+
+
+def search(problem: Problem, options: Options, *, passes: int = 3) -> tuple[list[int], float]:
+    """Best set of options found, as indices, and its cost."""
+    members: list[int] = []
+    cost = total_cost(problem, options, members)
+    if not options.element.size:
+        return members, cost
+    members, cost = _grow(problem, options, members, cost)
+    for _ in range(passes):
+        members, better = _exchange(problem, options, members, cost)
+        members, better = _grow(problem, options, members, better)
+        if better > cost - 1e-6:
+            break
+        cost = better
+    return members, cost
+
+
+def _grow(problem: Problem, options: Options, members: list[int], cost: float) -> tuple[list[int], float]:
+    while len(members) < MOST_MEMBERS:
+        costs = costs_with_each(problem, options, members)
+        best = int(np.argmin(costs))
+        if not costs[best] < cost - 1e-6:
+            break
+        members, cost = [*members, best], float(costs[best])
+    return members, cost
+
+
+def _exchange(problem: Problem, options: Options, members: list[int], cost: float) -> tuple[list[int], float]:
+    """Take each member out in turn and put the best of everything, or nothing, in its place."""
+    for member in list(members):
+        rest = [m for m in members if m != member]
+        without = total_cost(problem, options, rest)
+        costs = costs_with_each(problem, options, rest)
+        best = int(np.argmin(costs))
+        if min(without, costs[best]) < cost - 1e-6:
+            members, cost = (rest, without) if without <= costs[best] else ([*rest, best], float(costs[best]))
+    return members, cost

@@ -1,0 +1,153 @@
+"""Find the axis and the element set together: several starts, then fit and search in turn."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from ..scale import (
+    INSULATOR_SIGMA_EV,
+    OFFSET_CENTRE_EV,
+    OFFSET_SIGMA_EV,
+    SLOPE_CENTRE,
+    SLOPE_SIGMA,
+    AxisFit,
+    fit_axis,
+)
+from .options import Axis, Options, build_options
+from .problem import Problem
+from .search import search, sums_of
+
+STARTS_EV = (-7.0, -3.5, 0.0, 3.5, 7.0)
+START_SIGMA_EV = 2.0
+FITTED_SIGMA_EV = 0.7
+# The tables' heights are of E N(E), as a cylindrical mirror records it; N(E) tilts them by the power -1 of energy.
+TILT_CENTRES = {"en": (0.0,), "n": (-1.0,), "auto": (0.0, -1.0)}
+TILT_SIGMA = 0.35
+SETTLED, WORTH_SETTLING = 3, 12.0
+LEAST_SHARE = 0.4
+
+
+@dataclass(frozen=True, kw_only=True, eq=False)
+class Solution:
+    """One explanation: the axis, and the set found on it. `cost` counts the axis too."""
+
+    axis: Axis
+    fit: AxisFit
+    options: Options
+    members: list[int]
+    cost: float
+
+
+def solve(problem: Problem) -> list[Solution]:
+    """Search from several axes, settle the promising ones, and give the explanations, cheapest first."""
+    insulator = problem.settings.insulator
+    starts = np.arange(-60.0, 61.0, 4.0) if insulator else np.array(STARTS_EV)
+    tried = []
+    for tilt in TILT_CENTRES[problem.ordinate]:
+        for start in starts:
+            offset = OFFSET_CENTRE_EV + float(start)
+            axis = Axis(offset_ev=offset, slope=SLOPE_CENTRE, sigma_ev=START_SIGMA_EV, tilt=tilt)
+            options = build_options(problem, axis)
+            members, cost = search(problem, options, passes=1)
+            tried.append((cost + _axis_price(offset, SLOPE_CENTRE, insulator), members, options, axis))
+    tried.sort(key=lambda trial: trial[0])
+    settled: list[Solution] = []
+    for cost, members, options, axis in tried[:SETTLED]:
+        if cost <= tried[0][0] + WORTH_SETTLING:
+            settled.append(_settle(problem, axis, options, members, tilt_centre=axis.tilt))
+    return _distinct(sorted(settled, key=lambda solution: solution.cost))
+
+
+def _distinct(solutions: list[Solution]) -> list[Solution]:
+    """Leave out explanations that arrived at the same elements on nearly the same axis."""
+    kept: list[Solution] = []
+    for solution in solutions:
+        elements = set(solution.options.element[solution.members].tolist())
+        same = any(
+            elements == set(other.options.element[other.members].tolist())
+            and abs(solution.axis.offset_ev - other.axis.offset_ev) < 1.5
+            for other in kept
+        )
+        if not same:
+            kept.append(solution)
+    return kept
+
+
+def _axis_price(offset_ev: float, slope: float, insulator: bool) -> float:
+    sigma = INSULATOR_SIGMA_EV if insulator else OFFSET_SIGMA_EV
+    away, turned = (offset_ev - OFFSET_CENTRE_EV) / np.hypot(sigma, 1.0), (slope - SLOPE_CENTRE) / SLOPE_SIGMA
+    return 0.5 * float(away**2 + turned**2)
+
+
+def _settle(
+    problem: Problem, axis: Axis, options: Options, members: list[int], *, tilt_centre: float
+) -> Solution:
+    insulator = problem.settings.insulator
+    fit = _fit(problem, options, members)
+    cost = np.inf
+    for _ in range(2):
+        axis = Axis(
+            offset_ev=fit.offset_ev,
+            slope=fit.slope,
+            sigma_ev=FITTED_SIGMA_EV,
+            tilt=_tilt(problem, options, members, tilt_centre),
+        )
+        options = build_options(problem, axis)
+        members, cost = search(problem, options)
+        fit = _fit(problem, options, members)
+    cost += _axis_price(fit.offset_ev, fit.slope, insulator) + 0.5 * ((axis.tilt - tilt_centre) / TILT_SIGMA) ** 2
+    return Solution(axis=axis, fit=fit, options=options, members=members, cost=cost)
+
+
+def _pairs(
+    problem: Problem, options: Options, members: list[int]
+) -> tuple[np.ndarray, np.ndarray, np.ndarray, np.ndarray]:
+    """Lines of the members that carry most of a minimum: member's place, element, line, minimum."""
+    sums = sums_of(problem, options, members)
+    place, element, line, minimum = [], [], [], []
+    for number, member in enumerate(members):
+        for column in np.flatnonzero(options.met[member] >= 0):
+            at = int(options.met[member, column])
+            if options.depth[member, at] > LEAST_SHARE * sums.depth[at]:
+                place.append(number)
+                element.append(int(options.element[member]))
+                line.append(int(column))
+                minimum.append(at)
+    return np.array(place, int), np.array(element, int), np.array(line, int), np.array(minimum, int)
+
+
+def _fit(problem: Problem, options: Options, members: list[int]) -> AxisFit:
+    place, element, line, minimum = _pairs(problem, options, members)
+    pattern = problem.patterns
+    absolute = pattern.energy_ev[element, line]
+    # a shift beyond the usual is chemistry of that element and no news of the axis
+    chemistry = np.where(
+        pattern.valence[element, line],
+        options.shift_valence_ev[np.array(members, int)][place] if place.size else 0.0,
+        options.shift_core_ev[np.array(members, int)][place] if place.size else 0.0,
+    )
+    sigma = np.hypot(pattern.sigma_ev[element, line], problem.sigma_ev[minimum])
+    sigma = np.hypot(sigma, 0.7 * np.abs(chemistry))
+    sigma = np.where(pattern.valence[element, line], np.hypot(sigma, 2.5), sigma)
+    deviation = problem.energy_ev[minimum] - absolute
+    offset_sigma = INSULATOR_SIGMA_EV if problem.settings.insulator else OFFSET_SIGMA_EV
+    return fit_axis(absolute, deviation, sigma, place, len(members), offset_sigma_ev=offset_sigma)
+
+
+def _tilt(problem: Problem, options: Options, members: list[int], centre: float) -> float:
+    """Common tilt of ln depth with ln energy, strengths free, with a prior about `centre`."""
+    place, element, line, minimum = _pairs(problem, options, members)
+    if place.size < 2:
+        return centre
+    pattern = problem.patterns
+    x = np.log(np.maximum(pattern.energy_ev[element, line], 15.0) / 400.0)
+    y = np.log(problem.depth[minimum] / pattern.height[element, line]) - centre * x
+    weight = pattern.height_log_sigma[element, line] ** -2
+    design = np.zeros((place.size, 1 + len(members)))
+    design[:, 0] = x
+    design[np.arange(place.size), 1 + place] = 1.0
+    prior = np.r_[TILT_SIGMA**-2, np.full(len(members), 1e-3)]
+    solution = np.linalg.solve(design.T @ (design * weight[:, None]) + np.diag(prior), design.T @ (weight * y))
+    return centre + float(np.clip(solution[0], -0.8, 0.8))

@@ -1,0 +1,102 @@
+"""What an element looks like: its lines on an axis, their depths under a tilt, padded to arrays."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import lru_cache
+
+import numpy as np
+from numpy.typing import NDArray
+
+from . import tables
+from .spectrum import FloatArray
+
+IntArray = NDArray[np.int64]
+TILT_PIVOT_EV = 400.0
+
+
+@dataclass(frozen=True, kw_only=True, eq=False)
+class Patterns:
+    """Lines of all elements as padded arrays (elements, lines); `real` says which places hold a line."""
+
+    symbols: tuple[str, ...]
+    z: IntArray
+    transitions: tuple[tuple[str, ...], ...]
+    energy_ev: FloatArray
+    sigma_ev: FloatArray
+    height: FloatArray
+    height_log_sigma: FloatArray
+    valence: NDArray[np.bool_]
+    real: NDArray[np.bool_]
+    firm: NDArray[np.bool_]  # published, or the best there is for its element
+    shift_low_ev: FloatArray  # (elements, lines): how far down and up chemistry may move the line
+    shift_high_ev: FloatArray
+    prior_log_odds: FloatArray  # (elements,) of being on a technical surface
+    state_shift_ev: FloatArray  # (elements, 2, states): shifts of known states, core lines then valence lines
+    state_sigma_ev: FloatArray  # their standard deviations; infinite where there is no state
+
+
+@lru_cache(maxsize=1)
+def all_patterns() -> Patterns:
+    """The patterns of every element in the table of lines."""
+    common = tables.commonness()
+    grouped: dict[str, list[tables.Line]] = {}
+    for line in tables.read_lines():
+        grouped.setdefault(line.symbol, []).append(line)
+    symbols = tuple(sorted(grouped, key=lambda symbol: grouped[symbol][0].z))
+    most = max(len(lines) for lines in grouped.values())
+    shape = (len(symbols), most)
+    arrays = {name: np.zeros(shape) for name in ("energy", "sigma", "height", "log_sigma", "low", "high")}
+    arrays["sigma"][:] = arrays["log_sigma"][:] = 1.0
+    valence, real, firm = (np.zeros(shape, dtype=bool) for _ in range(3))
+    names = []
+    for row, symbol in enumerate(symbols):
+        lines = sorted(grouped[symbol], key=lambda line: -line.relative_height)
+        published = any(line.energy_kind == "published" for line in lines)
+        names.append(tuple(line.transition for line in lines))
+        for column, line in enumerate(lines):
+            place = (row, column)
+            arrays["energy"][place], arrays["sigma"][place] = line.energy_ev, line.sigma_ev
+            arrays["height"][place], arrays["log_sigma"][place] = line.relative_height, line.height_log_sigma
+            valence[place], real[place] = bool(line.valence), True
+            firm[place] = line.energy_kind == "published" or not published
+            arrays["low"][place], arrays["high"][place] = tables.shift_range(symbol, bool(line.valence))
+    probability = np.clip(np.array([common[symbol] for symbol in symbols]), 1e-5, 1 - 1e-5)
+    state_shift, state_sigma = _states(symbols)
+    return Patterns(
+        symbols=symbols,
+        z=np.array([grouped[symbol][0].z for symbol in symbols]),
+        transitions=tuple(names),
+        energy_ev=arrays["energy"],
+        sigma_ev=arrays["sigma"],
+        height=arrays["height"],
+        height_log_sigma=arrays["log_sigma"],
+        valence=valence,
+        real=real,
+        firm=firm,
+        shift_low_ev=arrays["low"],
+        shift_high_ev=arrays["high"],
+        prior_log_odds=np.log(probability / (1 - probability)),
+        state_shift_ev=state_shift,
+        state_sigma_ev=state_sigma,
+    )
+
+
+def _states(symbols: tuple[str, ...]) -> tuple[FloatArray, FloatArray]:
+    """Shifts of the tabulated states, padded; the state that a line's energy refers to comes first."""
+    rows: dict[tuple[int, int], list[tuple[float, float]]] = {}
+    for index, symbol in enumerate(symbols):
+        for row in tables.chemical_shifts(symbol):
+            rows.setdefault((index, int(row.valence)), []).append((row.shift_ev, row.sigma_ev))
+    most = 1 + max((len(states) for states in rows.values()), default=0)
+    shift = np.zeros((len(symbols), 2, most))
+    sigma = np.full((len(symbols), 2, most), np.inf)
+    for (index, valence), states in rows.items():
+        for column, (shift_ev, sigma_ev) in enumerate(states, start=1):
+            shift[index, valence, column], sigma[index, valence, column] = shift_ev, sigma_ev
+    return shift, sigma
+
+
+def tilted(height: FloatArray, energy_ev: FloatArray, tilt: float) -> FloatArray:
+    """Heights under a tilt of all depths together: transmission, beam energy, a film on top."""
+    return height * (np.maximum(energy_ev, 15.0) / TILT_PIVOT_EV) ** tilt

@@ -1,0 +1,154 @@
+"""Where the tables are, which edition they are, and how a file becomes checked rows."""
+
+from __future__ import annotations
+
+import csv
+import math
+from collections.abc import Iterator
+from dataclasses import dataclass, fields
+from functools import cache
+from pathlib import Path
+from typing import Any, TypeVar, get_type_hints
+
+from ..errors import TableError
+
+Row = TypeVar("Row")
+
+
+@dataclass(frozen=True, kw_only=True)
+class TableFile:
+    """One table: its file, how many rows, how many bytes."""
+
+    name: str
+    rows: int
+    size_bytes: int
+
+    def __str__(self) -> str:
+        return f"{self.name:<24}{self.rows:>7} rows"
+
+
+@cache
+def reference_folder() -> Path:
+    """Folder of the tables: inside the package, or beside it in a checkout.
+
+    Raises
+    ------
+    TableError
+        When neither is there.
+    """
+    package = Path(__file__).resolve().parents[1]
+    inside = package / "reference"
+    if inside.is_dir():
+        return inside
+    beside = package.parent / "reference"
+    if beside.is_dir() and (package.parent / "pyproject.toml").is_file():
+        return beside
+    raise TableError(f"the tables are missing; looked in {inside} and {beside}: install ident again", file="reference")
+
+
+@cache
+def edition() -> str:
+    """Edition of the tables: the first heading of EDITIONS.md, such as 2026.12."""
+    path = reference_folder() / "EDITIONS.md"
+    try:
+        text = path.read_text(encoding="utf-8")
+    except OSError as error:
+        raise TableError("cannot be read", file=path.name) from error
+    for line in text.splitlines():
+        if line.startswith("## "):
+            return line[3:].strip()
+    raise TableError("holds no edition (a heading '## YEAR.MONTH')", file=path.name)
+
+
+def list_tables() -> tuple[TableFile, ...]:
+    """Every table with its number of rows."""
+    out = []
+    for path in sorted(reference_folder().glob("*.csv")):
+        with path.open(encoding="utf-8", newline="") as stream:
+            count = sum(1 for _ in csv.reader(stream)) - 1
+        out.append(TableFile(name=path.name, rows=count, size_bytes=path.stat().st_size))
+    return tuple(out)
+
+
+def read_rows(name: str, kind: type[Row], folder: Path | None = None) -> tuple[Row, ...]:
+    """Read a table into rows of a frozen dataclass whose fields are its columns.
+
+    Raises
+    ------
+    TableError
+        With file, line, column and value of the first cell that does not fit.
+    """
+    return tuple(_rows((folder or reference_folder()) / name, kind))
+
+
+def _rows(path: Path, kind: type[Row]) -> Iterator[Row]:
+    names = [field.name for field in fields(kind)]  # type: ignore[arg-type]
+    types = get_type_hints(kind)
+    try:
+        stream = path.open(encoding="utf-8", newline="")
+    except OSError as error:
+        raise TableError("cannot be read", file=path.name) from error
+    with stream:
+        reader = csv.reader(stream)
+        header = next(reader, [])
+        if header != names:
+            raise TableError(f"columns must be {','.join(names)}", file=path.name, line=1, value=",".join(header))
+        readers = [_READERS[types[name]] for name in names]
+        for cells in reader:
+            line = reader.line_num
+            if len(cells) != len(names):
+                raise TableError(f"has {len(cells)} cells, not {len(names)}", file=path.name, line=line)
+            values: dict[str, Any] = {}
+            for name, read, cell in zip(names, readers, cells, strict=True):
+                try:
+                    values[name] = read(cell)
+                except ValueError as error:
+                    raise TableError(str(error), file=path.name, line=line, column=name, value=cell) from None
+            yield _checked(path, line, kind, values)
+
+
+def _checked(path: Path, line: int, kind: type[Row], values: dict[str, Any]) -> Row:
+    try:
+        return kind(**values)
+    except ValueError as error:
+        column, _, what = str(error).partition(": ")
+        raise TableError(what, file=path.name, line=line, column=column, value=str(values.get(column))) from None
+
+
+def _number(cell: str) -> float:
+    try:
+        value = float(cell)
+    except ValueError:
+        raise ValueError("is not a number") from None
+    if not math.isfinite(value):
+        raise ValueError("is not a finite number")
+    return value
+
+
+def _optional(cell: str) -> float | None:
+    return None if cell == "" else _number(cell)
+
+
+def _integer(cell: str) -> int:
+    if not cell.lstrip("-").isdigit():
+        raise ValueError("is not a whole number")
+    return int(cell)
+
+
+def _text(cell: str) -> str:
+    return cell
+
+
+def _flag(cell: str) -> bool:
+    if cell not in {"0", "1"}:
+        raise ValueError("must be 0 or 1")
+    return cell == "1"
+
+
+_READERS: dict[Any, Any] = {
+    float: _number,
+    float | None: _optional,
+    int: _integer,
+    str: _text,
+    bool: _flag,
+}

@@ -1,0 +1,157 @@
+"""One frozen dataclass a table; its fields are the columns, in their order."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+KINDS = frozenset({"measured", "compiled", "calculated", "recalled"})
+
+
+def _need(right: bool, column: str, what: str) -> None:
+    if not right:
+        raise ValueError(f"{column}: {what}")
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Source:
+    """What a source key stands for."""
+
+    key: str
+    text: str
+    doi: str
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class BindingEnergy:
+    """Binding energy of a level, Fermi-referenced, solid where one is known."""
+
+    symbol: str
+    z: int
+    level: str
+    energy_ev: float
+    sigma_ev: float
+    kind: str
+    state: str
+    source: str
+
+    def __post_init__(self) -> None:
+        _need(self.kind in KINDS, "kind", f"must be one of {', '.join(sorted(KINDS))}")
+        _need(self.energy_ev >= 0, "energy_ev", "must not be negative")
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class PublishedLine:
+    """A published line energy as its source states it."""
+
+    symbol: str
+    z: int
+    transition: str
+    energy_ev: float
+    sigma_ev: float
+    relative_height: float | None
+    form: str  # derivative, direct or unknown
+    reference_level: str  # handbook, fermi or unknown
+    status: str  # read or from memory
+    confidence: str
+    kind: str
+    state: str
+    source: str
+
+    def __post_init__(self) -> None:
+        _need(self.kind in KINDS, "kind", f"must be one of {', '.join(sorted(KINDS))}")
+        _need(self.form in {"derivative", "direct", "unknown"}, "form", "must be derivative, direct or unknown")
+        _need(self.sigma_ev > 0, "sigma_ev", "must be positive")
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Family:
+    """A family of transitions: what its correction is fitted to, chosen beforehand, and how."""
+
+    family: str
+    degree: int  # of the polynomial in Z
+    left_out: str  # symbols not fitted to, blank between
+    reason: str
+    kind: str
+    source: str
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Line:
+    """One line of an element: derivative minimum on the absolute scale of `physics`."""
+
+    symbol: str
+    z: int
+    transition: str
+    family: str
+    energy_ev: float
+    sigma_ev: float
+    energy_kind: str  # published, family or formula
+    relative_height: float  # strongest line of the element is 1
+    height_log_sigma: float
+    height_kind: str  # published or computed
+    valence: bool  # moves with the valence band: large chemical shifts
+    state: str
+    source: str
+
+    def __post_init__(self) -> None:
+        _need(self.energy_kind in {"published", "family", "formula"}, "energy_kind", "published, family or formula")
+        _need(20 <= self.energy_ev <= 3200, "energy_ev", "must lie between 20 and 3200 eV")
+        _need(self.sigma_ev > 0, "sigma_ev", "must be positive")
+        _need(0 < self.relative_height <= 1, "relative_height", "must lie between 0 and 1")
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Commonness:
+    """How often an element is on a technical surface that is put under a microprobe."""
+
+    symbol: str
+    z: int
+    probability: float
+    group: str
+    kind: str
+    source: str
+
+    def __post_init__(self) -> None:
+        _need(0 < self.probability < 1, "probability", "must lie between 0 and 1")
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class ChemicalShift:
+    """Shift of a line in a chemical state against the state that its energy refers to."""
+
+    symbol: str
+    transition: str
+    state: str
+    shift_ev: float
+    sigma_ev: float
+    valence: bool
+    kind: str
+    source: str
+
+    def __post_init__(self) -> None:
+        _need(self.sigma_ev > 0, "sigma_ev", "must be positive")
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class ShiftPrior:
+    """How far chemistry may move a class of lines; symbol * is every element not named."""
+
+    symbol: str
+    valence: bool
+    lowest_ev: float
+    highest_ev: float
+    kind: str
+    source: str
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Sensitivity:
+    """Rough depth of an element's strongest line per atomic percent, Ag M5N45N45 = 1."""
+
+    symbol: str
+    z: int
+    transition: str
+    sensitivity: float
+    factor: float  # one standard deviation, multiplicative
+    kind: str
+    source: str

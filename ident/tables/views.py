@@ -1,0 +1,113 @@
+"""The tables as the rest of the program asks for them; each file is read once."""
+
+from __future__ import annotations
+
+from functools import cache
+
+from ..errors import UnknownNameError
+from .files import read_rows
+from .rows import (
+    BindingEnergy,
+    ChemicalShift,
+    Commonness,
+    Family,
+    Line,
+    PublishedLine,
+    Sensitivity,
+    ShiftPrior,
+    Source,
+)
+
+
+@cache
+def read_lines() -> tuple[Line, ...]:
+    """Every line of every element, by atomic number, then falling height."""
+    return read_rows("lines.csv", Line)
+
+
+@cache
+def _by_symbol() -> dict[str, tuple[Line, ...]]:
+    grouped: dict[str, list[Line]] = {}
+    for line in read_lines():
+        grouped.setdefault(line.symbol, []).append(line)
+    return {symbol: tuple(lines) for symbol, lines in grouped.items()}
+
+
+def lines_of(symbol: str) -> tuple[Line, ...]:
+    """Lines of an element, strongest first; none for hydrogen and helium."""
+    return _by_symbol().get(symbol, ())
+
+
+@cache
+def _numbers() -> dict[str, int]:
+    return {row.symbol: row.z for row in read_rows("commonness.csv", Commonness)}
+
+
+def atomic_number(symbol: str) -> int:
+    """Atomic number of an element of the tables."""
+    special = {"H": 1, "He": 2}
+    number = special.get(symbol) or _numbers().get(symbol)
+    if number is None:
+        raise UnknownNameError(f"'{symbol}' is no element from H to U; write a symbol such as Fe")
+    return number
+
+
+@cache
+def commonness() -> dict[str, float]:
+    """Probability that an element is on a technical surface, by symbol."""
+    return {row.symbol: row.probability for row in read_rows("commonness.csv", Commonness)}
+
+
+@cache
+def _shifts() -> dict[str, tuple[ChemicalShift, ...]]:
+    grouped: dict[str, list[ChemicalShift]] = {}
+    for row in read_rows("chemical_shifts.csv", ChemicalShift):
+        grouped.setdefault(row.symbol, []).append(row)
+    return {symbol: tuple(rows) for symbol, rows in grouped.items()}
+
+
+def chemical_shifts(symbol: str) -> tuple[ChemicalShift, ...]:
+    """Known shifts of an element's lines by state; empty when none is in the table."""
+    return _shifts().get(symbol, ())
+
+
+@cache
+def _priors() -> dict[tuple[str, bool], tuple[float, float]]:
+    rows = read_rows("shift_priors.csv", ShiftPrior)
+    return {(row.symbol, row.valence): (row.lowest_ev, row.highest_ev) for row in rows}
+
+
+def shift_range(symbol: str, valence: bool) -> tuple[float, float]:
+    """How far down and up chemistry may move an element's core or valence lines, in eV."""
+    priors = _priors()
+    return priors.get((symbol, valence)) or priors[("*", valence)]
+
+
+@cache
+def sensitivities() -> dict[str, Sensitivity]:
+    """Rough sensitivity of every element, by symbol."""
+    return {row.symbol: row for row in read_rows("sensitivities.csv", Sensitivity)}
+
+
+@cache
+def binding_energies() -> dict[tuple[str, str], BindingEnergy]:
+    """Binding energies by symbol and level."""
+    return {(row.symbol, row.level): row for row in read_rows("binding_energies.csv", BindingEnergy)}
+
+
+@cache
+def published_lines() -> tuple[PublishedLine, ...]:
+    """Published line energies as their sources state them."""
+    return read_rows("published_lines.csv", PublishedLine)
+
+
+@cache
+def families() -> dict[str, Family]:
+    """The families of transitions by name."""
+    return {row.family: row for row in read_rows("families.csv", Family)}
+
+
+@cache
+def sources() -> dict[str, Source]:
+    """What every source key stands for."""
+    return {row.key: row for row in read_rows("sources.csv", Source)}
