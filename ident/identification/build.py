@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING, Any
 from ..errors import SettingError
 from ..matching.evidence import ElementEvidence, Evidence, InseparableEvidence, RivalEvidence, UntestableEvidence
 from ..matching.settings import Settings
-from ..reasons import explain
+from ..reasons import explain, state_to_tell
 from ..spectrum import Spectrum
 from .answer import (
     ArtefactNote,
@@ -147,6 +147,7 @@ def _with_beam(settings: Settings, beam_kev: float) -> Settings:
 
 
 def _assignment(element: ElementEvidence, evidence: Evidence) -> Assignment:
+    state = state_to_tell(element)
     return Assignment(
         element=element.element,
         z=element.z,
@@ -164,7 +165,7 @@ def _assignment(element: ElementEvidence, evidence: Evidence) -> Assignment:
             )
             for line in element.lines
         ),
-        state=State(name=element.state.name, shift_ev=element.state.shift_ev) if element.state else None,
+        state=State(name=state.name, shift_ev=state.shift_ev) if state else None,
         reasons=explain(element, evidence),
         rivals=tuple(_rival(rival) for rival in element.rivals),
     )
@@ -205,4 +206,4 @@ def _why(item: UntestableEvidence) -> str:
     if item.cause == "coarse step":
         return "the step of the scan is too coarse for its lines"
     where = f", the strongest at {item.nearest_ev:.0f} eV" if item.nearest_ev is not None else ""
-    return f"its strong lines are outside the scan{where}"
+    return f"no strong line of it lies in the scan{where}"

@@ -7,5 +7,6 @@ from __future__ import annotations
 
 from .reason import Reason, Rule, Side, Subject
 from .rules import RULES, explain
+from .whole_rules import state_to_tell
 
-__all__ = ["RULES", "Reason", "Rule", "Side", "Subject", "explain"]
+__all__ = ["RULES", "Reason", "Rule", "Side", "Subject", "explain", "state_to_tell"]

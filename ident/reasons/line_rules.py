@@ -82,11 +82,9 @@ class LineMissing(Rule):
         for line in subject.element.lines:
             if line.status == "missing":
                 strength = times(line.expected_significance or 0.0)
-                yield (
-                    line.log_odds,
-                    f"nothing at {line_named(line)}, where {name_of(subject.element.element)} of this strength would be "
-                    f"{strength} times the noise",
-                )
+                name = name_of(subject.element.element)
+                text = f"nothing at {line_named(line)}, where {name} of this strength would be {strength} times the noise"
+                yield line.log_odds, text
 
 
 class LineOutOfRange(Rule):

@@ -3,13 +3,27 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from typing import TYPE_CHECKING
 
 from .reason import Rule, Side, Subject, Weighed
 from .words import joined, times
 
+if TYPE_CHECKING:
+    from ..matching.evidence import ElementEvidence, StateEvidence
+
 LARGE_SHIFT_EV = 5.0
+LEAST_SHIFT_EV = 1.5  # less is within what axis and tables leave open
+LEAST_STATE_ODDS = 1.1  # three to one, natural log
 RARE_LOG_ODDS = -4.6  # one surface in a hundred
 SURE = 0.95
+
+
+def state_to_tell(element: ElementEvidence) -> StateEvidence | None:
+    """Give the state only when the shift is one, speaks for this state rather than none, and rather than the next."""
+    state = element.state
+    if state is None or abs(element.shift_ev) < LEAST_SHIFT_EV or state.log_odds < LEAST_STATE_ODDS:
+        return None
+    return state if abs(element.shift_ev - state.shift_ev) < abs(element.shift_ev) else None
 
 
 class ShiftFitsState(Rule):
@@ -18,7 +32,7 @@ class ShiftFitsState(Rule):
     side: Side = "for"
 
     def says(self, subject: Subject) -> Iterator[Weighed]:
-        state = subject.element.state
+        state = state_to_tell(subject.element)
         if state is not None:
             over = f", rather than {state.next_name}" if state.next_name else ""
             yield (
@@ -35,7 +49,7 @@ class ShiftLarge(Rule):
 
     def says(self, subject: Subject) -> Iterator[Weighed]:
         element = subject.element
-        if element.state is None and abs(element.shift_ev) >= LARGE_SHIFT_EV:
+        if state_to_tell(element) is None and abs(element.shift_ev) >= LARGE_SHIFT_EV:
             yield (
                 0.3 * abs(element.shift_ev),
                 f"needs a chemical shift of {element.shift_ev:+.1f} eV, and no state in the tables gives that",
@@ -92,7 +106,7 @@ class RivalLessLikely(Rule):
     def says(self, subject: Subject) -> Iterator[Weighed]:
         for rival in subject.element.rivals:
             if rival.probability < subject.element.probability:
-                why = f"but {_lacks(rival.missing)}" if rival.missing else f"with probability {rival.probability:.2f}"
+                why = f"but {_lacks(rival.missing)}" if rival.missing else _standing(rival.probability)
                 yield 0.6, f"{rival.element} {rival.transition} could stand at {rival.at_ev:.1f} eV, {why}"
 
 
@@ -133,6 +147,10 @@ class CannotBeSeparated(Rule):
             if symbol in pair.elements:
                 others = joined([element for element in pair.elements if element != symbol], last="or")
                 yield 1.2, f"at {pair.at_ev:.1f} eV this scan cannot tell it from {others}"
+
+
+def _standing(probability: float) -> str:
+    return f"with probability {probability:.2f}" if probability >= 0.01 else "but nothing else supports it"
 
 
 def _lacks(missing: tuple[tuple[str, float, float], ...]) -> str:

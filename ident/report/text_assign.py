@@ -107,7 +107,8 @@ def _not_seen(answer: Identification) -> Iterator[str]:
     for item in answer.untestable:
         reasons.setdefault(item.why.split(", the strongest")[0], []).append(item)
     for why, items in reasons.items():
-        yield _note("untestable", f"{', '.join(item.element for item in items)}: {why}")
+        said = why.replace(" of it ", " of theirs " if len(items) > 1 else " of it ")
+        yield _note("untestable", f"{', '.join(item.element for item in items)}: {said}")
 
 
 def _remarks(answer: Identification) -> Iterator[str]:
