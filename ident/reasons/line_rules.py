@@ -82,9 +82,8 @@ class LineMissing(Rule):
         for line in subject.element.lines:
             if line.status == "missing":
                 strength = times(line.expected_significance or 0.0)
-                name = name_of(subject.element.element)
-                text = f"nothing at {line_named(line)}, where {name} of this strength would be {strength} times the noise"
-                yield line.log_odds, text
+                where = f"where {name_of(subject.element.element)} of this strength"
+                yield line.log_odds, f"nothing at {line_named(line)}, {where} would be {strength} times the noise"
 
 
 class LineOutOfRange(Rule):
