@@ -89,6 +89,11 @@ def answer_each(paths: Sequence[str], reading: Reading, answer: Answer) -> int:
 def _answer_one(spectrum: Spectrum, reading: Reading, answer: Answer, tally: Tally) -> None:
     try:
         seen, warnings = answer(spectrum)
+    except (ArithmeticError, LookupError, ValueError) as bug:
+        # a fault of the program, not of the file: say so on one line, and answer the other inputs
+        complain(f"{spectrum.name}: could not be worked out ({type(bug).__name__}: {bug}); please report this")
+        tally.failed += 1
+        return
     except InputError as failed:
         if not failed.source:
             failed = InputError(failed.what, source=spectrum.name, line=failed.line, remedy=failed.remedy)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterator
 from typing import TYPE_CHECKING
 
@@ -12,6 +13,8 @@ if TYPE_CHECKING:
     from ..matching.evidence import ElementEvidence, StateEvidence
 
 LARGE_SHIFT_EV = 5.0
+MOST_LOG_ODDS = 12.0
+MOST_RIVALS = 2
 LEAST_SHIFT_EV = 1.5  # less is within what axis and tables leave open
 LEAST_STATE_ODDS = 1.1  # three to one, natural log
 RARE_LOG_ODDS = -4.6  # one surface in a hundred
@@ -63,7 +66,9 @@ class CommonOnSurfaces(Rule):
 
     def says(self, subject: Subject) -> Iterator[Weighed]:
         if subject.element.common:
-            yield max(0.1, subject.element.prior_log_odds), "found on nearly every surface that has seen air"
+            odds = subject.element.prior_log_odds
+            told = f" (odds {times(math.exp(odds))} to 1 before looking)" if 0 < odds < MOST_LOG_ODDS else ""
+            yield max(0.1, odds), f"found on nearly every surface that has seen air{told}"
 
 
 class RareOnSurfaces(Rule):
@@ -74,7 +79,8 @@ class RareOnSurfaces(Rule):
     def says(self, subject: Subject) -> Iterator[Weighed]:
         odds = subject.element.prior_log_odds
         if odds < RARE_LOG_ODDS:
-            yield 0.3 * abs(odds), "seldom met on technical surfaces, so it takes more evidence than most"
+            told = f"odds 1 to {math.exp(-max(odds, -MOST_LOG_ODDS)):.0f} before looking"
+            yield 0.3 * abs(odds), f"seldom met on technical surfaces ({told}), so it takes more evidence than most"
 
 
 class OneLowLine(Rule):
@@ -95,7 +101,8 @@ class RestsOnOneLine(Rule):
 
     def says(self, subject: Subject) -> Iterator[Weighed]:
         if len(subject.met) == 1 and not subject.element.single_low_line and len(subject.element.lines) > 1:
-            yield 0.8, f"one line alone speaks for it ({subject.met[0].transition})"
+            line = subject.met[0]
+            yield 0.8, f"one line alone speaks for it ({line.transition} at {line.found_ev or line.expected_ev:.0f} eV)"
 
 
 class RivalLessLikely(Rule):
@@ -104,7 +111,7 @@ class RivalLessLikely(Rule):
     side: Side = "for"
 
     def says(self, subject: Subject) -> Iterator[Weighed]:
-        for rival in subject.element.rivals:
+        for rival in subject.element.rivals[:MOST_RIVALS]:
             if rival.probability < subject.element.probability:
                 why = f"but {_lacks(rival.missing)}" if rival.missing else _standing(rival.probability)
                 yield 0.6, f"{rival.element} {rival.transition} could stand at {rival.at_ev:.1f} eV, {why}"
