@@ -118,7 +118,7 @@ def test_minima_has_the_keys_promised(run: Run) -> None:
 
 
 def test_assign_names_platinum_and_its_spike(run: Run) -> None:
-    """A measured spectrum of clean Pt(111); the sample is named in its README."""
+    """Platinum is stated by the author of the data; the spike is described there too (tests/data/README.md)."""
     code, out, _ = run("assign", "--format", "json", PLATINUM)
     answer = json.loads(out)
     assert code == 0
@@ -129,7 +129,7 @@ def test_assign_names_platinum_and_its_spike(run: Run) -> None:
 
 @pytest.mark.xfail(strict=False, reason="the matcher is not tuned yet")
 def test_assign_finds_platinum_present_and_nothing_else_but_perhaps_oxygen(run: Run) -> None:
-    """A measured spectrum of clean Pt(111); oxygen is the usual remnant of its cleaning (its README)."""
+    """Platinum is stated by the author of the data; oxygen is a reading of the curve (tests/data/README.md)."""
     answer = json.loads(run("assign", "--format", "json", PLATINUM)[1])
     assert answer["assignments"][0]["verdict"] == "present"
     others = [a["element"] for a in answer["assignments"] if a["probability"] >= 0.5]

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import subprocess
 import sys
+import time
 
 import ident
 
@@ -54,3 +55,15 @@ def test_a_lookup_loads_nothing_heavy() -> None:
     shown, _, loaded = run_python(code).partition("MODULES")
     assert "Fe" in shown  # iron has its L3M23V line there: handbook practice, from memory
     assert not set(HEAVY) & set(loaded.split())
+
+
+def seconds(*words: str) -> float:
+    start = time.perf_counter()
+    subprocess.run([sys.executable, *words], check=True, capture_output=True)
+    return time.perf_counter() - start
+
+
+def test_a_lookup_costs_little_more_than_starting_numpy() -> None:
+    """At most 2.5 times `import numpy`, whole process; measured side by side, the best of five each."""
+    pairs = [(seconds("-m", "ident", "at", "651"), seconds("-c", "import numpy")) for _ in range(5)]
+    assert min(lookup for lookup, _ in pairs) <= 2.5 * min(numpy for _, numpy in pairs)
