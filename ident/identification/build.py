@@ -185,7 +185,7 @@ def _inseparable(pair: InseparableEvidence) -> Inseparable:
 
 def _settling(pair: InseparableEvidence) -> str:
     if pair.settle_ev is None:
-        return "no Auger line in the tables decides; ask another technique, such as photoelectron spectroscopy"
+        return "ask another technique, such as photoelectron spectroscopy: no Auger line in the tables decides"
     line = f"{pair.settle_element} {pair.settle_transition} at {pair.settle_ev:.0f} eV"
     if pair.in_range:
         return f"scan {line} longer: it is in range, but too weak here to decide"

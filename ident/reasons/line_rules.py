@@ -12,6 +12,7 @@ from .words import joined, line_named, meeting, times
 MOST_NAMED = 3
 WORTH_NAMING = 0.2  # relative height from which a line outside the scan is worth a word
 DEPTH_OFF_SD = 2.0
+TOLD_FROM = 4.5  # noise widths from which a line would have been seen on its own
 
 
 class PatternMet(Rule):
@@ -49,7 +50,7 @@ class DepthFits(Rule):
         if len(subject.met) < 2:
             return
         fit = [line for line in subject.met if _depth_sd(line.depth_ratio, line.depth_ratio_factor) < 1.0]
-        if not fit:
+        if len(fit) < 2:
             return
         ratios = joined([f"{times(line.depth_ratio or 0.0)} ({line.transition})" for line in fit[:MOST_NAMED]])
         factor = max(line.depth_ratio_factor or 1.0 for line in fit[:MOST_NAMED])
@@ -79,11 +80,15 @@ class LineMissing(Rule):
     side: Side = "against"
 
     def says(self, subject: Subject) -> Iterator[Weighed]:
-        for line in subject.element.lines:
-            if line.status == "missing":
-                strength = times(line.expected_significance or 0.0)
-                where = f"where {name_of(subject.element.element)} of this strength"
-                yield line.log_odds, f"nothing at {line_named(line)}, {where} would be {strength} times the noise"
+        missing = [line for line in subject.element.lines if line.status == "missing"]
+        if not missing:
+            return
+        missing.sort(key=lambda line: line.log_odds)
+        first, strength = missing[0], times(missing[0].expected_significance or 0.0)
+        where = f"where {name_of(subject.element.element)} of this strength would be {strength} times the noise"
+        others = [f"{line_named(x)}, {times(x.expected_significance or 0.0)} times" for x in missing[1:MOST_NAMED]]
+        more = f"; nor at {'; '.join(others)}" if others else ""
+        yield sum(line.log_odds for line in missing), f"nothing at {line_named(first)}, {where}{more}"
 
 
 class LineOutOfRange(Rule):
@@ -121,14 +126,17 @@ class LineTooWeak(Rule):
 
     def says(self, subject: Subject) -> Iterator[Weighed]:
         weak = [line for line in subject.element.lines if line.status == "hidden" and not line.hidden_by]
-        if weak:
-            line = weak[0]
-            strength = times(line.expected_significance or 0.0)
-            tail = f", nor could {len(weak) - 1} weaker" if len(weak) > 1 else ""
-            yield (
-                0.05 + line.relative_height,
-                f"{line_named(line)} would be only {strength} times the noise and could not be told{tail}",
-            )
+        if not weak:
+            return
+        line = weak[0]
+        significance = line.expected_significance or 0.0
+        strength = f"{times(significance)} times the noise"
+        if significance < TOLD_FROM:
+            said = f"would be only {strength} and could not be told"
+        else:
+            said = f"would be {strength}, but the shape of a strong neighbour could cover it"
+        tail = f"; so with {len(weak) - 1} weaker" if len(weak) > 1 else ""
+        yield 0.05 + line.relative_height, f"{line_named(line)} {said}{tail}"
 
 
 class SharedMinimum(Rule):

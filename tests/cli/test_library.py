@@ -103,7 +103,7 @@ def test_reach_limits_the_candidates() -> None:
     [("Fe", 703.0), ("Cu", 920.0), ("Ti", 418.0), ("Al", 1396.0), ("Si", 1619.0), ("C", 272.0), ("O", 503.0)],
 )
 def test_deciding_lines_are_those_analysts_use(element: str, decides_ev: float) -> None:
-    """Common practice, no source; energies from memory of the handbooks (O is given as 503 and as 510), 0.5 % allowed."""
+    """Common practice, no source; energies from memory of the handbooks (O: 503 or 510), 0.5 % allowed."""
     card = element_card(element)
     assert card.deciding is not None
     assert abs(card.deciding.energy_ev - decides_ev) < max(3.0, 0.005 * decides_ev)
