@@ -99,7 +99,8 @@ def _lines(context: Context, element: int, index: int, others: list[int], sums: 
     out: list[LineEvidence] = []
     for column in np.flatnonzero(pattern.real[element]):
         met = int(options.met[index, column])
-        if met < 0 and pattern.height[element, column] < SHOWN_HEIGHT:
+        # a derived line that is not met says nothing: its energy and height are too uncertain
+        if met < 0 and (pattern.height[element, column] < SHOWN_HEIGHT or not pattern.firm[element, column]):
             continue
         core = not pattern.valence[element, column]
         shift = float(options.shift_core_ev[index] if core else options.shift_valence_ev[index])
@@ -131,8 +132,8 @@ def _line(
         "relative_height": float(pattern.height[element, column]),
     }
     if met >= 0:
-        total = float(sums.depth[met])
-        spread = float(sums.spread[met]) / total
+        total = float(sums.depth[met]) or depth  # a derived line alone explains it
+        spread = float(sums.spread[met]) / total or float(pattern.height_log_sigma[element, column])
         return LineEvidence(
             **common,  # type: ignore[arg-type]
             sigma_ev=float(np.hypot(sigma, problem.sigma_ev[met])),
@@ -237,7 +238,7 @@ def _rival(context: Context, other: int, index: int, met: list[LineEvidence]) ->
         column = int(columns[0])
         place = pattern.energy_ev[other] * (1 + axis.slope) + axis.offset_ev + options.shift_core_ev[index]
         depth = options.strength[index] * tilted(pattern.height[other], pattern.energy_ev[other], axis.tilt)
-        absent = pattern.real[other] & (options.met[index] < 0) & problem.in_range(place)
+        absent = pattern.firm[other] & pattern.real[other] & (options.met[index] < 0) & problem.in_range(place)
         significance = depth / problem.noise_at(place)
         seen = absent & (significance > 4.5) & (problem.hidden_at(place) < 0.8 * depth)
         missing = tuple(

@@ -17,9 +17,10 @@ REACH = 3.5  # standard deviations
 HIDDEN_THRESHOLD = 4.5
 LEAST_CHANCE = 3e-3  # floor of the chance that a line is missing for reasons not modelled
 PER_ELEMENT = 7
+DERIVED_PRICE = 3.0
 SHARP_EV, SHARP_LOG_SIGMA = 1.6, 0.45  # what a published line on a fitted axis says of energy and ln height
 CORE_PART = 0.45  # core lines move about half as far as the valence lines of the light elements
-STATE_PRICE, UNKNOWN_STATE_PRICE = 0.7, 2.0
+STATE_PRICE, UNKNOWN_STATE_PRICE = 1.2, 2.0
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -45,6 +46,7 @@ class Options:
     moment: FloatArray  # depth * deviation in standard deviations
     spread: FloatArray  # depth * log-sigma of the height
     loose: FloatArray  # depth * ln of how much less a line says than a published one, for width of both priors
+    soft: FloatArray  # cost of each minimum if a derived line of the option is all that explains it
     met: IntArray  # (o, l): minimum each line met, -1 for none
 
     def take(self, keep: NDArray[np.bool_] | IntArray) -> Options:
@@ -139,15 +141,17 @@ def _evaluate(
     real = pattern.real[row]
     inside = problem.in_range(where) & real
     met = real & (np.abs(off) < REACH) & (depth > 0.04 * problem.depth[nearest])
-    missing = inside & ~met
+    firm = pattern.firm[row]
+    missing = inside & ~met & firm
     log_sigma = pattern.height_log_sigma[row]
     price = np.sum(np.where(missing, _missing_price(problem, where, depth, log_sigma), 0.0), axis=1)
-    rows = np.broadcast_to(np.arange(row.size)[:, None], met.shape)[met]
-    flat = rows * count + nearest[met]
+    sure = met & firm
+    rows = np.broadcast_to(np.arange(row.size)[:, None], met.shape)[sure]
+    flat = rows * count + nearest[sure]
     size = row.size * count
 
     def gathered(values: FloatArray) -> FloatArray:
-        return np.asarray(np.bincount(flat, weights=values[met], minlength=size), dtype=float).reshape(row.size, count)
+        return np.asarray(np.bincount(flat, weights=values[sure], minlength=size), dtype=float).reshape(row.size, count)
 
     return Options(
         element=row,
@@ -158,9 +162,30 @@ def _evaluate(
         depth=gathered(depth),
         moment=gathered(depth * off),
         spread=gathered(depth * log_sigma),
-        loose=gathered(depth * np.log(reach / SHARP_EV * log_sigma / SHARP_LOG_SIGMA)),
+        loose=gathered(depth * np.log(np.maximum(reach / SHARP_EV * log_sigma / SHARP_LOG_SIGMA, 1.0))),
+        soft=_soft_costs(problem, row, nearest, met & ~firm, off, depth, reach, log_sigma),
         met=np.where(met, nearest, -1),
     )
+
+
+def _soft_costs(
+    problem: Problem,
+    row: IntArray,
+    nearest: IntArray,
+    met: NDArray[np.bool_],
+    off: FloatArray,
+    depth: FloatArray,
+    reach: FloatArray,
+    log_sigma: FloatArray,
+) -> FloatArray:
+    """What derived lines leave a minimum to cost: they say less of energy and depth, so they explain less."""
+    soft = np.full((row.size, problem.energy_ev.size), np.inf)
+    ratio = np.log(problem.depth[nearest] / np.maximum(depth, 1e-300)) / log_sigma
+    said = np.log(np.maximum(reach / SHARP_EV * log_sigma / SHARP_LOG_SIGMA, 1.0))
+    cost = DERIVED_PRICE + 0.5 * off**2 + 0.5 * ratio**2 + said
+    rows, columns = np.nonzero(met)
+    np.minimum.at(soft, (rows, nearest[rows, columns]), cost[rows, columns])
+    return soft
 
 
 def _nearest(sorted_ev: FloatArray, wanted_ev: FloatArray) -> IntArray:

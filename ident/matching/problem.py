@@ -15,9 +15,9 @@ from .settings import Settings
 # Prices are natural logarithms of odds. What a minimum costs when no element explains it, per its significance:
 UNEXPLAINED, UNEXPLAINED_RISE = 7.0, 1.6
 LOW_ENERGY_EV = 60.0
-TAIL_PART, TAIL_REACH_EV = 0.16, 30.0  # losses below a strong line
+TAIL_PART, TAIL_REACH_EV = 0.25, 30.0  # losses below a strong line
 SATELLITE_PART, SATELLITE_REACH_EV = 0.07, 35.0  # satellites and steps above it
-ELEMENT_PRICE, COMMONNESS_WEIGHT, EVEN_PRICE = 5.2, 0.9, 8.0
+ELEMENT_PRICE, COMMONNESS_WEIGHT, EVEN_PRICE = 4.5, 1.1, 8.0
 EXPECTED_BONUS = 2.5
 
 

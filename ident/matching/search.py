@@ -10,7 +10,7 @@ from ..spectrum import FloatArray
 from .options import Options
 from .problem import Problem
 
-OVERSHOOT_CAP = 9.0
+OVERSHOOT_CAP = 5.0
 MOST_MEMBERS = 18
 HEIGHT_FLOOR = 0.4
 
@@ -23,6 +23,7 @@ class Sums:
     moment: FloatArray
     spread: FloatArray
     loose: FloatArray
+    soft: FloatArray
 
     def plus(self, options: Options) -> Sums:
         """The same with each option added in turn."""
@@ -31,6 +32,7 @@ class Sums:
             moment=self.moment + options.moment,
             spread=self.spread + options.spread,
             loose=self.loose + options.loose,
+            soft=np.minimum(self.soft, options.soft),
         )
 
 
@@ -42,17 +44,17 @@ def minimum_costs(problem: Problem, sums: Sums) -> FloatArray:
     ratio = np.log(problem.depth / depth) / spread
     position = 0.5 * off**2
     height = 0.5 * np.minimum(ratio**2, 2.0 * OVERSHOOT_CAP)
-    cost = position + height + np.maximum(sums.loose / depth, 0.0)
+    cost = position + height + sums.loose / depth
     price = problem.price
     # deeper than predicted: the rest may be something else's, so it never costs more than the unexplained
     capped = np.where(ratio > 0, np.minimum(cost, price), np.minimum(cost, price + OVERSHOOT_CAP))
-    return np.where(sums.depth > 0, capped, price)
+    return np.minimum(np.where(sums.depth > 0, capped, price), sums.soft)
 
 
 def empty_sums(problem: Problem) -> Sums:
     """The prediction of no element at all."""
     zero = np.zeros(problem.energy_ev.size)
-    return Sums(depth=zero, moment=zero, spread=zero, loose=zero)
+    return Sums(depth=zero, moment=zero, spread=zero, loose=zero, soft=np.full_like(zero, np.inf))
 
 
 def alone(problem: Problem, options: Options) -> FloatArray:
@@ -70,6 +72,7 @@ def sums_of(problem: Problem, options: Options, members: list[int]) -> Sums:
         moment=options.moment[members].sum(axis=0),
         spread=options.spread[members].sum(axis=0),
         loose=options.loose[members].sum(axis=0),
+        soft=options.soft[members].min(axis=0),
     )
 
 

@@ -21,10 +21,10 @@ from .search import search, sums_of
 
 STARTS_EV = (-7.0, -3.5, 0.0, 3.5, 7.0)
 START_SIGMA_EV = 2.0
-FITTED_SIGMA_EV = 0.7
+FITTED_SIGMA_EV = 0.4
 # The tables' heights are of E N(E), as a cylindrical mirror records it; N(E) tilts them by the power -1 of energy.
 TILT_CENTRES = {"en": (0.0,), "n": (-1.0,), "auto": (0.0, -1.0)}
-TILT_SIGMA = 0.35
+TILT_SIGMA = 0.5
 SETTLED, WORTH_SETTLING = 3, 12.0
 LEAST_SHARE = 0.4
 

@@ -44,8 +44,13 @@ def test_file_is_read_as_it_was_made(file: str) -> None:
         assert np.allclose(ours.intensity, theirs.intensity, rtol=1e-3, atol=1e-4 * np.ptp(theirs.intensity))
 
 
-@pytest.mark.xfail(strict=False, reason="the matcher is not tuned yet")
-@pytest.mark.parametrize("file", FILES)
+# what the matcher does not get right yet
+HARD = {"bond_pad_lifted.txt", "solder_short_scan.csv", "terminal_windows.csv"}
+
+
+@pytest.mark.parametrize(
+    "file", [pytest.param(file, marks=pytest.mark.xfail(strict=False)) if file in HARD else file for file in FILES]
+)
 def test_ident_finds_what_the_readme_promises(file: str) -> None:
     # Truth: what was put into the forward model; carbon of the solder is too weak to ask for.
     case = demo_cases()[file]

@@ -127,7 +127,6 @@ def test_assign_names_platinum_and_its_spike(run: Run) -> None:
     assert {"H", "He"} <= {item["element"] for item in answer["untestable"]}
 
 
-@pytest.mark.xfail(strict=False, reason="the matcher is not tuned yet")
 def test_assign_finds_platinum_present_and_nothing_else_but_perhaps_oxygen(run: Run) -> None:
     """Platinum is stated by the author of the data; oxygen is a reading of the curve (tests/data/README.md)."""
     answer = json.loads(run("assign", "--format", "json", PLATINUM)[1])
