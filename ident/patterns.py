@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass
 from functools import lru_cache
 
@@ -9,10 +10,12 @@ import numpy as np
 from numpy.typing import NDArray
 
 from . import tables
+from .physics.widths import natural_width_ev
 from .spectrum import FloatArray
 
 IntArray = NDArray[np.int64]
 TILT_PIVOT_EV = 400.0
+FIRM_HEIGHT = 0.3  # where an element has no published line, its derived lines this strong stand in for them
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)
@@ -32,6 +35,7 @@ class Patterns:
     shift_low_ev: FloatArray  # (elements, lines): how far down and up chemistry may move the line
     shift_high_ev: FloatArray
     prior_log_odds: FloatArray  # (elements,) of being on a technical surface
+    width_ev: FloatArray  # (elements, lines): natural width
     state_shift_ev: FloatArray  # (elements, 2, states): shifts of known states, core lines then valence lines
     state_sigma_ev: FloatArray  # their standard deviations; infinite where there is no state
 
@@ -46,7 +50,7 @@ def all_patterns() -> Patterns:
     symbols = tuple(sorted(grouped, key=lambda symbol: grouped[symbol][0].z))
     most = max(len(lines) for lines in grouped.values())
     shape = (len(symbols), most)
-    arrays = {name: np.zeros(shape) for name in ("energy", "sigma", "height", "log_sigma", "low", "high")}
+    arrays = {name: np.zeros(shape) for name in ("energy", "sigma", "height", "log_sigma", "low", "high", "width")}
     arrays["sigma"][:] = arrays["log_sigma"][:] = 1.0
     valence, real, firm = (np.zeros(shape, dtype=bool) for _ in range(3))
     names = []
@@ -59,7 +63,8 @@ def all_patterns() -> Patterns:
             arrays["energy"][place], arrays["sigma"][place] = line.energy_ev, line.sigma_ev
             arrays["height"][place], arrays["log_sigma"][place] = line.relative_height, line.height_log_sigma
             valence[place], real[place] = bool(line.valence), True
-            firm[place] = line.energy_kind == "published" or not published
+            firm[place] = line.energy_kind == "published" or (not published and line.relative_height >= FIRM_HEIGHT)
+            arrays["width"][place] = natural_width_ev(line.z, *_split(line.transition))
             arrays["low"][place], arrays["high"][place] = tables.shift_range(symbol, bool(line.valence))
     probability = np.clip(np.array([common[symbol] for symbol in symbols]), 1e-5, 1 - 1e-5)
     state_shift, state_sigma = _states(symbols)
@@ -76,10 +81,18 @@ def all_patterns() -> Patterns:
         firm=firm,
         shift_low_ev=arrays["low"],
         shift_high_ev=arrays["high"],
+        width_ev=arrays["width"],
         prior_log_odds=np.log(probability / (1 - probability)),
         state_shift_ev=state_shift,
         state_sigma_ev=state_sigma,
     )
+
+
+def _split(transition: str) -> tuple[str, str]:
+    """Vacancy and final levels of a transition's label."""
+    match = re.match(r"[KLMNOP]\d*", transition)
+    end = match.end() if match else 1
+    return transition[:end], transition[end:]
 
 
 def _states(symbols: tuple[str, ...]) -> tuple[FloatArray, FloatArray]:

@@ -23,7 +23,7 @@ def weigh(analysis: Analysis, settings: Settings) -> Evidence:
     solutions = solve(problem)
     posteriors = []
     for solution in solutions:
-        cost = total_cost(problem, solution.options, solution.members)
-        posteriors.append(weigh_sets(problem, solution.options, solution.members, cost))
+        cost = total_cost(solution.problem, solution.options, solution.members)
+        posteriors.append(weigh_sets(solution.problem, solution.options, solution.members, cost))
     mixed = mix(posteriors, [solution.cost for solution in solutions])
-    return assemble(problem, solutions[0], replace(posteriors[0], probability=mixed))
+    return assemble(solutions[0].problem, solutions[0], replace(posteriors[0], probability=mixed))

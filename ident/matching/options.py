@@ -17,9 +17,10 @@ REACH = 3.5  # standard deviations
 HIDDEN_THRESHOLD = 4.5
 LEAST_CHANCE = 3e-3  # floor of the chance that a line is missing for reasons not modelled
 PER_ELEMENT = 7
-DERIVED_PRICE = 3.0
+WIDTH_LOG_SIGMA, WIDTH_CAP = 0.4, 6.0
+DERIVED_PRICE = 1.5
 SHARP_EV, SHARP_LOG_SIGMA = 1.6, 0.45  # what a published line on a fitted axis says of energy and ln height
-CORE_PART = 0.45  # core lines move about half as far as the valence lines of the light elements
+CORE_PART = 0.3  # core lines move about a third as far as the valence lines of the light elements
 STATE_PRICE, UNKNOWN_STATE_PRICE = 1.2, 2.0
 
 
@@ -45,7 +46,7 @@ class Options:
     depth: FloatArray  # predicted depth at each minimum
     moment: FloatArray  # depth * deviation in standard deviations
     spread: FloatArray  # depth * log-sigma of the height
-    loose: FloatArray  # depth * ln of how much less a line says than a published one, for width of both priors
+    loose: FloatArray  # depth * (how much less a line says than a published one + how ill the width fits)
     soft: FloatArray  # cost of each minimum if a derived line of the option is all that explains it
     met: IntArray  # (o, l): minimum each line met, -1 for none
 
@@ -142,8 +143,9 @@ def _evaluate(
     inside = problem.in_range(where) & real
     met = real & (np.abs(off) < REACH) & (depth > 0.04 * problem.depth[nearest])
     firm = pattern.firm[row]
-    missing = inside & ~met & firm
     log_sigma = pattern.height_log_sigma[row]
+    said = np.log(np.maximum(reach / SHARP_EV * log_sigma / SHARP_LOG_SIGMA, 1.0))
+    missing = inside & ~met & firm
     price = np.sum(np.where(missing, _missing_price(problem, where, depth, log_sigma), 0.0), axis=1)
     sure = met & firm
     rows = np.broadcast_to(np.arange(row.size)[:, None], met.shape)[sure]
@@ -162,10 +164,16 @@ def _evaluate(
         depth=gathered(depth),
         moment=gathered(depth * off),
         spread=gathered(depth * log_sigma),
-        loose=gathered(depth * np.log(np.maximum(reach / SHARP_EV * log_sigma / SHARP_LOG_SIGMA, 1.0))),
+        loose=gathered(depth * (said + _width_cost(problem, row, nearest))),
         soft=_soft_costs(problem, row, nearest, met & ~firm, off, depth, reach, log_sigma),
         met=np.where(met, nearest, -1),
     )
+
+
+def _width_cost(problem: Problem, row: IntArray, nearest: IntArray) -> FloatArray:
+    """How ill the width of the nearest minimum fits the line, robust."""
+    ratio = np.log(problem.width_ev[nearest] / problem.line_width_ev[row]) / WIDTH_LOG_SIGMA
+    return 0.5 * np.minimum(ratio**2, WIDTH_CAP)
 
 
 def _soft_costs(

@@ -13,12 +13,13 @@ from ..spectrum import FloatArray
 from .settings import Settings
 
 # Prices are natural logarithms of odds. What a minimum costs when no element explains it, per its significance:
-UNEXPLAINED, UNEXPLAINED_RISE = 7.0, 1.6
+UNEXPLAINED, UNEXPLAINED_RISE = 7.0, 1.4
 LOW_ENERGY_EV = 60.0
 TAIL_PART, TAIL_REACH_EV = 0.25, 30.0  # losses below a strong line
-SATELLITE_PART, SATELLITE_REACH_EV = 0.07, 35.0  # satellites and steps above it
-ELEMENT_PRICE, COMMONNESS_WEIGHT, EVEN_PRICE = 4.5, 1.1, 8.0
+SATELLITE_PART, SATELLITE_REACH_EV = 0.12, 35.0  # satellites and steps above it
+ELEMENT_PRICE, COMMONNESS_WEIGHT, EVEN_PRICE = 3.5, 0.9, 7.0
 EXPECTED_BONUS = 2.5
+USUAL_RESOLUTION = 0.0055
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)
@@ -29,6 +30,8 @@ class Problem:
     sigma_ev: FloatArray
     depth: FloatArray
     significance: FloatArray
+    width_ev: FloatArray  # (f,) full widths
+    line_width_ev: FloatArray  # (e, l) widths that lines should show on this instrument
     price: FloatArray  # of leaving each minimum unexplained
     patterns: Patterns
     element_price: FloatArray  # (e,)
@@ -76,6 +79,8 @@ def pose(analysis: Analysis, settings: Settings) -> Problem:
         sigma_ev=np.array([m.sigma_ev for m in minima]),
         depth=depth,
         significance=significance,
+        width_ev=width,
+        line_width_ev=_line_widths(patterns, analysis, settings),
         price=_unexplained_price(energy, depth, significance),
         patterns=patterns,
         element_price=price,
@@ -87,6 +92,13 @@ def pose(analysis: Analysis, settings: Settings) -> Problem:
         settings=settings,
         ordinate=analysis.spectrum.ordinate,
     )
+
+
+def _line_widths(patterns: Patterns, analysis: Analysis, settings: Settings) -> FloatArray:
+    """Natural width, analyser and step in quadrature."""
+    resolution = settings.resolution or USUAL_RESOLUTION
+    step = float(np.median([differential.step_ev for differential in analysis.differentials]))
+    return np.sqrt(patterns.width_ev**2 + (resolution * patterns.energy_ev) ** 2 + (1.5 * step) ** 2)
 
 
 def _unexplained_price(energy: FloatArray, depth: FloatArray, significance: FloatArray) -> FloatArray:

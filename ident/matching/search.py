@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -13,6 +13,7 @@ from .problem import Problem
 OVERSHOOT_CAP = 5.0
 MOST_MEMBERS = 18
 HEIGHT_FLOOR = 0.4
+SURE_GAIN = 8.0
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)
@@ -23,7 +24,6 @@ class Sums:
     moment: FloatArray
     spread: FloatArray
     loose: FloatArray
-    soft: FloatArray
 
     def plus(self, options: Options) -> Sums:
         """The same with each option added in turn."""
@@ -32,7 +32,6 @@ class Sums:
             moment=self.moment + options.moment,
             spread=self.spread + options.spread,
             loose=self.loose + options.loose,
-            soft=np.minimum(self.soft, options.soft),
         )
 
 
@@ -48,13 +47,13 @@ def minimum_costs(problem: Problem, sums: Sums) -> FloatArray:
     price = problem.price
     # deeper than predicted: the rest may be something else's, so it never costs more than the unexplained
     capped = np.where(ratio > 0, np.minimum(cost, price), np.minimum(cost, price + OVERSHOOT_CAP))
-    return np.minimum(np.where(sums.depth > 0, capped, price), sums.soft)
+    return np.where(sums.depth > 0, capped, price)
 
 
 def empty_sums(problem: Problem) -> Sums:
     """The prediction of no element at all."""
     zero = np.zeros(problem.energy_ev.size)
-    return Sums(depth=zero, moment=zero, spread=zero, loose=zero, soft=np.full_like(zero, np.inf))
+    return Sums(depth=zero, moment=zero, spread=zero, loose=zero)
 
 
 def alone(problem: Problem, options: Options) -> FloatArray:
@@ -72,7 +71,6 @@ def sums_of(problem: Problem, options: Options, members: list[int]) -> Sums:
         moment=options.moment[members].sum(axis=0),
         spread=options.spread[members].sum(axis=0),
         loose=options.loose[members].sum(axis=0),
-        soft=options.soft[members].min(axis=0),
     )
 
 
@@ -88,6 +86,21 @@ def costs_with_each(problem: Problem, options: Options, members: list[int]) -> F
     taken = np.zeros(problem.element_price.size, dtype=bool)
     taken[options.element[members]] = True
     return np.where(taken[options.element], np.inf, cost)
+
+
+def with_known_minors(problem: Problem, options: Options, members: list[int]) -> Problem:
+    """The problem with minima made cheap where derived lines of the surest members stand.
+
+    A sure element brings its whole pattern with it, the lines that no list of published ones holds included; what
+    stands there asks for no further element. An element that is not sure gains nothing by such lines.
+    """
+    cost = total_cost(problem, options, members)
+    price = problem.price
+    for member in members:
+        rest = [m for m in members if m != member]
+        if total_cost(problem, options, rest) - cost > SURE_GAIN:
+            price = np.minimum(price, options.soft[member])
+    return replace(problem, price=price)
 
 
 def search(problem: Problem, options: Options, *, passes: int = 3) -> tuple[list[int], float]:

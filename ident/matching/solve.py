@@ -17,7 +17,7 @@ from ..scale import (
 )
 from .options import Axis, Options, build_options
 from .problem import Problem
-from .search import search, sums_of
+from .search import search, sums_of, with_known_minors
 
 STARTS_EV = (-7.0, -3.5, 0.0, 3.5, 7.0)
 START_SIGMA_EV = 2.0
@@ -33,6 +33,7 @@ LEAST_SHARE = 0.4
 class Solution:
     """One explanation: the axis, and the set found on it. `cost` counts the axis too."""
 
+    problem: Problem  # with the prices of minima as the surest elements left them
     axis: Axis
     fit: AxisFit
     options: Options
@@ -86,7 +87,7 @@ def _settle(
 ) -> Solution:
     insulator = problem.settings.insulator
     fit = _fit(problem, options, members)
-    cost = np.inf
+    cost, known = np.inf, problem
     for _ in range(2):
         axis = Axis(
             offset_ev=fit.offset_ev,
@@ -95,10 +96,12 @@ def _settle(
             tilt=_tilt(problem, options, members, tilt_centre),
         )
         options = build_options(problem, axis)
-        members, cost = search(problem, options)
+        members, _ = search(problem, options)
+        known = with_known_minors(problem, options, members)
+        members, cost = search(known, options)
         fit = _fit(problem, options, members)
     cost += _axis_price(fit.offset_ev, fit.slope, insulator) + 0.5 * ((axis.tilt - tilt_centre) / TILT_SIGMA) ** 2
-    return Solution(axis=axis, fit=fit, options=options, members=members, cost=cost)
+    return Solution(problem=known, axis=axis, fit=fit, options=options, members=members, cost=cost)
 
 
 def _pairs(
