@@ -67,7 +67,8 @@ def _element(context: Context, element: int) -> ElementEvidence:
     problem, options = context.problem, context.options
     index = int(context.posterior.best_option[element])
     others = [m for m in context.solution.members if int(options.element[m]) != element]
-    sums = sums_of(problem, options, [*others, index])
+    own = [m for m in context.solution.members if int(options.element[m]) == element] or [index]
+    sums = sums_of(problem, options, [*others, *own])
     lines = _lines(context, element, index, others, sums)
     met = [line for line in lines if line.status == "met"]
     symbol = problem.patterns.symbols[element]

@@ -43,9 +43,9 @@ def weigh_sets(problem: Problem, options: Options, members: list[int], cost: flo
     _note_best(options, joined, best_option, best_cost)
     for element, value in _lowest(options, joined):
         with_it[element] += _weight(value - cost)
-    for member in members:
-        element = int(options.element[member])
-        rest = [m for m in members if m != member]
+    for element in dict.fromkeys(options.element[members].tolist()):
+        member = next(m for m in members if options.element[m] == element)
+        rest = [m for m in members if options.element[m] != element]
         out = total_cost(problem, options, rest)
         weight = _weight(out - cost)
         costs = costs_with_each(problem, options, rest)

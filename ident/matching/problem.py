@@ -14,10 +14,11 @@ from .settings import Settings
 
 # Prices are natural logarithms of odds. What a minimum costs when no element explains it, per its significance:
 UNEXPLAINED, UNEXPLAINED_RISE = 7.0, 1.4
+WEAK_RISE, WEAK_FROM = 2.4, 2.8  # near the threshold a minimum may well be noise
 LOW_ENERGY_EV = 60.0
 TAIL_PART, TAIL_REACH_EV = 0.25, 30.0  # losses below a strong line
 SATELLITE_PART, SATELLITE_REACH_EV = 0.12, 35.0  # satellites and steps above it
-ELEMENT_PRICE, COMMONNESS_WEIGHT, EVEN_PRICE = 3.5, 0.9, 7.0
+ELEMENT_PRICE, COMMONNESS_WEIGHT, EVEN_PRICE = 2.8, 0.9, 6.0
 EXPECTED_BONUS = 2.5
 USUAL_RESOLUTION = 0.0055
 
@@ -104,6 +105,7 @@ def _line_widths(patterns: Patterns, analysis: Analysis, settings: Settings) -> 
 def _unexplained_price(energy: FloatArray, depth: FloatArray, significance: FloatArray) -> FloatArray:
     """Less near the secondary edge, much less where a strong line's losses and satellites stand."""
     price = UNEXPLAINED + UNEXPLAINED_RISE * np.log(np.maximum(significance, 1.0) / 5.0)
+    price = np.minimum(price, WEAK_RISE * np.maximum(significance - WEAK_FROM, 0.2))
     price = price * np.clip(0.35 + 0.65 * (energy - 25.0) / (LOW_ENERGY_EV - 25.0), 0.35, 1.0)
     below = energy[None, :] - energy[:, None]  # strong (column) minus this one (row)
     tail = np.where((below > 0) & (below < TAIL_REACH_EV), TAIL_PART, 0.0)

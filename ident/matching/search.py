@@ -14,6 +14,7 @@ OVERSHOOT_CAP = 5.0
 MOST_MEMBERS = 18
 HEIGHT_FLOOR = 0.4
 SURE_GAIN = 8.0
+SECOND_STATE_PRICE, STATES_APART_EV = 3.5, 3.0  # an element and its oxide at the same time
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)
@@ -80,12 +81,22 @@ def total_cost(problem: Problem, options: Options, members: list[int]) -> float:
 
 
 def costs_with_each(problem: Problem, options: Options, members: list[int]) -> FloatArray:
-    """Cost of the set with each option added, (o,); elements already in the set are infinitely dear."""
+    """Cost of the set with each option added, (o,); an element already there may come once more in another state."""
     sums = sums_of(problem, options, members).plus(options)
     cost = np.sum(minimum_costs(problem, sums), axis=1) + options.price + float(np.sum(options.price[members]))
-    taken = np.zeros(problem.element_price.size, dtype=bool)
-    taken[options.element[members]] = True
-    return np.where(taken[options.element], np.inf, cost)
+    return cost + _again_price(problem, options, members)
+
+
+def _again_price(problem: Problem, options: Options, members: list[int]) -> FloatArray:
+    """What it costs more that an element is in the set already: it may be there in a second state, once."""
+    size = problem.element_price.size
+    count = np.bincount(options.element[members], minlength=size)
+    there = np.zeros(size)
+    there[options.element[members]] = options.shift_valence_ev[members]
+    apart = np.abs(options.shift_valence_ev - there[options.element]) > STATES_APART_EV
+    again = SECOND_STATE_PRICE - problem.element_price[options.element]
+    times = count[options.element]
+    return np.where(times == 0, 0.0, np.where((times == 1) & apart, again, np.inf))
 
 
 def with_known_minors(problem: Problem, options: Options, members: list[int]) -> Problem:

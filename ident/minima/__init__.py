@@ -15,7 +15,7 @@ from .pursuit import Feature, filter_field, pursue
 from .refine import prune, refine, rendered
 from .shapes import ASYMMETRY
 
-THRESHOLD = 4.5  # noise widths
+THRESHOLD = 3.9  # noise widths
 FEWEST_POINTS = 20
 # Minima are sought in rounds, each down to this part of the most significant one left, and refined in between, so
 # that what a strong line leaves over is not taken for weak ones.

@@ -18,6 +18,8 @@ PARABOLA_BELOW_EV = 160.0
 EDGE_EV = 8.0
 SHAPE_TOLERANCE = 0.07  # part of a strong line's depth that its unknown shape may leave beside it
 MOST = 110
+FEWEST_DIRECT, FEWEST_RECORDED, MOST_EXCESS = 100, 40, 4.0
+NORMAL_QUIET = 0.3853  # 30 % quantile of |x| for a standard normal
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -58,14 +60,22 @@ def filter_field(
         depth[:, :low_end] = np.stack([_correlate(part, f)[:low_end] for f in low_bank.filters])
         low_gain = np.array([differential.filter_gain(f[::-1]) for f in low_bank.filters])
         noise[:, :low_end] = low_gain[:, None] * differential.sigma[:low_end]
-    return Field(
-        bank=bank,
-        low_bank=low_bank,
-        low_end=low_end,
-        depth=depth,
-        noise=np.hypot(noise, trust),
-        allowed=_allowed(differential, bank, resolution),
-    )
+    allowed = _allowed(differential, bank, resolution)
+    fewest = FEWEST_RECORDED if differential.recorded else FEWEST_DIRECT
+    noise = np.hypot(noise * _excess(depth, noise, allowed, fewest)[:, None], trust)
+    return Field(bank=bank, low_bank=low_bank, low_end=low_end, depth=depth, noise=noise, allowed=allowed)
+
+
+def _excess(depth: FloatArray, noise: FloatArray, allowed: BoolArray, fewest: int) -> FloatArray:
+    """How much noisier each filter's output is than the noise model says, from where it is quiet; (w,), never below 1.
+
+    The model may be wrong where data were treated in ways it does not know; the output itself tells.
+    """
+    inside = np.any(allowed, axis=0)
+    if np.count_nonzero(inside) < fewest:
+        return np.ones(depth.shape[0])
+    quiet = np.quantile(np.abs(depth[:, inside] / noise[:, inside]), 0.3, axis=1) / NORMAL_QUIET
+    return np.clip(quiet, 1.0, MOST_EXCESS)
 
 
 def _correlate(values: FloatArray, weights: FloatArray) -> FloatArray:

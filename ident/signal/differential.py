@@ -7,6 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from ..spectrum import FloatArray, Window
+from .bursts import remove_bursts
 from .noise import NoiseKernel, NoiseModel, estimate_noise, shared_kernel
 from .spikes import Spike, find_spikes
 from .widths import usual_sigma_ev
@@ -54,6 +55,10 @@ def differentiate(
     if spikes:
         noise = estimate_noise(energy, values, derivative=derivative, kernel=kernel)
     if derivative:
+        bursts, values = remove_bursts(energy, values, noise)
+        if bursts:
+            spikes += tuple(Spike(index=at, channels=1, up=True) for at in bursts)
+            noise = estimate_noise(energy, values, derivative=True, kernel=kernel)
         return Differential(
             energy_ev=energy, derivative=values, sigma=noise.sigma, kernel=noise.kernel,
             step_ev=step, spikes=spikes, resampled=resampled, recorded=True,

@@ -20,7 +20,8 @@ from ..spectrum import FloatArray
 THIRD_DIFFERENCE = np.array([-1.0, 3.0, -3.0, 1.0])
 SPACINGS = (1, 2, 3, 4, 6, 9)
 NORMAL_MEDIAN = 0.6745  # median of |x| for a standard normal
-BLOCK = 32
+BLOCK = 24
+OTHER_COLUMN = 0.1
 SHORT = 150  # channels; a window this short may be mostly line
 NORMAL_THIRD = 0.3853  # 30 % quantile of |x| for a standard normal
 IndexArray = NDArray[np.int64]
@@ -71,7 +72,7 @@ def estimate_noise(
     model = np.sum([w * column for w, column in zip(weights, shape, strict=True)], axis=0)
     model = np.maximum(model, 1e-4 * float(np.max(model)) + _smallest(intensity))
     if kernel is None:
-        kernel = shared_kernel([intensity / np.sqrt(model)], derivative=derivative)
+        kernel = shared_kernel([intensity], [np.sqrt(model)], derivative=derivative)
     excess = _local_excess(variance, model[centre], intensity.size, centre)
     return NoiseModel(sigma=np.sqrt(model * excess) * kernel.factor, kernel=kernel.weights)
 
@@ -87,17 +88,26 @@ def _third_difference(values: FloatArray, spacing: int) -> FloatArray:
 
 
 def _variance_columns(energy_ev: FloatArray, intensity: FloatArray, *, derivative: bool) -> list[FloatArray]:
-    """What the variance may be proportional to: a constant, the ordinate, the ordinate over energy."""
-    if derivative:
-        curve = np.cumsum(intensity - np.median(intensity)) * (energy_ev[1] - energy_ev[0])
-        curve = curve - np.min(curve)
-    else:
+    """What the variance may be proportional to, likeliest first: the ordinate, a constant, the ordinate over energy.
+
+    A differential is integrated back for it, with and without an offset taken off; where that fails, a power of
+    the energy stands in for the foot of the secondary edge.
+    """
+    if not derivative:
         curve = np.convolve(np.pad(intensity, 4, mode="edge"), np.ones(9) / 9.0, mode="valid")
-        curve = np.maximum(curve, 0.0)
+        level = _level(np.maximum(curve, 0.0))
+        slanted = level / energy_ev
+        return [level, np.ones_like(level), slanted / float(np.max(slanted))]
+    step = float(energy_ev[1] - energy_ev[0])
+    offsets = (0.0, float(np.median(intensity)))
+    curves = [np.cumsum(intensity - offset) * step for offset in offsets]
+    foot = (float(energy_ev[0]) / energy_ev) ** 2.5
+    return [*(_level(curve - float(np.min(curve))) for curve in curves), np.ones_like(foot), foot]
+
+
+def _level(curve: FloatArray) -> FloatArray:
     top = float(np.max(curve))
-    level = np.maximum(curve, 1e-3 * top) / top if top > 0 else np.ones_like(curve)
-    slanted = level / energy_ev
-    return [np.ones_like(level), level, slanted / float(np.max(slanted))]
+    return np.maximum(curve, 1e-3 * top) / top if top > 0 else np.ones_like(curve)
 
 
 def _fit_variance(variance: FloatArray, columns: list[FloatArray]) -> FloatArray:
@@ -138,7 +148,8 @@ def _best_subset(variance: FloatArray, columns: list[FloatArray], keep: np.ndarr
             weights, *_ = np.linalg.lstsq(design, variance[keep] / scale[keep], rcond=None)
             if np.any(weights < 0):
                 continue
-            misfit = float(np.sum(np.abs(design @ weights - variance[keep] / scale[keep]))) * (1.0 + 0.05 * size)
+            misfit = float(np.sum(np.abs(design @ weights - variance[keep] / scale[keep])))
+            misfit *= 1.0 + OTHER_COLUMN * sum(k > 0 for k in subset)  # counting noise unless the data speak against it
             if misfit < lowest:
                 lowest = misfit
                 best = np.zeros(len(columns))
@@ -152,19 +163,25 @@ def _local_excess(variance: FloatArray, model: FloatArray, size: int, centre: In
     """Where blocks are noisier than the model over some width, believe the blocks (up to twice the noise)."""
     ratio = np.clip(variance / model, 1.0, 4.0)
     if ratio.size >= 3:
-        padded = np.pad(ratio, 1, mode="edge")
-        ratio = np.sort(np.stack([padded[:-2], padded[1:-1], padded[2:]]), axis=0)[0]
+        padded = np.pad(ratio, 1, mode="reflect")
+        ratio = np.median(np.stack([padded[:-2], padded[1:-1], padded[2:]]), axis=0)
     excess: FloatArray = np.interp(np.arange(size), centre, ratio)
-    return np.where(excess > 1.6, excess, 1.0)
+    return np.where(excess > 2.2, excess, 1.0)
 
 
-def shared_kernel(windows: Sequence[FloatArray], *, derivative: bool) -> NoiseKernel:
+def shared_kernel(
+    windows: Sequence[FloatArray], sigmas: Sequence[FloatArray] | None = None, *, derivative: bool
+) -> NoiseKernel:
     """Kernel that the noise of windows (n,) of one step went through, each window evenly stepped.
+
+    `sigmas` are the channels' noises, up to a factor, where they are known already.
 
     Lines add to what third differences over wide spacings show, and never take from it, so of several windows
     the one that shows least counts, and in each the quiet quarter of its channels.
     """
-    ratios = [ratio for ratio in (_spreads(values) for values in windows) if ratio is not None]
+    scales = sigmas if sigmas is not None else [np.ones_like(values) for values in windows]
+    pairs = zip(windows, scales, strict=True)
+    ratios = [ratio for ratio in (_spreads(values, sigma) for values, sigma in pairs) if ratio is not None]
     if not ratios:
         return WHITE
     most = max(ratio.size for ratio in ratios)
@@ -180,11 +197,12 @@ def shared_kernel(windows: Sequence[FloatArray], *, derivative: bool) -> NoiseKe
     return best
 
 
-def _spreads(values: FloatArray) -> FloatArray | None:
+def _spreads(values: FloatArray, sigma: FloatArray) -> FloatArray | None:
     """Ln of what third differences over each spacing show, relative to spacing one; None if too short."""
     seen = []
     for spacing in SPACINGS:
         difference = np.abs(_third_difference(values, spacing))
+        difference = difference / sigma[3 * spacing // 2 :][: difference.size]
         if difference.size < 24:
             break
         seen.append(float(np.quantile(difference, 0.25)))
@@ -195,7 +213,8 @@ def _spreads(values: FloatArray) -> FloatArray | None:
 
 @cache
 def _kernels(derivative: bool) -> tuple[tuple[FloatArray, FloatArray, float], ...]:
-    raw = [np.ones(1), np.array([1.0, 2.0, 1.0]), np.ones(3), np.array([1.0, 4.0, 6.0, 4.0, 1.0]), np.ones(5)]
+    raw = [np.ones(1), np.array([1.0, 2.0, 1.0]), np.ones(3), np.array([1.0, 4.0, 6.0, 4.0, 1.0])]
+    raw.extend(np.ones(span) for span in (5, 7, 9, 13))
     raw.extend(part ** np.arange(40.0) for part in (0.15, 0.25, 0.35, 0.45, 0.55, 0.65, 0.75, 0.85))  # time constant
     for half in range(2, 13):
         x = np.arange(-half, half + 1, dtype=float)

