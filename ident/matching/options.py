@@ -192,7 +192,7 @@ def _soft_costs(
 ) -> FloatArray:
     """What derived lines leave a minimum to cost: they say less of energy and depth, so they explain less."""
     soft = np.full((row.size, problem.energy_ev.size), np.inf)
-    ratio = np.log(problem.depth[nearest] / np.maximum(depth, 1e-300)) / log_sigma
+    ratio = np.log(problem.depth[nearest] / np.where(depth > 0, depth, problem.depth[nearest])) / log_sigma
     said = np.log(np.maximum(reach / SHARP_EV * log_sigma / SHARP_LOG_SIGMA, 1.0))
     cost = DERIVED_PRICE + 0.5 * off**2 + 0.5 * ratio**2 + said
     rows, columns = np.nonzero(met)

@@ -38,7 +38,7 @@ class Sums:
 
 def minimum_costs(problem: Problem, sums: Sums) -> FloatArray:
     """Cost of every minimum under a prediction: how far off, how deep against expected, at most unexplained."""
-    depth = np.maximum(sums.depth, 1e-300)
+    depth = np.where(sums.depth > 0, sums.depth, problem.depth)
     off = sums.moment / depth
     spread = np.maximum(sums.spread / depth, HEIGHT_FLOOR)
     ratio = np.log(problem.depth / depth) / spread

@@ -51,7 +51,7 @@ def differentiate(
     energy, values, resampled = _even(window)
     step = float(energy[1] - energy[0])
     noise = estimate_noise(energy, values, derivative=derivative, kernel=kernel)
-    spikes, values = find_spikes(energy, values, noise.sigma, resolution)
+    spikes, values = find_spikes(energy, values, noise.sigma, resolution, derivative=derivative)
     if spikes:
         noise = estimate_noise(energy, values, derivative=derivative, kernel=kernel)
     if derivative:

@@ -10,6 +10,7 @@ from ..spectrum import FloatArray
 from .widths import narrowest_sigma_ev
 
 THRESHOLD = 8.0  # noise widths
+LEAST_FOLLOW = 0.15  # part of a line's height that its neighbour channel keeps; less cannot be told from a spike
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -22,7 +23,12 @@ class Spike:
 
 
 def find_spikes(
-    energy_ev: FloatArray, intensity: FloatArray, sigma: FloatArray, resolution: float | None = None
+    energy_ev: FloatArray,
+    intensity: FloatArray,
+    sigma: FloatArray,
+    resolution: float | None = None,
+    *,
+    derivative: bool = False,
 ) -> tuple[tuple[Spike, ...], FloatArray]:
     """Find spikes in one evenly stepped window, (n,) each; give them and a copy bridged across them.
 
@@ -36,7 +42,7 @@ def find_spikes(
     step = float(np.median(np.diff(energy_ev)))
     narrow = narrowest_sigma_ev(energy_ev, resolution)
     for channels in (2, 1):
-        for index in _outliers(cleaned, sigma, step, narrow, channels):
+        for index in _outliers(cleaned, sigma, step, narrow, channels, derivative):
             up = bool(cleaned[index] > cleaned[index - 2])
             left, right = index - 1, index + channels
             inside = np.arange(index, index + channels)
@@ -45,7 +51,9 @@ def find_spikes(
     return tuple(sorted(found, key=lambda spike: spike.index)), cleaned
 
 
-def _outliers(values: FloatArray, sigma: FloatArray, step: float, narrow: FloatArray, channels: int) -> list[int]:
+def _outliers(
+    values: FloatArray, sigma: FloatArray, step: float, narrow: FloatArray, channels: int, derivative: bool
+) -> list[int]:
     """Indices of the first channel of every spike of so many channels."""
     n, c = values.size, channels
     index = np.arange(4, n - 4 - c)
@@ -62,7 +70,9 @@ def _outliers(values: FloatArray, sigma: FloatArray, step: float, narrow: FloatA
     swing = np.max(np.abs(np.stack([excess[0], excess[-1]])), axis=0)
     allowed = 0.35 * follow * height + 2.5 * sigma[index]
     sharp = (np.max(np.abs(beside), axis=0) < allowed) & (swing < 0.2 * height + 2.5 * sigma[index])
-    hit = same_side & sharp & (height > THRESHOLD * sigma[index]) & (follow > 0.35)
+    # no line goes down in direct data; upward, the step must be fine enough to see a line's neighbours follow
+    down = (inner[0] < 0) & (not derivative)
+    hit = same_side & sharp & (height > THRESHOLD * sigma[index]) & (down | (follow > LEAST_FOLLOW))
     chosen: list[int] = []
     for k in np.flatnonzero(hit):
         if not chosen or index[k] - chosen[-1] > c + 1:
