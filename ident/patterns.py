@@ -15,6 +15,7 @@ from .spectrum import FloatArray
 
 IntArray = NDArray[np.int64]
 TILT_PIVOT_EV = 400.0
+PARTNERS = {"oxide": "O", "phate": "O", "carbonate": "O", "nitride": "N", "carbide": "C", "fluoride": "F", "sulphide": "S"}
 FIRM_HEIGHT = 0.3  # where an element has no published line, its derived lines this strong stand in for them
 
 
@@ -38,6 +39,7 @@ class Patterns:
     width_ev: FloatArray  # (elements, lines): natural width
     state_shift_ev: FloatArray  # (elements, 2, states): shifts of known states, core lines then valence lines
     state_sigma_ev: FloatArray  # their standard deviations; infinite where there is no state
+    state_partner: IntArray  # which element the state is with (index), -1 for none or its own
 
 
 @lru_cache(maxsize=1)
@@ -67,7 +69,7 @@ def all_patterns() -> Patterns:
             arrays["width"][place] = natural_width_ev(line.z, *_split(line.transition))
             arrays["low"][place], arrays["high"][place] = tables.shift_range(symbol, bool(line.valence))
     probability = np.clip(np.array([common[symbol] for symbol in symbols]), 1e-5, 1 - 1e-5)
-    state_shift, state_sigma = _states(symbols)
+    state_shift, state_sigma, state_partner = _states(symbols)
     return Patterns(
         symbols=symbols,
         z=np.array([grouped[symbol][0].z for symbol in symbols]),
@@ -85,6 +87,7 @@ def all_patterns() -> Patterns:
         prior_log_odds=np.log(probability / (1 - probability)),
         state_shift_ev=state_shift,
         state_sigma_ev=state_sigma,
+        state_partner=state_partner,
     )
 
 
@@ -95,19 +98,30 @@ def _split(transition: str) -> tuple[str, str]:
     return transition[:end], transition[end:]
 
 
-def _states(symbols: tuple[str, ...]) -> tuple[FloatArray, FloatArray]:
-    """Shifts of the tabulated states, padded; the state that a line's energy refers to comes first."""
-    rows: dict[tuple[int, int], list[tuple[float, float]]] = {}
+def _states(symbols: tuple[str, ...]) -> tuple[FloatArray, FloatArray, IntArray]:
+    """Shifts of the tabulated states, padded, and their partners; the state that a line's energy refers to first."""
+    rows: dict[tuple[int, int], list[tuple[float, float, int]]] = {}
+    place = {symbol: index for index, symbol in enumerate(symbols)}
     for index, symbol in enumerate(symbols):
         for row in tables.chemical_shifts(symbol):
-            rows.setdefault((index, int(row.valence)), []).append((row.shift_ev, row.sigma_ev))
+            partner = place.get(_partner(symbol, row.state), -1)
+            rows.setdefault((index, int(row.valence)), []).append((row.shift_ev, row.sigma_ev, partner))
     most = 1 + max((len(states) for states in rows.values()), default=0)
     shift = np.zeros((len(symbols), 2, most))
     sigma = np.full((len(symbols), 2, most), np.inf)
+    partner_of = np.full((len(symbols), 2, most), -1)
     for (index, valence), states in rows.items():
-        for column, (shift_ev, sigma_ev) in enumerate(states, start=1):
-            shift[index, valence, column], sigma[index, valence, column] = shift_ev, sigma_ev
-    return shift, sigma
+        for column, (shift_ev, sigma_ev, partner) in enumerate(states, start=1):
+            at = (index, valence, column)
+            shift[at], sigma[at], partner_of[at] = shift_ev, sigma_ev, partner
+    return shift, sigma, partner_of
+
+
+def _partner(symbol: str, state: str) -> str:
+    """Element that a state is with: oxygen for anything with oxygen in it, else the other one of its formula."""
+    others = [found for found in re.findall(r"[A-Z][a-z]?", state) if found not in (symbol, "H")]
+    words = [partner for word, partner in PARTNERS.items() if word in state]
+    return "O" if "O" in others else (words + others + [""])[0]
 
 
 def tilted(height: FloatArray, energy_ev: FloatArray, tilt: float) -> FloatArray:

@@ -14,6 +14,7 @@ from .problem import Problem
 
 ANCHOR_HEIGHT = 0.25  # only lines this strong fix an element's strength
 REACH = 3.5  # standard deviations
+NEIGHBOURS, MOST_RATIO_COST = (-2, -1, 0, 1), 1.0
 HIDDEN_THRESHOLD = 4.5
 LEAST_CHANCE = 3e-3  # floor of the chance that a line is missing for reasons not modelled
 PER_ELEMENT = 7
@@ -23,7 +24,8 @@ DERIVED_PRICE = 1.5
 LOW_LINE_EV, LIGHT_Z, LOW_ALONE_PRICE = 110.0, 20, 1.5
 SHARP_EV, SHARP_LOG_SIGMA = 1.6, 0.45  # what a published line on a fitted axis says of energy and ln height
 CORE_PART = 0.3  # core lines move about a third as far as the valence lines of the light elements
-STATE_PRICE, UNKNOWN_STATE_PRICE = 1.2, 2.0
+STATE_PRICE, UNKNOWN_STATE_PRICE, LONELY_STATE_PRICE = 1.2, 2.0, 1.0
+MAIN_LINE = 0.5  # an element is in the scan when a line this strong is
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -65,7 +67,8 @@ def build_options(problem: Problem, axis: Axis) -> Options:
     sigma = np.hypot(pattern.sigma_ev, axis.sigma_ev)
     row, column, minimum = _anchors(problem, place, sigma)
     deviation = problem.energy_ev[minimum] - place[row, column]
-    shift, shift_price = _shift(problem, row, column, deviation, sigma[row, column])
+    partners = _lonely_price(problem, place, sigma)[pattern.state_partner]
+    shift, shift_price = _shift(problem, row, column, deviation, sigma[row, column], partners)
     valence = pattern.valence[row, column]
     core_shift = np.where(valence, CORE_PART * shift, shift)
     valence_shift = shift
@@ -90,13 +93,33 @@ def _anchors(problem: Problem, place: FloatArray, sigma: FloatArray) -> tuple[In
     return rows[pair], columns[pair], minimum
 
 
+def _lonely_price(problem: Problem, place: FloatArray, sigma: FloatArray) -> FloatArray:
+    """What a state costs more whose partner should be seen and is not, by the partner's index; (e + 1,), last zero.
+
+    An oxide without a trace of oxygen, with oxygen's line in the scan, is hardly one.
+    """
+    pattern = problem.patterns
+    rows = np.arange(place.shape[0])
+    strongest = np.argmax(np.where(pattern.real & problem.in_range(place), pattern.height, -1.0), axis=1)
+    where, reach = place[rows, strongest], 2.0 * sigma[rows, strongest]
+    scanned = problem.in_range(where) & (pattern.height[rows, strongest] > MAIN_LINE)
+    low, high = pattern.shift_low_ev[rows, strongest] - reach, pattern.shift_high_ev[rows, strongest] + reach
+    seen = np.searchsorted(problem.energy_ev, where + high) > np.searchsorted(problem.energy_ev, where + low)
+    return np.r_[np.where(scanned & ~seen, LONELY_STATE_PRICE, 0.0), 0.0]
+
+
 def _shift(
-    problem: Problem, row: IntArray, column: IntArray, deviation: FloatArray, sigma: FloatArray
+    problem: Problem,
+    row: IntArray,
+    column: IntArray,
+    deviation: FloatArray,
+    sigma: FloatArray,
+    state_price: FloatArray,
 ) -> tuple[FloatArray, FloatArray]:
     """Shift that an anchor asks for, pulled towards the likeliest state, and the price of that state.
 
-    A state of the table is taken as likely as the reference state; a shift that no state explains is dearer the
-    wider it is of what the element's chemistry allows.
+    A state of the table is taken as likely as the reference state, but for `state_price` (e, 2, states); a shift that
+    no state explains is dearer the wider it is of what the element's chemistry allows.
     """
     pattern = problem.patterns
     low, high = pattern.shift_low_ev[row, column], pattern.shift_high_ev[row, column]
@@ -109,6 +132,7 @@ def _shift(
     spread = np.concatenate([fixed[1], [wide], spread])
     base = np.full(centre.shape, STATE_PRICE)
     base[0], base[1] = 0.0, UNKNOWN_STATE_PRICE
+    base[2:] += state_price[row, valence].T
     with np.errstate(invalid="ignore"):
         cost = base + 0.5 * (deviation - centre) ** 2 / (spread**2 + sigma**2)
         cost = np.where(np.isfinite(spread), cost, np.inf)
@@ -139,13 +163,12 @@ def _evaluate(
     loose = np.where(valence, 1.5 + 0.7 * np.abs(core_shift)[:, None], 0.35 * np.abs(valence_shift)[:, None])
     spread = np.where(valence == anchored_core, loose, 0.0)
     reach = np.hypot(sigma[row], spread)
-    nearest = _nearest(problem.energy_ev, where)
-    off = (problem.energy_ev[nearest] - where) / np.hypot(reach, problem.sigma_ev[nearest])
+    log_sigma = pattern.height_log_sigma[row]
+    nearest, off = _likeliest(problem, where, reach, depth, log_sigma)
     real = pattern.real[row]
     inside = problem.in_range(where) & real
     met = real & (np.abs(off) < REACH) & (depth > 0.04 * problem.depth[nearest])
     firm = pattern.firm[row]
-    log_sigma = pattern.height_log_sigma[row]
     said = np.log(np.maximum(reach / SHARP_EV * log_sigma / SHARP_LOG_SIGMA, 1.0))
     missing = inside & ~met & firm
     price = np.sum(np.where(missing, _missing_price(problem, where, depth, log_sigma), 0.0), axis=1)
@@ -200,13 +223,29 @@ def _soft_costs(
     return soft
 
 
-def _nearest(sorted_ev: FloatArray, wanted_ev: FloatArray) -> IntArray:
-    right = np.clip(np.searchsorted(sorted_ev, wanted_ev), 1, max(sorted_ev.size - 1, 1))
-    right = np.minimum(right, sorted_ev.size - 1)
-    left = np.maximum(right - 1, 0)
-    closer_left = np.abs(sorted_ev[left] - wanted_ev) <= np.abs(sorted_ev[right] - wanted_ev)
-    nearest: IntArray = np.where(closer_left, left, right)
-    return nearest
+def _likeliest(
+    problem: Problem, where: FloatArray, reach: FloatArray, depth: FloatArray, log_sigma: FloatArray
+) -> tuple[IntArray, FloatArray]:
+    """Of the minima about each place the one that suits best in energy and depth, and how far off it is.
+
+    A line is looked for among the two nearest minima on either side: a weak one beside a strong one must not
+    take the strong one's line for its own.
+    """
+    found = problem.energy_ev
+    right = np.searchsorted(found, where)
+    best = np.clip(right, 0, found.size - 1)
+    best_off = np.full(where.shape, np.inf)
+    lowest = np.full(where.shape, np.inf)
+    log_depth = np.log(np.maximum(depth, 1e-300))
+    for step in NEIGHBOURS:
+        at = np.clip(right + step, 0, found.size - 1)
+        off = (found[at] - where) / np.hypot(reach, problem.sigma_ev[at])
+        ratio = (np.log(problem.depth)[at] - log_depth) / log_sigma
+        cost = off**2 + np.minimum(ratio**2, MOST_RATIO_COST) + np.where(np.abs(off) < REACH, 0.0, 1e6)
+        better = cost < lowest
+        best, best_off = np.where(better, at, best), np.where(better, off, best_off)
+        lowest = np.where(better, cost, lowest)
+    return best, best_off
 
 
 def _missing_price(problem: Problem, where: FloatArray, depth: FloatArray, log_sigma: FloatArray) -> FloatArray:

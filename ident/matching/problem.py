@@ -16,9 +16,12 @@ from .settings import Settings
 UNEXPLAINED, UNEXPLAINED_RISE = 7.0, 1.4
 WEAK_RISE, WEAK_FROM = 2.4, 2.8  # near the threshold a minimum may well be noise
 LOW_ENERGY_EV = 60.0
-TAIL_PART, TAIL_REACH_EV = 0.25, 30.0  # losses below a strong line
-SATELLITE_PART, SATELLITE_REACH_EV = 0.12, 35.0  # satellites and steps above it
-ELEMENT_PRICE, COMMONNESS_WEIGHT, EVEN_PRICE = 2.8, 0.9, 6.0
+TAIL_PART, TAIL_REACH_EV = 0.25, 23.0  # losses below a strong line
+SATELLITE_PART, SATELLITE_NEAR_EV = 0.12, 11.0  # satellites above it
+SATELLITE_FAR_PART, SATELLITE_REACH_EV = 0.04, 35.0  # and steps
+CLEAR_OF_THEM = 5.3  # times as deep as that, a minimum asks for an element in full
+SPLIT_WIDTHS, SPLIT_PRICE = 0.7, 3.0
+ELEMENT_PRICE, COMMONNESS_WEIGHT, EVEN_PRICE = 2.1, 0.9, 6.0
 EXPECTED_BONUS = 2.5
 USUAL_RESOLUTION = 0.0055
 
@@ -82,7 +85,7 @@ def pose(analysis: Analysis, settings: Settings) -> Problem:
         significance=significance,
         width_ev=width,
         line_width_ev=_line_widths(patterns, analysis, settings),
-        price=_unexplained_price(energy, depth, significance),
+        price=_unexplained_price(energy, depth, significance, width),
         patterns=patterns,
         element_price=price,
         testable=testable,
@@ -102,17 +105,25 @@ def _line_widths(patterns: Patterns, analysis: Analysis, settings: Settings) -> 
     return np.sqrt(patterns.width_ev**2 + (resolution * patterns.energy_ev) ** 2 + (1.5 * step) ** 2)
 
 
-def _unexplained_price(energy: FloatArray, depth: FloatArray, significance: FloatArray) -> FloatArray:
+def _unexplained_price(
+    energy: FloatArray, depth: FloatArray, significance: FloatArray, width: FloatArray
+) -> FloatArray:
     """Less near the secondary edge, much less where a strong line's losses and satellites stand."""
     price = UNEXPLAINED + UNEXPLAINED_RISE * np.log(np.maximum(significance, 1.0) / 5.0)
     price = np.minimum(price, WEAK_RISE * np.maximum(significance - WEAK_FROM, 0.2))
     price = price * np.clip(0.35 + 0.65 * (energy - 25.0) / (LOW_ENERGY_EV - 25.0), 0.35, 1.0)
     below = energy[None, :] - energy[:, None]  # strong (column) minus this one (row)
     tail = np.where((below > 0) & (below < TAIL_REACH_EV), TAIL_PART, 0.0)
-    satellite = np.where((below < 0) & (-below < SATELLITE_REACH_EV), SATELLITE_PART, 0.0)
+    satellite = np.interp(
+        -below, (0.0, SATELLITE_NEAR_EV, SATELLITE_REACH_EV), (SATELLITE_PART, SATELLITE_PART, SATELLITE_FAR_PART)
+    )
+    satellite = np.where((below < 0) & (-below < SATELLITE_REACH_EV), satellite, 0.0)
     likely = np.max((tail + satellite) * depth[None, :], axis=1, initial=0.0)
-    scale = np.clip(np.log(depth / np.maximum(likely, 1e-300)) / np.log(4.0), 0.0, 1.0)
-    return np.maximum(1.0, price * (0.15 + 0.85 * scale))
+    scale = np.clip(np.log(depth / np.maximum(likely, 1e-300)) / np.log(CLEAR_OF_THEM), 0.0, 1.0)
+    price = np.maximum(1.0, price * (0.15 + 0.85 * scale))
+    # a line of unusual shape is found as two minima closer than two lines would often be
+    split = (np.abs(below) < SPLIT_WIDTHS * width[None, :]) & (depth[None, :] > depth[:, None])
+    return np.where(np.any(split, axis=1), np.minimum(price, SPLIT_PRICE), price)
 
 
 def _hidden_depth(grid: FloatArray, energy: FloatArray, depth: FloatArray, width: FloatArray) -> FloatArray:

@@ -14,6 +14,9 @@ OVERSHOOT_CAP = 5.0
 MOST_MEMBERS = 18
 HEIGHT_FLOOR = 0.4
 SURE_GAIN = 8.0
+# Heavy elements have weak lines below 400 eV that are in no table (common practice, no source).
+UNLISTED_ABOVE_Z, UNLISTED_EV = 36, (40.0, 400.0)
+UNLISTED_PRICE, UNLISTED_PART, UNLISTED_LOG_SIGMA = 3.2, 0.1, 0.5
 SECOND_STATE_PRICE, STATES_APART_EV = 3.5, 3.0  # an element and its oxide at the same time
 
 
@@ -110,8 +113,18 @@ def with_known_minors(problem: Problem, options: Options, members: list[int]) ->
     for member in members:
         rest = [m for m in members if m != member]
         if total_cost(problem, options, rest) - cost > SURE_GAIN:
-            price = np.minimum(price, options.soft[member])
+            price = np.minimum(price, np.minimum(options.soft[member], _unlisted_cost(problem, options, member)))
     return replace(problem, price=price)
+
+
+def _unlisted_cost(problem: Problem, options: Options, member: int) -> FloatArray:
+    """What a minimum costs as a weak line of a heavy element that no table has, (f,); there are a few of them each."""
+    if problem.patterns.z[options.element[member]] <= UNLISTED_ABOVE_Z:
+        return np.full(problem.energy_ev.size, np.inf)
+    usual = UNLISTED_PART * float(np.max(options.depth[member], initial=0.0))
+    over = np.log(np.maximum(problem.depth / max(usual, 1e-300), 1.0)) / UNLISTED_LOG_SIGMA
+    inside = (problem.energy_ev > UNLISTED_EV[0]) & (problem.energy_ev < UNLISTED_EV[1])
+    return np.where(inside, UNLISTED_PRICE + 0.5 * over**2, np.inf)
 
 
 def search(problem: Problem, options: Options, *, passes: int = 3) -> tuple[list[int], float]:
