@@ -15,7 +15,9 @@ from .spectrum import FloatArray
 
 IntArray = NDArray[np.int64]
 TILT_PIVOT_EV = 400.0
-PARTNERS = {"oxide": "O", "phate": "O", "carbonate": "O", "nitride": "N", "carbide": "C", "fluoride": "F", "sulphide": "S"}
+PARTNERS = {
+    "oxide": "O", "phate": "O", "carbonate": "O", "nitride": "N", "carbide": "C", "fluoride": "F", "sulphide": "S",
+}  # fmt: skip
 FIRM_HEIGHT = 0.3  # where an element has no published line, its derived lines this strong stand in for them
 
 
