@@ -76,7 +76,10 @@ def transitions_of(z: int, symbol: str) -> tuple[Transition, ...]:
                 out.append(made)
     for parts, row in published.items():
         out.append(_from_row(z, parts, row))
-    return tuple(sorted(out, key=lambda t: (-t.strength, t.label)))
+    # V in a published label is the whole valence band: it stands for the derived line of the same name too.
+    named = {made.label for made in out if made.published is not None}
+    kept = [made for made in out if made.published is not None or made.label not in named]
+    return tuple(sorted(kept, key=lambda t: (-t.strength, t.label)))
 
 
 def _published(symbol: str) -> dict[tuple[str, str, str], PublishedLine]:
