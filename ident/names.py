@@ -7,6 +7,7 @@ from dataclasses import dataclass
 from functools import cache
 
 from .errors import UnknownNameError
+from .tables.elements import SYMBOLS
 
 # IUPAC names in British spelling, by atomic number from 1 (IUPAC Red Book, table of the elements).
 NAMES = (
@@ -18,11 +19,6 @@ NAMES = (
     "gadolinium terbium dysprosium holmium erbium thulium ytterbium lutetium hafnium tantalum tungsten rhenium "
     "osmium iridium platinum gold mercury thallium lead bismuth polonium astatine radon francium radium actinium "
     "thorium protactinium uranium"
-).split()
-SYMBOLS = (
-    "H He Li Be B C N O F Ne Na Mg Al Si P S Cl Ar K Ca Sc Ti V Cr Mn Fe Co Ni Cu Zn Ga Ge As Se Br Kr Rb Sr Y Zr "
-    "Nb Mo Tc Ru Rh Pd Ag Cd In Sn Sb Te I Xe Cs Ba La Ce Pr Nd Pm Sm Eu Gd Tb Dy Ho Er Tm Yb Lu Hf Ta W Re Os Ir "
-    "Pt Au Hg Tl Pb Bi Po At Rn Fr Ra Ac Th Pa U"
 ).split()
 OTHER_SPELLINGS = {
     "aluminum": "Al", "sulfur": "S", "cesium": "Cs", "phosphor": "P", "wolfram": "W", "natrium": "Na", "kalium": "K",

@@ -4,13 +4,15 @@ from __future__ import annotations
 
 import csv
 import math
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
 from dataclasses import dataclass, fields
-from functools import cache
+from functools import cache, partial
 from pathlib import Path
 from typing import Any, TypeVar, get_type_hints
 
 from ..errors import TableError
+from .elements import NUMBERS, WITH_LINES
+from .rows import KINDS
 
 Row = TypeVar("Row")
 
@@ -78,7 +80,11 @@ def read_rows(name: str, kind: type[Row], folder: Path | None = None) -> tuple[R
     TableError
         With file, line, column and value of the first cell that does not fit.
     """
-    return tuple(_rows((folder or reference_folder()) / name, kind))
+    path = (folder or reference_folder()) / name
+    try:
+        return tuple(_rows(path, kind))
+    except (UnicodeDecodeError, csv.Error) as error:
+        raise TableError("is no CSV text in UTF-8", file=path.name) from error
 
 
 def _rows(path: Path, kind: type[Row]) -> Iterator[Row]:
@@ -93,7 +99,8 @@ def _rows(path: Path, kind: type[Row]) -> Iterator[Row]:
         header = next(reader, [])
         if header != names:
             raise TableError(f"columns must be {','.join(names)}", file=path.name, line=1, value=",".join(header))
-        readers = [_READERS[types[name]] for name in names]
+        readers = [_reader(path, kind, name, types[name]) for name in names]
+        seen: dict[tuple[Any, ...], int] = {}
         for cells in reader:
             line = reader.line_num
             if len(cells) != len(names):
@@ -104,15 +111,65 @@ def _rows(path: Path, kind: type[Row]) -> Iterator[Row]:
                     values[name] = read(cell)
                 except ValueError as error:
                     raise TableError(str(error), file=path.name, line=line, column=name, value=cell) from None
+            _once(path, line, kind, values, seen)
             yield _checked(path, line, kind, values)
 
 
+def _reader(path: Path, kind: type[Row], column: str, of: Any) -> Callable[[str], Any]:
+    """What makes a cell of a column into a value, or raises ValueError."""
+    if column == "symbol":
+        return partial(_symbol, also=getattr(kind, "also", ()))
+    if column == "source":
+        return partial(_source, known=_source_keys(path.parent))
+    return _kind if column == "kind" else _READERS[of]
+
+
+def _once(path: Path, line: int, kind: type[Row], values: dict[str, Any], seen: dict[tuple[Any, ...], int]) -> None:
+    """Refuse a second row with the same key."""
+    columns: tuple[str, ...] = getattr(kind, "unique_by", ())
+    key = tuple(values[column] for column in columns)
+    first = seen.setdefault(key, line)
+    if first != line:
+        value = " ".join(str(part) for part in key)
+        raise TableError(
+            f"stands in line {first} already", file=path.name, line=line, column=", ".join(columns), value=value
+        )
+
+
 def _checked(path: Path, line: int, kind: type[Row], values: dict[str, Any]) -> Row:
+    symbol, z = values.get("symbol"), values.get("z")
+    if z is not None and NUMBERS[symbol or ""] != z:
+        what = f"is not the atomic number of {symbol}, {NUMBERS[symbol or '']}"
+        raise TableError(what, file=path.name, line=line, column="z", value=str(z))
     try:
         return kind(**values)
     except ValueError as error:
         column, _, what = str(error).partition(": ")
         raise TableError(what, file=path.name, line=line, column=column, value=str(values.get(column))) from None
+
+
+@cache
+def _source_keys(folder: Path) -> frozenset[str]:
+    with (folder / "sources.csv").open(encoding="utf-8", newline="") as stream:
+        return frozenset(row["key"] for row in csv.DictReader(stream))
+
+
+def _symbol(cell: str, *, also: tuple[str, ...]) -> str:
+    if cell not in WITH_LINES and cell not in also:
+        raise ValueError("is no element from Li to U")
+    return cell
+
+
+def _source(cell: str, *, known: frozenset[str]) -> str:
+    if not cell or any(key not in known for key in cell.split(" ")):
+        raise ValueError("is no key of sources.csv")
+    return cell
+
+
+def _kind(cell: str) -> str:
+    if cell not in KINDS:
+        raise ValueError(f"must be one of {', '.join(sorted(KINDS))}")
+    return cell
 
 
 def _number(cell: str) -> float:

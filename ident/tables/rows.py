@@ -1,8 +1,15 @@
-"""One frozen dataclass a table; its fields are the columns, in their order."""
+"""One frozen dataclass a table; its fields are the columns, in their order.
+
+`unique_by` names the columns that tell its rows apart, `also` what may stand for a symbol beside those of the elements
+with Auger lines.
+"""
 
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import ClassVar
+
+from .elements import AFTER_URANIUM
 
 KINDS = frozenset({"measured", "compiled", "calculated", "recalled"})
 
@@ -16,6 +23,8 @@ def _need(right: bool, column: str, what: str) -> None:
 class Source:
     """What a source key stands for."""
 
+    unique_by: ClassVar[tuple[str, ...]] = ("key",)
+
     key: str
     text: str
     doi: str
@@ -24,6 +33,9 @@ class Source:
 @dataclass(frozen=True, kw_only=True, slots=True)
 class BindingEnergy:
     """Binding energy of a level, Fermi-referenced, solid where one is known."""
+
+    unique_by: ClassVar[tuple[str, ...]] = ("symbol", "level")
+    also: ClassVar[tuple[str, ...]] = (AFTER_URANIUM,)
 
     symbol: str
     z: int
@@ -35,13 +47,14 @@ class BindingEnergy:
     source: str
 
     def __post_init__(self) -> None:
-        _need(self.kind in KINDS, "kind", f"must be one of {', '.join(sorted(KINDS))}")
         _need(self.energy_ev >= 0, "energy_ev", "must not be negative")
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class PublishedLine:
     """A published line energy as its source states it."""
+
+    unique_by: ClassVar[tuple[str, ...]] = ("symbol", "transition", "energy_ev", "form", "source")
 
     symbol: str
     z: int
@@ -58,14 +71,19 @@ class PublishedLine:
     source: str
 
     def __post_init__(self) -> None:
-        _need(self.kind in KINDS, "kind", f"must be one of {', '.join(sorted(KINDS))}")
         _need(self.form in {"derivative", "direct", "unknown"}, "form", "must be derivative, direct or unknown")
+        levels = {"handbook", "fermi", "unknown"}
+        _need(self.reference_level in levels, "reference_level", "must be handbook, fermi or unknown")
+        _need(self.status in {"read", "from memory"}, "status", "must be read or from memory")
+        _need(self.confidence in {"normal", "low"}, "confidence", "must be normal or low")
         _need(self.sigma_ev > 0, "sigma_ev", "must be positive")
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Family:
     """A family of transitions: what its correction is fitted to, chosen beforehand, and how."""
+
+    unique_by: ClassVar[tuple[str, ...]] = ("family",)
 
     family: str
     degree: int  # of the polynomial in Z
@@ -78,6 +96,8 @@ class Family:
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Line:
     """One line of an element: derivative minimum on the absolute scale of `physics`."""
+
+    unique_by: ClassVar[tuple[str, ...]] = ("symbol", "transition")
 
     symbol: str
     z: int
@@ -104,6 +124,8 @@ class Line:
 class Commonness:
     """How often an element is on a technical surface that is put under a microprobe."""
 
+    unique_by: ClassVar[tuple[str, ...]] = ("symbol",)
+
     symbol: str
     z: int
     probability: float
@@ -118,6 +140,8 @@ class Commonness:
 @dataclass(frozen=True, kw_only=True, slots=True)
 class ChemicalShift:
     """Shift of a line in a chemical state against the state that its energy refers to."""
+
+    unique_by: ClassVar[tuple[str, ...]] = ("symbol", "transition", "state")
 
     symbol: str
     transition: str
@@ -136,6 +160,9 @@ class ChemicalShift:
 class ShiftPrior:
     """How far chemistry may move a class of lines; symbol * is every element not named."""
 
+    unique_by: ClassVar[tuple[str, ...]] = ("symbol", "valence")
+    also: ClassVar[tuple[str, ...]] = ("*",)
+
     symbol: str
     valence: bool
     lowest_ev: float
@@ -143,10 +170,15 @@ class ShiftPrior:
     kind: str
     source: str
 
+    def __post_init__(self) -> None:
+        _need(self.lowest_ev < self.highest_ev, "highest_ev", "must lie above lowest_ev")
+
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Sensitivity:
     """Rough depth of an element's strongest line per atomic percent, Ag M5N45N45 = 1."""
+
+    unique_by: ClassVar[tuple[str, ...]] = ("symbol",)
 
     symbol: str
     z: int
@@ -155,3 +187,7 @@ class Sensitivity:
     factor: float  # one standard deviation, multiplicative
     kind: str
     source: str
+
+    def __post_init__(self) -> None:
+        _need(self.sensitivity > 0, "sensitivity", "must be positive")
+        _need(self.factor > 1, "factor", "must lie above 1")
