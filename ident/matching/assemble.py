@@ -134,7 +134,7 @@ def _line(
     }
     if met >= 0:
         total = float(sums.depth[met]) or depth  # a derived line alone explains it
-        spread = float(sums.spread[met]) / total or float(pattern.height_log_sigma[element, column])
+        spread = float(sums.predicted[2, met]) / total or float(pattern.height_log_sigma[element, column])
         return LineEvidence(
             **common,  # type: ignore[arg-type]
             sigma_ev=float(np.hypot(sigma, problem.sigma_ev[met])),

@@ -17,7 +17,7 @@ REACH = 3.5  # standard deviations
 NEIGHBOURS, MOST_RATIO_COST = (-2, -1, 0, 1), 1.0
 HIDDEN_THRESHOLD = 4.5
 LEAST_CHANCE = 3e-3  # floor of the chance that a line is missing for reasons not modelled
-PER_ELEMENT = 7
+PER_ELEMENT = 4
 WIDTH_LOG_SIGMA, WIDTH_CAP = 0.4, 6.0
 DERIVED_PRICE = 1.5
 # Heavy elements crowd below 110 eV: lines there alone are a weak claim to one (common practice, no source).
@@ -47,16 +47,24 @@ class Options:
     shift_core_ev: FloatArray
     shift_valence_ev: FloatArray
     price: FloatArray  # element, shift and missing lines together
-    depth: FloatArray  # predicted depth at each minimum
-    moment: FloatArray  # depth * deviation in standard deviations
-    spread: FloatArray  # depth * log-sigma of the height
-    loose: FloatArray  # depth * (how much less a line says than a published one + how ill the width fits)
+    predicted: FloatArray  # (4, o, f), one array so that sets are summed at once; by name below
     soft: FloatArray  # cost of each minimum if a derived line of the option is all that explains it
     met: IntArray  # (o, l): minimum each line met, -1 for none
 
+    @property
+    def depth(self) -> FloatArray:
+        """Predicted depth at each minimum."""
+        return self.predicted[0]
+
+    @property
+    def moment(self) -> FloatArray:
+        """Depth times deviation in standard deviations."""
+        return self.predicted[1]
+
     def take(self, keep: NDArray[np.bool_] | IntArray) -> Options:
         """Some of the options."""
-        return Options(**{name: getattr(self, name)[keep] for name in self.__dataclass_fields__})
+        rest = {name: getattr(self, name)[keep] for name in self.__dataclass_fields__ if name != "predicted"}
+        return Options(predicted=self.predicted[:, keep], **rest)
 
 
 def build_options(problem: Problem, axis: Axis) -> Options:
@@ -164,20 +172,25 @@ def _evaluate(
     spread = np.where(valence == anchored_core, loose, 0.0)
     reach = np.hypot(sigma[row], spread)
     log_sigma = pattern.height_log_sigma[row]
-    nearest, off = _likeliest(problem, where, reach, depth, log_sigma)
     real = pattern.real[row]
+    nearest, off = np.zeros(real.shape, dtype=np.int64), np.zeros(real.shape)
+    nearest[real], off[real] = _likeliest(problem, where[real], reach[real], depth[real], log_sigma[real])
     inside = problem.in_range(where) & real
     met = real & (np.abs(off) < REACH) & (depth > 0.04 * problem.depth[nearest])
     firm = pattern.firm[row]
     said = np.log(np.maximum(reach / SHARP_EV * log_sigma / SHARP_LOG_SIGMA, 1.0))
     missing = inside & ~met & firm
-    price = np.sum(np.where(missing, _missing_price(problem, where, depth, log_sigma), 0.0), axis=1)
+    price = np.zeros(real.shape)
+    price[missing] = _missing_price(problem, where[missing], depth[missing], log_sigma[missing])
+    price = price.sum(axis=1)
     sure = met & firm
     low_alone = ~np.any(sure & (pattern.energy_ev[row] > LOW_LINE_EV), axis=1) & (pattern.z[row] > LIGHT_Z)
     price = price + np.where(low_alone, LOW_ALONE_PRICE, 0.0)
     rows = np.broadcast_to(np.arange(row.size)[:, None], met.shape)[sure]
     flat = rows * count + nearest[sure]
     size = row.size * count
+
+    loose_said = said + _width_cost(problem, row, nearest)
 
     def gathered(values: FloatArray) -> FloatArray:
         return np.asarray(np.bincount(flat, weights=values[sure], minlength=size), dtype=float).reshape(row.size, count)
@@ -188,10 +201,7 @@ def _evaluate(
         shift_core_ev=core_shift,
         shift_valence_ev=valence_shift,
         price=price + problem.element_price[row],
-        depth=gathered(depth),
-        moment=gathered(depth * off),
-        spread=gathered(depth * log_sigma),
-        loose=gathered(depth * (said + _width_cost(problem, row, nearest))),
+        predicted=np.stack([gathered(depth * part) for part in (1.0, off, log_sigma, loose_said)]),
         soft=_soft_costs(problem, row, nearest, met & ~firm, off, depth, reach, log_sigma),
         met=np.where(met, nearest, -1),
     )
@@ -231,17 +241,15 @@ def _likeliest(
     A line is looked for among the two nearest minima on either side: a weak one beside a strong one must not
     take the strong one's line for its own.
     """
-    found = problem.energy_ev
+    found, log_found = problem.energy_ev, np.log(problem.depth)
     right = np.searchsorted(found, where)
-    best = np.clip(right, 0, found.size - 1)
-    best_off = np.full(where.shape, np.inf)
-    lowest = np.full(where.shape, np.inf)
     log_depth = np.log(np.maximum(depth, 1e-300))
+    best, best_off, lowest = right, np.zeros(where.shape), np.full(where.shape, np.inf)
     for step in NEIGHBOURS:
         at = np.clip(right + step, 0, found.size - 1)
         off = (found[at] - where) / np.hypot(reach, problem.sigma_ev[at])
-        ratio = (np.log(problem.depth)[at] - log_depth) / log_sigma
-        cost = off**2 + np.minimum(ratio**2, MOST_RATIO_COST) + np.where(np.abs(off) < REACH, 0.0, 1e6)
+        ratio = (log_found[at] - log_depth) / log_sigma
+        cost = off * off + np.minimum(ratio * ratio, MOST_RATIO_COST) + np.where(np.abs(off) < REACH, 0.0, 1e6)
         better = cost < lowest
         best, best_off = np.where(better, at, best), np.where(better, off, best_off)
         lowest = np.where(better, cost, lowest)

@@ -20,44 +20,42 @@ UNLISTED_PRICE, UNLISTED_PART, UNLISTED_LOG_SIGMA = 3.2, 0.1, 0.5
 SECOND_STATE_PRICE, STATES_APART_EV = 3.5, 3.0  # an element and its oxide at the same time
 
 
-@dataclass(frozen=True, kw_only=True, eq=False)
+@dataclass(frozen=True, eq=False)
 class Sums:
-    """What a set of options predicts at each minimum, (f,) or (o, f)."""
+    """What sets of options predict at each minimum, (4, f) or (4, o, f): depth, and depth times three things.
 
-    depth: FloatArray
-    moment: FloatArray
-    spread: FloatArray
-    loose: FloatArray
+    Those are the deviation in standard deviations, the log-sigma of the height, and how much less a line says than a
+    published one of the right width would.
+    """
+
+    predicted: FloatArray
+
+    @property
+    def depth(self) -> FloatArray:
+        """Predicted depth, (f,) or (o, f)."""
+        return self.predicted[0]
 
     def plus(self, options: Options) -> Sums:
         """The same with each option added in turn."""
-        return Sums(
-            depth=self.depth + options.depth,
-            moment=self.moment + options.moment,
-            spread=self.spread + options.spread,
-            loose=self.loose + options.loose,
-        )
+        return Sums(self.predicted[:, None, :] + options.predicted)
 
 
 def minimum_costs(problem: Problem, sums: Sums) -> FloatArray:
     """Cost of every minimum under a prediction: how far off, how deep against expected, at most unexplained."""
-    depth = np.where(sums.depth > 0, sums.depth, problem.depth)
-    off = sums.moment / depth
-    spread = np.maximum(sums.spread / depth, HEIGHT_FLOOR)
-    ratio = np.log(problem.depth / depth) / spread
-    position = 0.5 * off**2
-    height = 0.5 * np.minimum(ratio**2, 2.0 * OVERSHOOT_CAP)
-    cost = position + height + sums.loose / depth
+    met = sums.depth > 0
+    depth = np.where(met, sums.depth, problem.depth)
+    off, spread, loose = sums.predicted[1:] / depth
+    ratio = np.log(problem.depth / depth) / np.maximum(spread, HEIGHT_FLOOR)
+    cost = 0.5 * off * off + np.minimum(0.5 * ratio * ratio, OVERSHOOT_CAP) + loose
     price = problem.price
     # deeper than predicted: the rest may be something else's, so it never costs more than the unexplained
-    capped = np.where(ratio > 0, np.minimum(cost, price), np.minimum(cost, price + OVERSHOOT_CAP))
-    return np.where(sums.depth > 0, capped, price)
+    most = price + np.where(ratio > 0, 0.0, OVERSHOOT_CAP)
+    return np.where(met, np.minimum(cost, most), price)
 
 
 def empty_sums(problem: Problem) -> Sums:
     """The prediction of no element at all."""
-    zero = np.zeros(problem.energy_ev.size)
-    return Sums(depth=zero, moment=zero, spread=zero, loose=zero)
+    return Sums(np.zeros((4, problem.energy_ev.size)))
 
 
 def alone(problem: Problem, options: Options) -> FloatArray:
@@ -70,12 +68,7 @@ def sums_of(problem: Problem, options: Options, members: list[int]) -> Sums:
     """What the members predict together."""
     if not members:
         return empty_sums(problem)
-    return Sums(
-        depth=options.depth[members].sum(axis=0),
-        moment=options.moment[members].sum(axis=0),
-        spread=options.spread[members].sum(axis=0),
-        loose=options.loose[members].sum(axis=0),
-    )
+    return Sums(options.predicted[:, members].sum(axis=1))
 
 
 def total_cost(problem: Problem, options: Options, members: list[int]) -> float:

@@ -25,7 +25,7 @@ FITTED_SIGMA_EV = 0.4
 # The tables' heights are of E N(E), as a cylindrical mirror records it; N(E) tilts them by the power -1 of energy.
 TILT_CENTRES = {"en": (0.0,), "n": (-1.0,), "auto": (0.0, -1.0)}
 TILT_SIGMA = 0.5
-SETTLED, WORTH_SETTLING = 3, 12.0
+SETTLED, WORTH_SETTLING = 3, 7.0
 LEAST_SHARE = 0.4
 
 
@@ -51,7 +51,7 @@ def solve(problem: Problem) -> list[Solution]:
             offset = OFFSET_CENTRE_EV + float(start)
             axis = Axis(offset_ev=offset, slope=SLOPE_CENTRE, sigma_ev=START_SIGMA_EV, tilt=tilt)
             options = build_options(problem, axis)
-            members, cost = search(problem, options, passes=1)
+            members, cost = search(problem, options, passes=0)
             tried.append((cost + _axis_price(offset, SLOPE_CENTRE, insulator), members, options, axis))
     tried.sort(key=lambda trial: trial[0])
     settled: list[Solution] = []

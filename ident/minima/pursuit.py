@@ -17,6 +17,7 @@ BoolArray = NDArray[np.bool_]
 PARABOLA_BELOW_EV = 160.0
 EDGE_EV = 8.0
 SHAPE_TOLERANCE = 0.07  # part of a strong line's depth that its unknown shape may leave beside it
+TOLERANCE_REACH = 18.0  # line widths beyond which nothing of that rest is left
 MOST = 110
 FEWEST_DIRECT, FEWEST_RECORDED, MOST_EXCESS = 100, 40, 4.0
 NORMAL_QUIET = 0.3853  # 30 % quantile of |x| for a standard normal
@@ -199,8 +200,10 @@ def tolerance(energy: FloatArray, features: tuple[Feature, ...]) -> FloatArray:
     """How deep a feature must be beside strong lines not to be taken for the rest of their shape."""
     floor = np.zeros_like(energy)
     for feature in features:
-        away = (energy - feature.energy_ev) / feature.sigma_ev
-        reach = np.where(away < 0, np.exp(-0.5 * (away / 4.5) ** 2), np.exp(-0.5 * (away / 3.5) ** 2))
+        reach_ev = TOLERANCE_REACH * feature.sigma_ev
+        near = slice(*np.searchsorted(energy, (feature.energy_ev - reach_ev, feature.energy_ev + reach_ev)))
+        away = (energy[near] - feature.energy_ev) / feature.sigma_ev
+        reach = np.exp(-0.5 * (away / np.where(away < 0, 4.5, 3.5)) ** 2)
         inner = 0.35 * np.exp(-0.5 * (away / 1.1) ** 2)
-        floor = np.maximum(floor, feature.depth * np.maximum(SHAPE_TOLERANCE * reach, inner))
+        floor[near] = np.maximum(floor[near], feature.depth * np.maximum(SHAPE_TOLERANCE * reach, inner))
     return floor

@@ -89,13 +89,14 @@ def _refine_group(
         return [(f, 0.5 * f.sigma_ev) for f in group]
     scale = float(np.max(depth))
     background = np.stack([np.ones_like(x), np.linspace(-1.0, 1.0, x.size)], axis=1)
+    flat, _ = np.linalg.qr(background)
     noise = max(float(np.mean(differential.sigma[low:high])) * differential.filter_gain(np.ones(1)), 1e-300)
     information = np.eye(3 * count + 2)
     for _ in range(ROUNDS):
         shapes, slopes, stretches = _jacobian(x, position, width)
         design = np.concatenate([shapes, slopes * depth, stretches * depth, background * scale], axis=1)
         misfit = y - shapes @ depth
-        rest = max(noise, float(np.std(misfit - background @ np.linalg.lstsq(background, misfit, rcond=None)[0])))
+        rest = max(noise, float(np.std(misfit - flat @ (flat.T @ misfit))))
         ridge = np.concatenate(
             [(DEPTH_FREEDOM * first_depth) ** -2, np.exp(-2 * width), np.full(count, WIDTH_FREEDOM**-2), np.zeros(2)]
         )
