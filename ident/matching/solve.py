@@ -27,6 +27,7 @@ TILT_CENTRES = {"en": (0.0,), "n": (-1.0,), "auto": (0.0, -1.0)}
 TILT_SIGMA = 0.5
 SETTLED, WORTH_SETTLING = 3, 7.0
 LEAST_SHARE = 0.4
+UNMOVED_EV = 0.15
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)
@@ -100,8 +101,16 @@ def _settle(
         known = with_known_minors(problem, options, members)
         members, cost = search(known, options)
         fit = _fit(problem, options, members)
+        if _moved_ev(axis, fit) < UNMOVED_EV:
+            break
     cost += _axis_price(fit.offset_ev, fit.slope, insulator) + 0.5 * ((axis.tilt - tilt_centre) / TILT_SIGMA) ** 2
     return Solution(problem=known, axis=axis, fit=fit, options=options, members=members, cost=cost)
+
+
+def _moved_ev(axis: Axis, fit: AxisFit) -> float:
+    """How far the fit has left the axis, at the worse end of where most lines are."""
+    away = [fit.offset_ev - axis.offset_ev + (fit.slope - axis.slope) * energy_ev for energy_ev in (100.0, 1000.0)]
+    return max(abs(part) for part in away)
 
 
 def _pairs(
