@@ -17,11 +17,12 @@ REACH = 3.5  # standard deviations
 NEIGHBOURS, MOST_RATIO_COST = (-2, -1, 0, 1), 1.0
 HIDDEN_THRESHOLD = 4.5
 LEAST_CHANCE = 3e-3  # floor of the chance that a line is missing for reasons not modelled
-PER_ELEMENT = 4
+PER_ELEMENT = 6
 WIDTH_LOG_SIGMA, WIDTH_CAP = 0.4, 6.0
 DERIVED_PRICE = 1.5
 # Heavy elements crowd below 110 eV: lines there alone are a weak claim to one (common practice, no source).
 LOW_LINE_EV, LIGHT_Z, LOW_ALONE_PRICE = 110.0, 20, 1.5
+LOWEST_LINE_EV, LOWEST_ALONE_PRICE = 75.0, 1.4  # and below 75 eV to any
 SHARP_EV, SHARP_LOG_SIGMA = 1.6, 0.45  # what a published line on a fitted axis says of energy and ln height
 CORE_PART = 0.3  # core lines move about a third as far as the valence lines of the light elements
 STATE_PRICE, UNKNOWN_STATE_PRICE, LONELY_STATE_PRICE = 1.2, 2.0, 1.0
@@ -186,6 +187,8 @@ def _evaluate(
     sure = met & firm
     low_alone = ~np.any(sure & (pattern.energy_ev[row] > LOW_LINE_EV), axis=1) & (pattern.z[row] > LIGHT_Z)
     price = price + np.where(low_alone, LOW_ALONE_PRICE, 0.0)
+    lowest_alone = ~np.any(sure & (pattern.energy_ev[row] > LOWEST_LINE_EV), axis=1) & (pattern.z[row] <= LIGHT_Z)
+    price = price + np.where(lowest_alone, LOWEST_ALONE_PRICE, 0.0)
     rows = np.broadcast_to(np.arange(row.size)[:, None], met.shape)[sure]
     flat = rows * count + nearest[sure]
     size = row.size * count

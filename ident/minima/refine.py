@@ -13,6 +13,7 @@ from .shapes import ASYMMETRY, line_shape
 
 LARGEST_GROUP = 7
 ROUNDS = 4
+ONE_LINE = 1.0  # widths: minima closer than this are one line of unusual shape
 DEPTH_FREEDOM = 0.5  # prior standard deviation of a depth, relative: crowded minima must not blow each other up
 WIDTH_FREEDOM = 0.25  # prior standard deviation of ln sigma about the width that the search chose
 
@@ -56,7 +57,7 @@ def prune(refined: tuple[tuple[Feature, float], ...]) -> tuple[tuple[Feature, fl
 
 def _one_line(first: Feature, second: Feature) -> bool:
     """Whether two minima stand closer than any two lines could be told apart."""
-    return abs(first.energy_ev - second.energy_ev) < 0.75 * max(first.sigma_ev, second.sigma_ev)
+    return abs(first.energy_ev - second.energy_ev) < ONE_LINE * max(first.sigma_ev, second.sigma_ev)
 
 
 def _groups(features: list[Feature]) -> list[list[Feature]]:
