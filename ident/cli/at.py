@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 import click
 
-from ..lookup import Candidate, candidates_at
-from .options import format_option
+from ..lookup import Candidate, EnergyScale, candidates_at
+from .options import STATING, energy_scale, format_option, with_options
 
 
 @click.command(
@@ -15,15 +17,20 @@ from .options import format_option
 )
 @click.argument("energies", nargs=-1, required=True, type=float, metavar="ENERGY...")
 @click.option("--reach", type=float, metavar="EV", help="Only lines at most this many eV away.")
+@with_options(STATING)
 @format_option
-def command(energies: tuple[float, ...], reach: float | None, form: str) -> int:
+def command(energies: tuple[float, ...], reach: float | None, form: str, **given: Any) -> int:
     """Name the elements that could explain a minimum at each ENERGY, and what else must then be seen.
 
-    ENERGY is that of the derivative minimum in eV, on the handbook scale.
+    ENERGY is that of the derivative minimum in eV, on the handbook scale, unless options say how else it was read;
+    the answer states energies the same way.
 
     Example: ident at 651
+
+    Example: ident at --reference fermi --kind direct 918.6
     """
-    found = [(energy, candidates_at(energy, within=reach)) for energy in energies]
+    scale = energy_scale(given)
+    found = [(energy, candidates_at(energy, within=reach, scale=scale)) for energy in energies]
     if form == "csv":
         from ..report.csv_rows import AT_COLUMNS, at_rows, render_rows
 
@@ -31,16 +38,16 @@ def command(energies: tuple[float, ...], reach: float | None, form: str) -> int:
         click.echo(render_rows([AT_COLUMNS, *rows]), nl=False)
         return 0
     for energy, candidates in found:
-        click.echo(_rendered(energy, candidates, form), nl=False)
+        click.echo(_rendered(energy, candidates, form, scale), nl=False)
     return 0
 
 
-def _rendered(energy_ev: float, candidates: tuple[Candidate, ...], form: str) -> str:
+def _rendered(energy_ev: float, candidates: tuple[Candidate, ...], form: str, scale: EnergyScale) -> str:
     if form == "json":
         from ..lookup import at_answer
         from ..report.json_lines import render_json
 
-        return render_json(at_answer(energy_ev, candidates))
+        return render_json(at_answer(energy_ev, candidates, scale=scale))
     from ..report.text_lookup import render_at
 
-    return render_at(energy_ev, candidates)
+    return render_at(energy_ev, candidates, scale)

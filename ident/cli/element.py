@@ -2,28 +2,34 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 import click
 
 from ..errors import UnknownNameError
 from ..lookup import ElementCard, card_answer, element_card
-from .options import format_option
+from .options import STATING, energy_scale, format_option, with_options
 from .say import complain
 
 
 @click.command("element", short_help="The reference card of an element.")
 @click.argument("names", nargs=-1, required=True, metavar="NAME...")
+@with_options(STATING)
 @format_option
-def command(names: tuple[str, ...], form: str) -> int:
+def command(names: tuple[str, ...], form: str, **given: Any) -> int:
     """Show the reference card of each element NAME: its lines, their rivals, the line that decides, sources.
 
     NAME is a symbol or a name; small misspellings are forgiven.
 
     Example: ident element titanium
+
+    Example: ident element --reference vacuum --kind direct Cu
     """
+    scale = energy_scale(given)
     cards, failed = [], False
     for name in names:
         try:
-            cards.append(element_card(name))
+            cards.append(element_card(name, scale=scale))
         except UnknownNameError as unknown:
             complain(str(unknown))
             failed = True

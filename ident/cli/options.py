@@ -4,9 +4,12 @@ from __future__ import annotations
 
 import re
 from collections.abc import Callable, Iterable
-from typing import Any, TypeVar
+from typing import TYPE_CHECKING, Any, TypeVar
 
 import click
+
+if TYPE_CHECKING:
+    from ..physics.scales import EnergyScale
 
 Function = TypeVar("Function", bound=Callable[..., Any])
 
@@ -82,6 +85,51 @@ KNOWING = (
     click.option("--insulator", is_flag=True, help="The sample may charge: allow the axis tens of eV."),
     click.option("--no-commonness", is_flag=True, help="Take every element for equally common."),
 )
+
+STATING = (
+    click.option(
+        "--reference",
+        type=click.Choice(["absolute", "fermi", "vacuum", "handbook"]),
+        default="handbook",
+        show_default=True,
+        help="Level that energies count from; absolute is the Fermi level.",
+    ),
+    click.option(
+        "--kind",
+        type=click.Choice(["derivative", "direct"]),
+        default="derivative",
+        show_default=True,
+        help="Minimum of the differentiated line, or maximum of the direct one.",
+    ),
+    click.option(
+        "--resolution", callback=_resolution, metavar="0.5%|1.2eV", help="Energy resolution of the analyser; 0.5 %."
+    ),
+    click.option("--modulation", type=float, default=0.0, metavar="EV", help="Modulation, peak to peak."),
+    click.option("--smoothing", type=float, default=0.0, metavar="EV", help="Window of the smoothing derivative."),
+    click.option(
+        "--separation",
+        type=float,
+        metavar="EV",
+        help="Between maximum and minimum of the differentiated line: use it when what broadens is not known.",
+    ),
+    click.option(
+        "--work-function", type=float, metavar="EV", help="Of the analyser, for the vacuum level; 4.5 (standard)."
+    ),
+)
+
+
+def energy_scale(given: dict[str, Any]) -> EnergyScale:
+    """Make the scale of the user's energies from the options of `STATING`."""
+    from ..physics.scales import EnergyScale
+
+    unit, number = given["resolution"] or ("relative", None)
+    chosen = {name: given[name] for name in ("reference", "kind")}
+    broadening = {f"{name}_ev": given[name] for name in ("modulation", "smoothing", "separation")}
+    if number is not None:
+        broadening |= {"resolution": number} if unit == "relative" else {"resolution": 0.0, "resolution_ev": number}
+    if given["work_function"] is not None:
+        broadening["work_function_ev"] = given["work_function"]
+    return EnergyScale(**chosen, **broadening)
 
 
 def with_options(options: Iterable[Callable[[Function], Function]]) -> Callable[[Function], Function]:

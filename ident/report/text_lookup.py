@@ -12,18 +12,45 @@ from .text_assign import printable_lines
 if TYPE_CHECKING:
     from ..lookup import Candidate, CardLine, ElementCard
     from ..minima import Analysis
+    from ..physics.scales import EnergyScale
     from ..tables.files import TableFile
 
 MOST_TOLD = 3  # candidates whose reasons are written out
 
 
-def render_at(energy_ev: float, candidates: Sequence[Candidate]) -> str:
+LEVELS = {"handbook": "handbook scale", "fermi": "Fermi level", "absolute": "absolute scale"}
+
+
+def _read_as(scale: EnergyScale) -> str:
+    """How energies are stated, in words."""
+    told = [LEVELS.get(scale.reference, f"vacuum level, work function {scale.work_function_ev:g} eV")]
+    if scale.kind == "direct":
+        return ", ".join([*told, "direct maximum"])
+    told.append("derivative minimum")
+    if scale.separation_ev is not None:
+        return ", ".join([*told, f"maximum {scale.separation_ev:g} eV below it"])
+    if scale.needs_width:
+        told.append(f"resolution {100 * scale.resolution:g} %" if scale.resolution else "constant resolution")
+        added = {"": scale.resolution_ev, "modulation ": scale.modulation_ev, "smoothing ": scale.smoothing_ev}
+        told += [f"{what}{value:g} eV" for what, value in added.items() if value]
+    return ", ".join(told)
+
+
+def _energy(energy_ev: float, scale: EnergyScale) -> str:
+    """The handbooks give whole eV; elsewhere a tenth is worth writing."""
+    return f"{energy_ev:.0f}" if scale.reference == "handbook" and not scale.needs_width else f"{energy_ev:.1f}"
+
+
+def render_at(energy_ev: float, candidates: Sequence[Candidate], scale: EnergyScale) -> str:
     """Write what could be at an energy."""
-    parts = [heading(f"{energy_ev:g} eV (handbook scale, derivative minimum)")]
+    parts = [heading(f"{energy_ev:g} eV ({_read_as(scale)})")]
     if not candidates:
         return printable_lines([*parts, "  no line of any element is near"]) + "\n\n"
     rows = [
-        (c.element, c.transition, f"{c.expected_ev:.0f}", f"{c.deviation_ev:+.0f}", f"{c.weight:.2f}", _needs(c))
+        (
+            *(c.element, c.transition, _energy(c.expected_ev, scale), f"{c.deviation_ev:+.0f}", f"{c.weight:.2f}"),
+            _needs(c, scale),
+        )
         for c in candidates
     ]
     head = ("element", "transition", "stands at", "away", "weight", "must then be seen too (eV, of its strongest)")
@@ -34,8 +61,8 @@ def render_at(energy_ev: float, candidates: Sequence[Candidate]) -> str:
     return printable_lines(parts) + "\n\n"
 
 
-def _needs(candidate: Candidate) -> str:
-    told = [f"{need.energy_ev:.0f} ({need.relative_height:.0%})" for need in candidate.needs]
+def _needs(candidate: Candidate, scale: EnergyScale) -> str:
+    told = [f"{_energy(need.energy_ev, scale)} ({need.relative_height:.0%})" for need in candidate.needs]
     return ", ".join(told) if told else "nothing"
 
 
@@ -44,10 +71,10 @@ def render_card(card: ElementCard) -> str:
     parts = [heading(f"{card.element}, {card.name}, Z = {card.z}")]
     if card.untestable is not None:
         return printable_lines([*parts, hanging("", card.untestable, width=0)]) + "\n\n"
-    parts.append("  derivative minima on the handbook scale; height 1 is its strongest line")
+    parts.append(f"  {_read_as(card.scale)}; height 1 is its strongest line")
     rows = [
         (
-            f"{line.energy_ev:.0f}",
+            _energy(line.energy_ev, card.scale),
             line.transition,
             f"{line.relative_height:.2f}",
             f"{line.sigma_ev:.1f}",
