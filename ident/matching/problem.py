@@ -22,7 +22,7 @@ SATELLITE_FAR_PART, SATELLITE_REACH_EV = 0.04, 35.0  # and steps
 CLEAR_OF_THEM = 5.3  # times as deep as that, a minimum asks for an element in full
 SPLIT_WIDTHS, SPLIT_PRICE = 0.7, 3.0
 ELEMENT_PRICE, COMMONNESS_WEIGHT, EVEN_PRICE = 2.1, 0.9, 6.0
-EXPECTED_BONUS = 2.5
+EXPECTED_BONUS, EXPECTED_PRICE = 2.5, 0.6  # what is expected is as likely as carbon and oxygen, however rare it is
 USUAL_RESOLUTION = 0.0055
 
 
@@ -142,4 +142,4 @@ def _element_price(patterns: Patterns, settings: Settings) -> FloatArray:
     else:
         price = np.full(len(patterns.symbols), EVEN_PRICE)
     expected = np.array([symbol in settings.expect for symbol in patterns.symbols])
-    return np.where(expected, price - EXPECTED_BONUS, price)
+    return np.where(expected, np.minimum(price - EXPECTED_BONUS, EXPECTED_PRICE), price)

@@ -52,6 +52,7 @@ class Demo:
     offset_ev: float = 1.2
     slope: float = 0.0006
     film_nm: float = 0.0
+    expect: tuple[str, ...] = ()  # what the part is known to be made of, without which the scan cannot tell
 
     @property
     def sample(self) -> tuple[Constituent, ...]:
@@ -133,6 +134,7 @@ DEMOS: tuple[Demo, ...] = (
         write=_tabs,
         recording=replace(GOOD, times_energy=False, spikes=1, signal_to_noise=120.0),
         offset_ev=-1.6,
+        expect=("Al", "Au"),
     ),
     Demo(
         file="valve_stem_coated.csv",
@@ -200,6 +202,7 @@ DEMOS: tuple[Demo, ...] = (
         axes_ev=(_scan(20, 1000),),
         write=_csv,
         recording=replace(GOOD, unit="normalised", signal_to_noise=24.0),
+        expect=("Pb", "Sn"),
     ),
     Demo(
         file="terminal_windows.csv",
