@@ -1,7 +1,8 @@
 """The derived tables from their inputs; the only place that imports the X-ray libraries.
 
 Inputs, kept by hand: published_lines.csv, families.csv, chemical_shifts.csv, shift_priors.csv, commonness.csv,
-sources.csv. Derived from them: binding_energies.csv, transitions.csv, lines.csv, sensitivities.csv.
+sources.csv. Derived from them: binding_energies.csv, transitions.csv, lines.csv, sensitivities.csv, materials.csv,
+rivals.csv.
 """
 
 from __future__ import annotations
@@ -44,18 +45,48 @@ TRANSITION_COLUMNS = [
 ]
 SENSITIVITY_COLUMNS = ["symbol", "z", "transition", "sensitivity", "factor", "kind", "source"]
 BINDING_COLUMNS = ["symbol", "z", "level", "energy_ev", "sigma_ev", "kind", "state", "source"]
+MATERIAL_COLUMNS = [
+    "symbol",
+    "z",
+    "valence_electrons",
+    "density_g_cm3",
+    "density_sigma_g_cm3",
+    "molar_mass",
+    "gap_ev",
+    "kind",
+    "state",
+    "source",
+]
+RIVAL_COLUMNS = [
+    "symbol",
+    "z",
+    "transition",
+    "rival",
+    "rival_transition",
+    "away_ev",
+    "reach_ev",
+    "decided_by",
+    "weakly_by",
+    "ruled_out_by",
+    "kind",
+    "source",
+]
 SENSITIVITY_FACTOR = 2.2
 
 
 def derived_tables() -> dict[str, str]:
     """Text of every derived table, made anew from the inputs."""
     from .binding import binding_rows
+    from .materials import material_rows
+    from .rivals import rival_rows
 
     made: dict[str, Callable[[], str]] = {
         "binding_energies.csv": lambda: rendered(BINDING_COLUMNS, binding_rows()),
         "transitions.csv": lambda: rendered(TRANSITION_COLUMNS, _transition_rows()),
         "lines.csv": lambda: rendered(LINE_COLUMNS, _line_rows()),
         "sensitivities.csv": lambda: rendered(SENSITIVITY_COLUMNS, _sensitivity_rows()),
+        "materials.csv": lambda: rendered(MATERIAL_COLUMNS, material_rows()),
+        "rivals.csv": lambda: rendered(RIVAL_COLUMNS, rival_rows(_elements())),
     }
     return {name: make() for name, make in made.items()}
 

@@ -9,7 +9,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import ClassVar
 
-from .elements import AFTER_URANIUM
+from .elements import AFTER_URANIUM, WITH_LINES
 
 KINDS = frozenset({"measured", "compiled", "calculated", "recalled"})
 
@@ -191,3 +191,52 @@ class Sensitivity:
     def __post_init__(self) -> None:
         _need(self.sensitivity > 0, "sensitivity", "must be positive")
         _need(self.factor > 1, "factor", "must lie above 1")
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Material:
+    """What a mean free path in an element is worked out from."""
+
+    unique_by: ClassVar[tuple[str, ...]] = ("symbol",)
+
+    symbol: str
+    z: int
+    valence_electrons: int
+    density_g_cm3: float
+    density_sigma_g_cm3: float
+    molar_mass: float
+    gap_ev: float
+    kind: str
+    state: str
+    source: str
+
+    def __post_init__(self) -> None:
+        _need(1 <= self.valence_electrons <= 12, "valence_electrons", "must lie between 1 and 12")
+        _need(0.4 < self.density_g_cm3 < 25, "density_g_cm3", "must lie between 0.4 and 25 (no gas)")
+        _need(self.density_sigma_g_cm3 > 0, "density_sigma_g_cm3", "must be positive")
+        _need(self.molar_mass > 0, "molar_mass", "must be positive")
+        _need(self.gap_ev >= 0, "gap_ev", "must not be negative")
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Rival:
+    """A strong line of an element, another element with a strong line within reach, and what tells them apart."""
+
+    unique_by: ClassVar[tuple[str, ...]] = ("symbol", "transition", "rival")
+
+    symbol: str
+    z: int
+    transition: str
+    rival: str
+    rival_transition: str
+    away_ev: float  # the rival's line less this one
+    reach_ev: float  # one standard deviation of the difference that shifts, axis and resolution leave open
+    decided_by: str  # strongest line of the element, from 20 %, clear of all strong ones of the rival; or empty
+    weakly_by: str  # the same from 5 to 20 %
+    ruled_out_by: str  # strongest line of the rival clear of the element's: when it is absent, so is the rival
+    kind: str
+    source: str
+
+    def __post_init__(self) -> None:
+        _need(self.rival in WITH_LINES and self.rival != self.symbol, "rival", "must be another element from Li to U")
+        _need(self.reach_ev > 0, "reach_ev", "must be positive")

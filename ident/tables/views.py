@@ -12,7 +12,9 @@ from .rows import (
     Commonness,
     Family,
     Line,
+    Material,
     PublishedLine,
+    Rival,
     Sensitivity,
     ShiftPrior,
     Source,
@@ -93,6 +95,25 @@ def sensitivities() -> dict[str, Sensitivity]:
 def binding_energies() -> dict[tuple[str, str], BindingEnergy]:
     """Binding energies by symbol and level."""
     return {(row.symbol, row.level): row for row in read_rows("binding_energies.csv", BindingEnergy)}
+
+
+@cache
+def materials() -> dict[str, Material]:
+    """What mean free paths in the elements are worked out from, by symbol."""
+    return {row.symbol: row for row in read_rows("materials.csv", Material)}
+
+
+@cache
+def _rivals() -> dict[str, tuple[Rival, ...]]:
+    grouped: dict[str, list[Rival]] = {}
+    for row in read_rows("rivals.csv", Rival):
+        grouped.setdefault(row.symbol, []).append(row)
+    return {symbol: tuple(rows) for symbol, rows in grouped.items()}
+
+
+def rivals_of(symbol: str) -> tuple[Rival, ...]:
+    """Rivals of every strong line of an element; none for hydrogen and helium."""
+    return _rivals().get(symbol, ())
 
 
 @cache
