@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from dataclasses import fields, replace
 from pathlib import Path
+from typing import Any
 
 import numpy as np
 import pytest
@@ -23,7 +24,7 @@ FILES = ("slip_ring_dead.csv", "valve_stem_coated.csv", "connector_pin_derivativ
 few = settings(max_examples=4, deadline=None, suppress_health_check=[HealthCheck.function_scoped_fixture])
 
 
-def probabilities(spectrum: Spectrum, **choices: object) -> dict[str, float]:
+def probabilities(spectrum: Spectrum, **choices: Any) -> dict[str, float]:
     evidence = weigh(analyse(spectrum), Settings(**choices))
     return {element.element: element.probability for element in evidence.elements}
 
