@@ -14,11 +14,16 @@ UNCERTAINTY = {
     "binding_energies.csv": ("sigma_ev",),
     "chemical_shifts.csv": ("sigma_ev",),
     "lines.csv": ("sigma_ev", "height_log_sigma"),
+    "materials.csv": ("density_sigma_g_cm3",),
     "published_lines.csv": ("sigma_ev",),
+    "rivals.csv": ("reach_ev",),
     "sensitivities.csv": ("factor",),
     "transitions.csv": ("sigma_ev",),
 }
-STATE = ("binding_energies.csv", "chemical_shifts.csv", "lines.csv", "published_lines.csv", "transitions.csv")
+STATE = (
+    *("binding_energies.csv", "chemical_shifts.csv", "lines.csv", "materials.csv", "published_lines.csv"),
+    "transitions.csv",
+)
 JUDGEMENTS = {"commonness.csv", "families.csv", "shift_priors.csv", "sources.csv"}  # no energies, or a range
 
 
