@@ -15,9 +15,18 @@ from .say import complain
 @click.command("element", short_help="The reference card of an element.")
 @click.argument("names", nargs=-1, required=True, metavar="NAME...")
 @with_options(STATING)
+@click.option(
+    "--emission",
+    type=float,
+    default=0.0,
+    metavar="DEG",
+    help="From the surface normal to where electrons are collected; 42 for a coaxial mirror analyser.",
+)
 @format_option
-def command(names: tuple[str, ...], form: str, **given: Any) -> int:
+def command(names: tuple[str, ...], emission: float, form: str, **given: Any) -> int:
     """Show the reference card of each element NAME: its lines, their rivals, the line that decides, sources.
+
+    Depths are those that 95 % of a line's signal comes from: three mean free paths.
 
     NAME is a symbol or a name; small misspellings are forgiven.
 
@@ -29,7 +38,7 @@ def command(names: tuple[str, ...], form: str, **given: Any) -> int:
     cards, failed = [], False
     for name in names:
         try:
-            cards.append(element_card(name, scale=scale))
+            cards.append(element_card(name, scale=scale, emission_deg=emission))
         except UnknownNameError as unknown:
             complain(str(unknown))
             failed = True

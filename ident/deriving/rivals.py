@@ -11,12 +11,12 @@ from numpy.typing import NDArray
 from ..names import parse_transition
 from ..physics.levels import FWHM_PER_SIGMA, RESOLUTION
 from ..physics.widths import natural_width_ev
-from ..tables import shift_range
+from ..tables import STRONG_HEIGHT, shift_range
 from .lines import Weighted, weighted_lines
 from .writing import Cells, number
 
 AXIS_SIGMA_EV = 3.0  # how far axes of real instruments stand from the tables (common practice, no source)
-STRONG_HEIGHT = 0.2  # of the element's strongest line: from here a line has rivals, is one, or decides
+LOW_EV, LOW_WORTH = 110.0, 0.25  # below, nearly every heavy element has a line: such a line decides only at need
 WEAK_HEIGHT = 0.05  # from here a line may help to decide in a scan with little noise
 
 Matrix = NDArray[np.bool_]
@@ -32,6 +32,7 @@ class Lines:
     labels: tuple[str, ...]
     energy_ev: Array
     height: Array
+    worth: Array  # of the line as the one that decides; 0 where its height is known by calculation alone
     centre_ev: Array  # of the range in which chemistry moves the line
     spread_sq: Array  # variance of its place: energy, shift, and half the axis's
     apart_sq: Array  # square of the distance at which two such lines stand apart
@@ -43,6 +44,7 @@ def rival_rows(elements: list[tuple[int, str]]) -> list[Cells]:
     Reach in eV is the square root of the sum of squares of: the standard deviations of both energies, half the range
     of both chemical shifts, 3 eV for the axis, and two standard deviations of the recorded line at 0.5 % resolution,
     within which two differentiated lines are one. It is centred where the middles of the shift ranges meet.
+    Lines whose height is calculated can hide others, but decide only for elements that have no published line.
     """
     lines = _gathered(elements)
     reach = np.sqrt(lines.spread_sq[:, None] + lines.spread_sq[None, :] + lines.apart_sq[:, None])
@@ -76,13 +78,17 @@ def _gathered(elements: list[tuple[int, str]]) -> Lines:
     ranges = np.array([shift_range(symbol, line.transition.valence) for _, symbol, line in kept])
     energy = np.array([round(line.transition.energy_ev, 1) for *_, line in kept])
     sigma = np.array([round(line.transition.sigma_ev, 1) for *_, line in kept])
+    published = {symbol for _, symbol, line in kept if line.kind == "published"}
+    firm = np.array([line.kind == "published" or symbol not in published for _, symbol, line in kept])
+    height = np.array([round(line.height, 3) for *_, line in kept])
     widths = np.hypot([_natural_ev(z, line) for z, _, line in kept], RESOLUTION * energy)
     return Lines(
         symbols=tuple(symbol for _, symbol, _ in kept),
         z=tuple(z for z, *_ in kept),
         labels=tuple(line.transition.label for *_, line in kept),
         energy_ev=energy,
-        height=np.array([round(line.height, 3) for *_, line in kept]),
+        height=height,
+        worth=height * firm * np.where(energy < LOW_EV, LOW_WORTH, 1.0),
         centre_ev=ranges.mean(axis=1),
         spread_sq=sigma**2 + (0.5 * (ranges[:, 1] - ranges[:, 0])) ** 2 + 0.5 * AXIS_SIGMA_EV**2,
         apart_sq=(2.0 * widths / FWHM_PER_SIGMA) ** 2,
@@ -97,11 +103,12 @@ def _natural_ev(z: int, line: Weighted) -> float:
 def _deciders(
     lines: Lines, close: Matrix, members: dict[str, NDArray[np.int64]], least: float, most: float
 ) -> dict[tuple[str, str], str]:
-    """For each pair of elements the strongest line of the first, from `least` to `most`, clear of the second's."""
+    """For each pair of elements the best line of the first, from `least` to `most`, clear of the second's."""
     out: dict[tuple[str, str], str] = {}
     covers = {symbol: [j for j in places if lines.height[j] >= least] for symbol, places in members.items()}
     for own, places in members.items():
-        offered = [i for i in places if least <= lines.height[i] < most]
+        offered = [i for i in places if least <= lines.height[i] < most and lines.worth[i] > 0]
+        offered.sort(key=lambda i: -float(lines.worth[i]))
         for other, theirs in covers.items():
             clear = [i for i in offered if not close[i, theirs].any()]
             out[own, other] = lines.labels[clear[0]] if clear else ""

@@ -8,14 +8,17 @@ from __future__ import annotations
 
 from ..physics.scales import EnergyScale
 from .at import LOOKUP_CODES, Candidate, Need, candidates_at
-from .card import CardLine, CardRival, CardShift, CardSource, Decider, ElementCard, element_card
+from .card import CardLine, CardShift, CardSource, ElementCard, element_card
+from .depths import CardEscape
 from .energies import HANDBOOK, stated_ev
 from .plain import at_answer, card_answer
+from .rivalry import CardRival, Decider
 
 __all__ = [
     "HANDBOOK",
     "LOOKUP_CODES",
     "Candidate",
+    "CardEscape",
     "CardLine",
     "CardRival",
     "CardShift",

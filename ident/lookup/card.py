@@ -8,23 +8,11 @@ from dataclasses import dataclass
 from .. import tables
 from ..names import name_of, symbol_from_name
 from ..physics.scales import EnergyScale
-from .at import AXIS_SIGMA_EV, MOST_NEEDED, RARE, bell
+from .depths import CardEscape, escape_of, line_depth_nm, line_free_path
 from .energies import HANDBOOK, stated_ev, stated_sigma_ev
+from .rivalry import CardRival, Decider, decision_on, rivals_by_line
 
-HANDLED_ONLY = 0.001  # below: elements met only where they are handled, such as astatine
-RIVAL_REACH_EV = 8.0
-RIVAL_HEIGHT = 0.15
 SHOWN_HEIGHT = 0.02
-
-
-@dataclass(frozen=True, kw_only=True)
-class CardRival:
-    """A line of another element that could be taken for this one."""
-
-    element: str
-    transition: str
-    energy_ev: float
-    relative_height: float
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -39,7 +27,11 @@ class CardLine:
     height_kind: str
     state: str  # the state that the energy refers to
     source: str
-    rivals: tuple[CardRival, ...]
+    mean_free_path_nm: float  # in the element itself
+    mean_free_path_factor: float  # one standard deviation, multiplicative
+    mean_free_path_formula: str
+    depth_nm: float  # 95 % of the signal comes from no deeper
+    rivals: tuple[CardRival, ...]  # of lines of 20 % and more, likeliest first
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -63,15 +55,6 @@ class CardSource:
 
 
 @dataclass(frozen=True, kw_only=True)
-class Decider:
-    """The line that decides whether the element is there, and why that one."""
-
-    transition: str
-    energy_ev: float
-    why: str
-
-
-@dataclass(frozen=True, kw_only=True)
 class ElementCard:
     """The reference card of an element."""
 
@@ -82,13 +65,17 @@ class ElementCard:
     kind: str  # derivative or direct
     scale: EnergyScale
     lines: tuple[CardLine, ...]  # strongest first
-    deciding: Decider | None
+    deciding: Decider | None  # the clearest of its lines
+    decided_by: str | None  # its transition; None when a rival can cover every strong line
+    undecided_beside: tuple[str, ...]  # those rivals
+    decision: str  # the same in words
+    escape: CardEscape | None  # how depths were worked out
     shifts: tuple[CardShift, ...]
     sources: tuple[CardSource, ...]
     untestable: str | None  # why no line can be given, if none can
 
 
-def element_card(name: str, *, scale: EnergyScale = HANDBOOK) -> ElementCard:
+def element_card(name: str, *, scale: EnergyScale = HANDBOOK, emission_deg: float = 0.0) -> ElementCard:
     """Put the reference card of an element together.
 
     Parameters
@@ -97,15 +84,26 @@ def element_card(name: str, *, scale: EnergyScale = HANDBOOK) -> ElementCard:
         Symbol or name; small misspellings are forgiven.
     scale : EnergyScale, optional
         How energies are stated; by default as derivative minima on the handbooks' scale.
+    emission_deg : float, optional
+        Angle between the surface normal and the direction in which electrons are collected.
 
     Raises
     ------
     UnknownNameError
         When the name is that of no element.
+    SettingError
+        When the angle is not between 0 and 80 degrees.
     """
     symbol = symbol_from_name(name)
     lines = sorted(tables.lines_of(symbol), key=lambda line: -line.relative_height)
-    shown = tuple(_card_line(line, scale) for line in lines if line.relative_height >= SHOWN_HEIGHT)
+    escape = escape_of(symbol, emission_deg) if lines else None
+    rivals = rivals_by_line(symbol, scale)
+    shown = tuple(
+        _card_line(line, scale, emission_deg, rivals.get(line.transition, ()))
+        for line in lines
+        if line.relative_height >= SHOWN_HEIGHT
+    )
+    decision = decision_on(symbol, scale)
     shifts = tuple(
         CardShift(
             transition=row.transition, state=row.state, shift_ev=row.shift_ev, sigma_ev=row.sigma_ev, source=row.source
@@ -120,9 +118,15 @@ def element_card(name: str, *, scale: EnergyScale = HANDBOOK) -> ElementCard:
         kind=scale.kind,
         scale=scale,
         lines=shown,
-        deciding=_decider(shown),
+        deciding=decision.deciding,
+        decided_by=decision.decided_by,
+        undecided_beside=decision.beside,
+        decision=decision.text,
+        escape=escape,
         shifts=shifts,
-        sources=_cited([*(line.source for line in shown), *(shift.source for shift in shifts)]),
+        sources=_cited(
+            [*(line.source for line in shown), *(s.source for s in shifts), *([escape.source] if escape else [])]
+        ),
         untestable=None if shown else _why_no_line(symbol),
     )
 
@@ -137,7 +141,8 @@ def _cited(keys: Iterable[str]) -> tuple[CardSource, ...]:
     )
 
 
-def _card_line(line: tables.Line, scale: EnergyScale) -> CardLine:
+def _card_line(line: tables.Line, scale: EnergyScale, emission_deg: float, rivals: tuple[CardRival, ...]) -> CardLine:
+    path = line_free_path(line)
     return CardLine(
         transition=line.transition,
         energy_ev=stated_ev(line, scale),
@@ -147,53 +152,12 @@ def _card_line(line: tables.Line, scale: EnergyScale) -> CardLine:
         height_kind=line.height_kind,
         state=line.state,
         source=line.source,
-        rivals=_rivals(line, scale),
+        mean_free_path_nm=path.nm,
+        mean_free_path_factor=path.factor,
+        mean_free_path_formula=path.formula,
+        depth_nm=line_depth_nm(path, emission_deg),
+        rivals=rivals,
     )
-
-
-def _rivals(line: tables.Line, scale: EnergyScale) -> tuple[CardRival, ...]:
-    """Lines of other elements within reach, those most often met first, one an element."""
-    common = tables.commonness()
-    near: dict[str, tuple[float, tables.Line]] = {}
-    for other in tables.read_lines():
-        away = abs(other.energy_ev - line.energy_ev)
-        if other.symbol == line.symbol or away > RIVAL_REACH_EV or other.relative_height < RIVAL_HEIGHT:
-            continue
-        if common.get(other.symbol, 0.0) < HANDLED_ONLY:
-            continue
-        weight = other.relative_height * bell(away / AXIS_SIGMA_EV) * max(common.get(other.symbol, 0.0), RARE)
-        if weight > near.get(other.symbol, (0.0, other))[0]:
-            near[other.symbol] = (weight, other)
-    ranked = sorted(near.values(), key=lambda pair: -pair[0])[:MOST_NEEDED]
-    return tuple(
-        CardRival(
-            element=other.symbol,
-            transition=other.transition,
-            energy_ev=stated_ev(other, scale),
-            relative_height=other.relative_height,
-        )
-        for _, other in ranked
-    )
-
-
-def _decider(lines: tuple[CardLine, ...]) -> Decider | None:
-    """The line whose height, divided among it and its rivals, is largest."""
-    if not lines:
-        return None
-    best = max(lines, key=_clearness)
-    if not best.rivals:
-        why = f"nothing else in the tables stands within {RIVAL_REACH_EV:g} eV"
-    else:
-        names = ", ".join(f"{rival.element} {rival.energy_ev:.0f}" for rival in best.rivals)
-        why = f"the clearest of its lines, though {names} eV stand near"
-    return Decider(transition=best.transition, energy_ev=best.energy_ev, why=why)
-
-
-def _clearness(line: CardLine) -> float:
-    common = tables.commonness()
-    rivalry = sum(rival.relative_height * max(common.get(rival.element, 0.0), RARE) for rival in line.rivals)
-    low = 0.25 if line.energy_ev < 110.0 else 1.0  # where nearly every heavy element has a line
-    return low * line.relative_height / (1.0 + 5.0 * rivalry)
 
 
 def _why_no_line(symbol: str) -> str:

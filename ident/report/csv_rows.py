@@ -25,7 +25,7 @@ AT_COLUMNS = (
 )
 ELEMENT_COLUMNS = (
     *("element", "z", "transition", "energy_ev", "sigma_ev", "energy_kind", "relative_height", "height_kind"),
-    *("state", "rivals", "deciding", "source"),
+    *("state", "rivals", "deciding", "source", "mean_free_path_nm", "mean_free_path_factor", "depth_nm"),
 )
 MINIMA_COLUMNS = (
     *("spectrum", "energy_ev", "sigma_ev", "depth", "peak_to_peak", "width_ev", "significance"),
@@ -95,6 +95,7 @@ def element_rows(card: ElementCard) -> list[tuple[Any, ...]]:
             *(line.relative_height, line.height_kind, line.state),
             "; ".join(f"{r.element} {r.transition} {r.energy_ev:.0f}" for r in line.rivals),
             *("yes" if line.transition == decides else "no", line.source),
+            *(line.mean_free_path_nm, line.mean_free_path_factor, line.depth_nm),
         )
         for line in card.lines
     ]

@@ -15,6 +15,7 @@ if TYPE_CHECKING:
     from ..physics.scales import EnergyScale
     from ..tables.files import TableFile
 
+MOST_RIVALS = 4
 MOST_TOLD = 3  # candidates whose reasons are written out
 
 
@@ -79,16 +80,21 @@ def render_card(card: ElementCard) -> str:
             f"{line.relative_height:.2f}",
             f"{line.sigma_ev:.1f}",
             line.energy_kind,
+            f"{line.mean_free_path_nm:.1f}",
+            f"{line.depth_nm:.1f}",
             _rivals(line),
         )
         for line in card.lines
     ]
-    head = ("eV", "transition", "height", "+- eV", "energy is", "others near")
-    parts += columns(head, rows, right=(0, 2, 3))
+    head = ("eV", "transition", "height", "+- eV", "energy is", "path nm", "sees nm", "others near")
+    parts += columns(head, rows, right=(0, 2, 3, 5, 6))
     if card.deciding is not None:
         parts.append(
             hanging("decides", f"{card.deciding.transition} at {card.deciding.energy_ev:.0f} eV: {card.deciding.why}")
         )
+    parts.append(hanging("decided" if card.decided_by else "undecided", card.decision))
+    if card.escape is not None:
+        parts += _escape(card)
     for shift in card.shifts:
         parts.append(hanging("shift", f"{shift.transition} {shift.shift_ev:+.1f} eV in {shift.state}"))
     states = dict.fromkeys(line.state for line in card.lines if line.state)
@@ -101,7 +107,21 @@ def render_card(card: ElementCard) -> str:
 
 
 def _rivals(line: CardLine) -> str:
-    return ", ".join(f"{rival.element} {rival.energy_ev:.0f}" for rival in line.rivals)
+    """The likeliest rivals of a strong line, and how many more there are."""
+    told = ", ".join(f"{rival.element} {rival.energy_ev:.0f}" for rival in line.rivals[:MOST_RIVALS])
+    more = len(line.rivals) - MOST_RIVALS
+    return f"{told} and {more} more" if more > 0 else told
+
+
+def _escape(card: ElementCard) -> list[str]:
+    """How deep the lines are seen from, and by which formulas."""
+    escape = card.escape
+    if escape is None:
+        return []
+    angle = f" at {escape.emission_deg:g} degrees" if escape.emission_deg else ""
+    told = f"path is the mean free path in {escape.material}; sees is {escape.depth}{angle}"
+    used = {line.mean_free_path_formula for line in card.lines}
+    return [hanging("depth", told), *(hanging("", text) for text in escape.formulas if text.split(" ")[0] in used)]
 
 
 def render_minima(analysis: Analysis) -> str:

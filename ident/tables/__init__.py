@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from .files import edition, list_tables, reference_folder
 from .rows import (
+    STRONG_HEIGHT,
     BindingEnergy,
     ChemicalShift,
     Commonness,
@@ -33,6 +34,7 @@ from .views import (
 )
 
 __all__ = [
+    "STRONG_HEIGHT",
     "BindingEnergy",
     "ChemicalShift",
     "Commonness",

@@ -11,6 +11,7 @@ from typing import ClassVar
 
 from .elements import AFTER_URANIUM, WITH_LINES
 
+STRONG_HEIGHT = 0.2  # of the element's strongest line: from here a line has rivals, is one, or decides
 KINDS = frozenset({"measured", "compiled", "calculated", "recalled"})
 
 
