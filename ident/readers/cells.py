@@ -8,7 +8,7 @@ import re
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-SAMPLE_LINES = 120  # enough to see how a table is written
+SAMPLE_LINES = 80  # enough to see how a table is written
 POINT_GROUPS = re.compile(r"[+-]?\d{1,3}(?:,\d{3})+(?:\.\d*)?(?:[eE][+-]?\d+)?")  # 1,234.5
 COMMA_GROUPS = re.compile(r"[+-]?\d{1,3}(?:\.\d{3})+(?:,\d*)?(?:[eE][+-]?\d+)?")  # 1.234,5
 FORTRAN = re.compile(r"[+-]?(?:\d+\.?\d*|\.\d+)[dD][+-]?\d+")
@@ -36,6 +36,18 @@ class Dialect:
         while cells and not cells[-1]:
             cells.pop()
         return cells
+
+    def plain_row(self, line: str) -> tuple[tuple[str, ...], tuple[float, ...]] | None:
+        """Cells and numbers of a line that needs no care, which nearly all do; None when it may."""
+        plain = PLAIN_ROWS.get((self.separator, self.decimal))
+        if not (plain and plain.fullmatch(line)):
+            return None
+        cells = tuple(line.split() if self.separator == " " else line.split(self.separator))
+        try:
+            values = tuple(map(float, cells if self.decimal == "." else [cell.replace(",", ".") for cell in cells]))
+        except ValueError:
+            return None
+        return (cells, values) if math.isfinite(sum(values)) else None
 
     def _split_quoted(self, line: str) -> list[str]:
         cleaned = line.strip().replace("\x00", "")
@@ -76,6 +88,16 @@ DIALECTS = tuple(
 )
 
 
+PLAIN_ROWS = {
+    (dialect.separator, dialect.decimal): re.compile(
+        f"{(cell := '[-+0-9eE' + dialect.decimal + ']+')}"
+        f"(?:{'[ ]+' if dialect.separator == ' ' else re.escape(dialect.separator)}{cell})+"
+    )
+    for dialect in DIALECTS
+    if dialect.separator != dialect.decimal
+}
+
+
 def _to_float(cell: str) -> float | None:
     """Read plain notation; Fortran's D exponent is taken, Python's underscores are not."""
     try:
@@ -90,7 +112,7 @@ def _to_float(cell: str) -> float | None:
 def guess_dialect(lines: Sequence[str]) -> Dialect | None:
     """Find the way of writing under which most lines are rows of two or more numbers; None when none are."""
     candidates = [line for line in lines if DIGIT.search(line)]
-    sample = candidates[:: max(1, len(candidates) // SAMPLE_LINES)]
+    sample = candidates[:: max(1, -(-len(candidates) // SAMPLE_LINES))]
     best, best_score = None, 0
     for dialect in DIALECTS:
         score = sum(_row_score(dialect, line) for line in sample)

@@ -99,6 +99,9 @@ def strip_mark(text: str) -> str:
 
 def _sort_line(number: int, text: str, dialect: Dialect) -> _Line:
     """Say what a line is: blank, text, a row of numbers, or doubtful (some cells are numbers, some not)."""
+    plain = dialect.plain_row(text)
+    if plain:
+        return _Line("row", number, text, *plain)
     cells = tuple(dialect.split(text))
     values = tuple(map(dialect.number, cells))
     if len(values) > 1 and None not in values:
