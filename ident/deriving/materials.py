@@ -6,11 +6,8 @@ from .writing import Cells, number
 
 # Gases at room temperature: density of the liquid at its boiling point, g/cm3 (from memory, hence 20 %).
 LIQUIDS = {"N": 0.81, "O": 1.14, "F": 1.50, "Ne": 1.21, "Cl": 1.56, "Ar": 1.40, "Kr": 2.41, "Xe": 2.94, "Rn": 4.4}
-# Gaps in eV (from memory; the mean free path hardly depends on them: 1 eV moves it by less than 1 %).
-GAPS = {
-    "B": 1.5, "N": 15.0, "O": 6.0, "F": 8.0, "Ne": 21.0, "Si": 1.1, "P": 2.0, "S": 2.8, "Cl": 5.0, "Ar": 14.0,
-    "Ge": 0.7, "Se": 1.8, "Br": 3.0, "Kr": 11.6, "Te": 0.3, "I": 1.3, "Xe": 9.3, "Rn": 8.0,
-}  # fmt: skip
+# Gaps in eV (from memory; the mean free path hardly depends on them: 1 eV moves it by less than 2 %).
+GAPS = {"B": 1.5, "Si": 1.1, "P": 2.0, "S": 2.8, "Ge": 0.7, "Se": 1.8, "Br": 3.0, "Te": 0.3, "I": 1.3}
 # Forms of different density (graphite and diamond, white and red phosphorus, ...): the surface may be any of them.
 FORMS = {"B", "C", "P", "S", "As", "Se", "Sn", "Mn"}
 ESTIMATED = {"Po", "At", "Fr", "Ra", "Ac", "Pa", "Pm", "Tc"}  # radioactive: few measurements or none

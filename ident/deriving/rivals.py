@@ -34,20 +34,20 @@ class Lines:
     height: Array
     worth: Array  # of the line as the one that decides; 0 where its height is known by calculation alone
     centre_ev: Array  # of the range in which chemistry moves the line
-    spread_sq: Array  # variance of its place: energy, shift, and half the axis's
-    apart_sq: Array  # square of the distance at which two such lines stand apart
+    spread_sq: Array  # its part of the square of the reach
 
 
 def rival_rows(elements: list[tuple[int, str]]) -> list[Cells]:
     """One row for each strong line of an element and each other element with a strong line within reach.
 
     Reach in eV is the square root of the sum of squares of: the standard deviations of both energies, half the range
-    of both chemical shifts, 3 eV for the axis, and two standard deviations of the recorded line at 0.5 % resolution,
-    within which two differentiated lines are one. It is centred where the middles of the shift ranges meet.
+    of both chemical shifts, 3 eV for the axis, and two standard deviations of a recorded line at 0.5 % resolution
+    (root mean square of the two lines), within which two differentiated lines are one. It is centred where the
+    middles of the shift ranges meet.
     Lines whose height is calculated can hide others, but decide only for elements that have no published line.
     """
     lines = _gathered(elements)
-    reach = np.sqrt(lines.spread_sq[:, None] + lines.spread_sq[None, :] + lines.apart_sq[:, None])
+    reach = np.sqrt(lines.spread_sq[:, None] + lines.spread_sq[None, :])
     away = lines.energy_ev[None, :] - lines.energy_ev[:, None]
     off = np.abs(away - (lines.centre_ev[:, None] - lines.centre_ev[None, :]))
     close = off <= reach
@@ -78,6 +78,7 @@ def _gathered(elements: list[tuple[int, str]]) -> Lines:
     ranges = np.array([shift_range(symbol, line.transition.valence) for _, symbol, line in kept])
     energy = np.array([round(line.transition.energy_ev, 1) for *_, line in kept])
     sigma = np.array([round(line.transition.sigma_ev, 1) for *_, line in kept])
+    half = 0.5 * (ranges[:, 1] - ranges[:, 0])
     published = {symbol for _, symbol, line in kept if line.kind == "published"}
     firm = np.array([line.kind == "published" or symbol not in published for _, symbol, line in kept])
     height = np.array([round(line.height, 3) for *_, line in kept])
@@ -90,8 +91,7 @@ def _gathered(elements: list[tuple[int, str]]) -> Lines:
         height=height,
         worth=height * firm * np.where(energy < LOW_EV, LOW_WORTH, 1.0),
         centre_ev=ranges.mean(axis=1),
-        spread_sq=sigma**2 + (0.5 * (ranges[:, 1] - ranges[:, 0])) ** 2 + 0.5 * AXIS_SIGMA_EV**2,
-        apart_sq=(2.0 * widths / FWHM_PER_SIGMA) ** 2,
+        spread_sq=sigma**2 + half**2 + 0.5 * (AXIS_SIGMA_EV**2 + (2.0 * widths / FWHM_PER_SIGMA) ** 2),
     )
 
 

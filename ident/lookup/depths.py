@@ -6,8 +6,17 @@ from dataclasses import dataclass
 
 from .. import tables
 from ..errors import SettingError
-from ..physics.escape import SEAH_DENCH_FACTOR, TPP2M_FACTOR, TPP2M_FROM_EV, FreePath, depth_seen_nm, free_path
+from ..physics.escape import (
+    SEAH_DENCH_FACTOR,
+    TPP2M_FACTOR,
+    TPP2M_FROM_EV,
+    FreePath,
+    depth_seen_nm,
+    free_path,
+    free_path_in_compound,
+)
 
+SOLID = "element"  # state of a material that is met as such; gases stand in the table as liquids
 MOST_EMISSION_DEG = 80.0  # nearer to grazing, elastic scattering and roughness decide
 
 
@@ -36,15 +45,16 @@ def escape_of(symbol: str, emission_deg: float) -> CardEscape:
             "give 42 for a coaxial cylindrical mirror"
         )
     row = tables.materials()[symbol]
+    alone = f"{symbol} ({row.density_g_cm3:g} g/cm3, {row.valence_electrons} valence electrons)"
     return CardEscape(
         emission_deg=emission_deg,
-        material=f"{symbol} ({row.state}, {row.density_g_cm3:g} g/cm3, {row.valence_electrons} valence electrons)",
+        material=alone if row.state == SOLID else f"an inorganic compound, atoms as large as {symbol} in its liquid",
         depth="3 lambda cos(theta): 95 % of the signal comes from no deeper",
         formulas=(
             f"TPP-2M from {TPP2M_FROM_EV:g} eV, good to about 10 % (from memory; taken as "
             f"{100 * (TPP2M_FACTOR - 1):.0f} %), Tanuma, Powell, Penn, Surf. Interface Anal. 21 (1994) 165, "
             "doi 10.1002/sia.740210302",
-            f"Seah-Dench below, good to a factor of {SEAH_DENCH_FACTOR:g}, "
+            f"Seah-Dench below, and for compounds of gases, good to a factor of {SEAH_DENCH_FACTOR:g}, "
             "Seah, Dench, Surf. Interface Anal. 1 (1979) 2, doi 10.1002/sia.740010103",
         ),
         source=row.source,
@@ -52,8 +62,12 @@ def escape_of(symbol: str, emission_deg: float) -> CardEscape:
 
 
 def line_free_path(line: tables.Line) -> FreePath:
-    """Mean free path of a line's electrons in its own element."""
+    """Mean free path of a line's electrons in its own element; of gases, in an inorganic compound."""
     row = tables.materials()[line.symbol]
+    if row.state != SOLID:
+        return free_path_in_compound(
+            line.energy_ev, row.density_g_cm3, row.molar_mass, density_sigma_g_cm3=row.density_sigma_g_cm3
+        )
     return free_path(
         line.energy_ev,
         row.valence_electrons,

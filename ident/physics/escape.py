@@ -5,12 +5,13 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
-from .freepath import atom_size_nm, seah_dench_nm, tpp2m_nm
+from .freepath import atom_size_nm, seah_dench_compound_nm, seah_dench_nm, tpp2m_nm
 
 TPP2M_FROM_EV = 50.0
 # Stated accuracy: TPP-2M about 10 % rms against mean free paths from optical data, elements from 200 eV up
 # (S. Tanuma, C. J. Powell, D. R. Penn, Surf. Interface Anal. 35 (2003) 268, from memory, hence doubled; worse below
-# 200 eV and for caesium, graphite and diamond). Seah and Dench: a factor of about 1.4 about their curve.
+# 200 eV and for caesium, graphite and diamond; without meaning in liquid neon, where it turns negative). Seah and
+# Dench: a factor of about 1.4 about their curve.
 TPP2M_FACTOR, SEAH_DENCH_FACTOR = 1.2, 1.4
 DEPTHS = 3.0  # in units of the escape depth: 1 - exp(-3), 95 % of the signal, comes from there
 
@@ -21,7 +22,7 @@ class FreePath:
 
     nm: float
     factor: float  # one standard deviation, multiplicative
-    formula: str  # TPP-2M or Seah-Dench
+    formula: str  # TPP-2M, Seah-Dench, or Seah-Dench for compounds
 
 
 def free_path(
@@ -56,6 +57,21 @@ def free_path(
         return FreePath(nm=nm, factor=_with(TPP2M_FACTOR, unsure), formula="TPP-2M")
     nm = seah_dench_nm(energy_ev, atom_size_nm(density_g_cm3, molar_mass))
     return FreePath(nm=nm, factor=_with(SEAH_DENCH_FACTOR, unsure), formula="Seah-Dench")
+
+
+def free_path_in_compound(
+    energy_ev: float, density_g_cm3: float, molar_mass: float, *, density_sigma_g_cm3: float = 0.0
+) -> FreePath:
+    """Mean free path for an element met only in compounds or implanted: Seah and Dench for inorganic compounds.
+
+    The atom's size is taken from the density given; parameters as for `free_path`.
+
+    >>> round(free_path_in_compound(503.0, 1.14, 15.999).nm, 1)  # O KL23L23; silica has 1.8 to 2.0 nm there
+    2.5
+    """
+    nm = seah_dench_compound_nm(energy_ev, atom_size_nm(density_g_cm3, molar_mass))
+    factor = _with(SEAH_DENCH_FACTOR, density_sigma_g_cm3 / density_g_cm3)
+    return FreePath(nm=nm, factor=factor, formula="Seah-Dench for compounds")
 
 
 def _with(factor: float, relative: float) -> float:

@@ -120,7 +120,7 @@ def _escape(card: ElementCard) -> list[str]:
         return []
     angle = f" at {escape.emission_deg:g} degrees" if escape.emission_deg else ""
     told = f"path is the mean free path in {escape.material}; sees is {escape.depth}{angle}"
-    used = {line.mean_free_path_formula for line in card.lines}
+    used = {line.mean_free_path_formula.split(" ")[0] for line in card.lines}
     return [hanging("depth", told), *(hanging("", text) for text in escape.formulas if text.split(" ")[0] in used)]
 
 
