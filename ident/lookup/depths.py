@@ -54,7 +54,7 @@ def escape_of(symbol: str, emission_deg: float) -> CardEscape:
             f"TPP-2M from {TPP2M_FROM_EV:g} eV, good to about 10 % (from memory; taken as "
             f"{100 * (TPP2M_FACTOR - 1):.0f} %), Tanuma, Powell, Penn, Surf. Interface Anal. 21 (1994) 165, "
             "doi 10.1002/sia.740210302",
-            f"Seah-Dench below, and for compounds of gases, good to a factor of {SEAH_DENCH_FACTOR:g}, "
+            f"Seah-Dench otherwise (lower energies; gases in compounds), good to a factor of {SEAH_DENCH_FACTOR:g}, "
             "Seah, Dench, Surf. Interface Anal. 1 (1979) 2, doi 10.1002/sia.740010103",
         ),
         source=row.source,

@@ -15,7 +15,7 @@ if TYPE_CHECKING:
     from ..physics.scales import EnergyScale
     from ..tables.files import TableFile
 
-MOST_RIVALS = 4
+MOST_RIVALS = 3
 MOST_TOLD = 3  # candidates whose reasons are written out
 
 

@@ -5,6 +5,7 @@ from __future__ import annotations
 import json
 import subprocess
 import sys
+from pathlib import Path
 from typing import Any
 
 import pytest
@@ -12,6 +13,7 @@ import pytest
 from ident import tables
 from ident.errors import SettingError
 from ident.lookup import EnergyScale, candidates_at, element_card
+from ident.physics.scales import absolute_from_stated, stated_from_absolute
 
 
 def ident(*words: str) -> subprocess.CompletedProcess[str]:
@@ -111,3 +113,21 @@ def test_impossible_options_are_one_line(command: list[str], words: list[str]) -
 def test_impossible_settings_of_the_library() -> None:
     with pytest.raises(SettingError):
         candidates_at(651.0, scale=EnergyScale(modulation_ev=-1.0))
+
+
+def test_the_worked_example_of_the_readme() -> None:
+    """Al KL23L23, direct, 1393.0 eV above the Fermi level (doi 10.1002/sia.1316, as cited), worked by hand.
+
+    (3.5^2 + 6.965^2)^0.5 / 2.3548 = 3.31; less 4.500 (IUPAC 2020); (1396.31 - 3.62) / (1 - 2.91e-3) = 1396.76;
+    with 1.5 eV of modulation added in quadrature 3.63.
+    """
+    text = " ".join((Path(__file__).resolve().parents[2] / "README.md").read_text(encoding="utf-8").split())
+    absolute = absolute_from_stated(1393.0, 3.5, EnergyScale(reference="fermi", kind="direct"))
+    worked = {"fermi": 1396.31, "vacuum": 1391.81, "handbook": 1396.76}
+    for reference, energy in worked.items():
+        stated = stated_from_absolute(absolute, 3.5, EnergyScale(reference=reference))  # type: ignore[arg-type]
+        assert stated == pytest.approx(energy, abs=0.02)
+        assert f"{energy:.1f} eV" in text
+    modulated = EnergyScale(reference="fermi", modulation_ev=6.0)
+    assert stated_from_absolute(absolute, 3.5, modulated) - 1393.0 == pytest.approx(3.63, abs=0.02)
+    assert "another 0.3 eV" in text
