@@ -80,22 +80,22 @@ def _refine_group(
     first, last = group[0], group[-1]
     low = int(np.searchsorted(energy, first.energy_ev - 3.0 * ASYMMETRY * first.sigma_ev - 1.0))
     high = int(np.searchsorted(energy, last.energy_ev + 2.6 * last.sigma_ev + 1.0))
-    x, y = energy[low:high], derivative[low:high]
+    unit = max(f.depth for f in group)  # so that nothing depends on what the ordinate is counted in
+    x, y = energy[low:high], derivative[low:high] / unit
     count = len(group)
     start = np.array([[f.energy_ev, np.log(f.sigma_ev)] for f in group]).T
     position, width = start[0].copy(), start[1].copy()
-    first_depth = np.array([f.depth for f in group])
+    first_depth = np.array([f.depth for f in group]) / unit
     depth = first_depth.copy()
     if x.size < 3 * count + 3:
         return [(f, 0.5 * f.sigma_ev) for f in group]
-    scale = float(np.max(depth))
     background = np.stack([np.ones_like(x), np.linspace(-1.0, 1.0, x.size)], axis=1)
     flat, _ = np.linalg.qr(background)
-    noise = max(float(np.mean(differential.sigma[low:high])) * differential.filter_gain(np.ones(1)), 1e-300)
+    noise = max(float(np.mean(differential.sigma[low:high])) * differential.filter_gain(np.ones(1)) / unit, 1e-9)
     information = np.eye(3 * count + 2)
     for _ in range(ROUNDS):
         shapes, slopes, stretches = _jacobian(x, position, width)
-        design = np.concatenate([shapes, slopes * depth, stretches * depth, background * scale], axis=1)
+        design = np.concatenate([shapes, slopes * depth, stretches * depth, background], axis=1)
         misfit = y - shapes @ depth
         rest = max(noise, float(np.std(misfit - flat @ (flat.T @ misfit))))
         ridge = np.concatenate(
@@ -111,12 +111,12 @@ def _refine_group(
             ]
         )
         step = np.linalg.solve(information + 1e-12 * np.eye(information.shape[0]), design.T @ misfit / rest**2 + pull)
-        depth = np.maximum(depth + step[:count], 0.02 * scale * (depth > 0))
+        depth = np.maximum(depth + step[:count], 0.02 * (depth > 0))
         position = position + np.clip(step[count : 2 * count], -1.5, 1.5)
         width = np.clip(width + np.clip(step[2 * count : 3 * count], -0.3, 0.3), start[1] - 0.7, start[1] + 0.7)
     spread = np.sqrt(np.clip(np.diag(np.linalg.inv(information))[count : 2 * count], 1e-6, None))
     return [
-        (replace(f, energy_ev=float(p), depth=float(d), sigma_ev=float(np.exp(w))), float(s))
+        (replace(f, energy_ev=float(p), depth=float(d) * unit, sigma_ev=float(np.exp(w))), float(s))
         for f, p, d, w, s in zip(group, position, depth, width, spread, strict=True)
     ]
 
