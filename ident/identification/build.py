@@ -11,6 +11,7 @@ from ..matching.settings import Settings
 from ..reasons import explain, state_to_tell
 from ..spectrum import Spectrum
 from .answer import (
+    Abundance,
     ArtefactNote,
     Assignment,
     Identification,
@@ -110,7 +111,12 @@ def assemble(
             for u in evidence.unexplained
         ),
         limits=tuple(
-            Limit(element=limit.element, atomic_percent=limit.atomic_percent, line_ev=limit.line_ev)
+            Limit(
+                element=limit.element,
+                atomic_percent=limit.atomic_percent,
+                line_ev=limit.line_ev,
+                usual=limit.usual,
+            )
             for limit in evidence.limits
         ),
         untestable=_untestable(evidence),
@@ -168,7 +174,14 @@ def _assignment(element: ElementEvidence, evidence: Evidence) -> Assignment:
         state=State(name=state.name, shift_ev=state.shift_ev) if state else None,
         reasons=explain(element, evidence),
         rivals=tuple(_rival(rival) for rival in element.rivals),
+        abundance=_abundance(element),
     )
+
+
+def _abundance(element: ElementEvidence) -> Abundance | None:
+    if element.abundance is None:
+        return None
+    return Abundance(atomic_percent=element.abundance.atomic_percent, factor=element.abundance.factor)
 
 
 def _rival(rival: RivalEvidence) -> Rival:

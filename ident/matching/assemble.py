@@ -10,7 +10,9 @@ import numpy as np
 from .. import tables
 from ..patterns import tilted
 from ..spectrum import FloatArray
+from .amounts import find_abundances, find_limits
 from .evidence import (
+    AbundanceEvidence,
     ElementEvidence,
     Evidence,
     InseparableEvidence,
@@ -41,6 +43,7 @@ class Context:
     solution: Solution
     posterior: Posterior
     sums: Sums  # of the best set
+    abundances: dict[int, AbundanceEvidence]
 
     @property
     def options(self) -> Options:
@@ -51,7 +54,8 @@ class Context:
 def assemble(problem: Problem, solution: Solution, posterior: Posterior) -> Evidence:
     """Put the whole answer together."""
     sums = sums_of(problem, solution.options, solution.members)
-    context = Context(problem=problem, solution=solution, posterior=posterior, sums=sums)
+    abundances = find_abundances(problem, solution)
+    context = Context(problem=problem, solution=solution, posterior=posterior, sums=sums, abundances=abundances)
     shown = [e for e in np.argsort(-posterior.probability) if posterior.probability[e] >= LEAST_PROBABILITY]
     shown = [int(e) for e in shown if posterior.best_option[e] >= 0]
     return Evidence(
@@ -60,6 +64,7 @@ def assemble(problem: Problem, solution: Solution, posterior: Posterior) -> Evid
         unexplained=_unexplained(context),
         inseparable=_inseparable(context, shown),
         untestable=_untestable(context),
+        limits=find_limits(problem, solution, posterior.probability),
     )
 
 
@@ -88,6 +93,7 @@ def _element(context: Context, element: int) -> ElementEvidence:
         common=symbol in {"C", "O"},
         single_low_line=len(met) == 1 and met[0].table_ev < LOW_LINE_EV,
         rivals=_rivals(context, element, met),
+        abundance=context.abundances.get(element),
     )
 
 
@@ -164,14 +170,14 @@ def _absence(
     context: Context, element: int, column: int, expected_ev: float, depth: float, inside: bool, others: list[int]
 ) -> tuple[str, tuple[str, ...], float]:
     """Why a line was not met: out of range, hidden, or missing; with what that costs."""
-    from .options import _missing_price
+    from .options import missing_price
 
     problem = context.problem
     if not inside:
         return "out of range", (), 0.0
     where = np.array([expected_ev])
     price = float(
-        _missing_price(
+        missing_price(
             problem, where, np.array([depth]), problem.patterns.height_log_sigma[element, column : column + 1]
         )[0]
     )

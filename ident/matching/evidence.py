@@ -57,6 +57,14 @@ class StateEvidence:
 
 
 @dataclass(frozen=True, kw_only=True)
+class AbundanceEvidence:
+    """How much of an element there is, were the surface homogeneous."""
+
+    atomic_percent: float
+    factor: float  # one standard deviation, multiplicative
+
+
+@dataclass(frozen=True, kw_only=True)
 class ElementEvidence:
     """One element as weighed."""
 
@@ -73,6 +81,7 @@ class ElementEvidence:
     common: bool = False  # carbon and oxygen: on nearly everything that has seen air
     single_low_line: bool = False  # rests on one line below 110 eV
     rivals: tuple[RivalEvidence, ...] = ()
+    abundance: AbundanceEvidence | None = None
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -119,11 +128,12 @@ class UntestableEvidence:
 
 @dataclass(frozen=True, kw_only=True)
 class LimitEvidence:
-    """How much of an absent element would have been seen."""
+    """How much of an absent element would have been called, in 95 of 100 cases."""
 
     element: str
     atomic_percent: float
     line_ev: float
+    usual: bool = False  # often met on technical surfaces
 
 
 @dataclass(frozen=True, kw_only=True)

@@ -182,7 +182,7 @@ def _evaluate(
     said = np.log(np.maximum(reach / SHARP_EV * log_sigma / SHARP_LOG_SIGMA, 1.0))
     missing = inside & ~met & firm
     price = np.zeros(real.shape)
-    price[missing] = _missing_price(problem, where[missing], depth[missing], log_sigma[missing])
+    price[missing] = missing_price(problem, where[missing], depth[missing], log_sigma[missing])
     price = price.sum(axis=1)
     sure = met & firm
     low_alone = ~np.any(sure & (pattern.energy_ev[row] > LOW_LINE_EV), axis=1) & (pattern.z[row] > LIGHT_Z)
@@ -259,7 +259,7 @@ def _likeliest(
     return best, best_off
 
 
-def _missing_price(problem: Problem, where: FloatArray, depth: FloatArray, log_sigma: FloatArray) -> FloatArray:
+def missing_price(problem: Problem, where: FloatArray, depth: FloatArray, log_sigma: FloatArray) -> FloatArray:
     """-ln of the chance that a line of this expected depth stayed under noise and neighbours."""
     seen_from = np.hypot(HIDDEN_THRESHOLD * problem.noise_at(where), problem.hidden_at(where))
     x = np.log(np.maximum(depth, 1e-300) / seen_from) / np.hypot(log_sigma, 0.2)

@@ -85,7 +85,7 @@ def pose(analysis: Analysis, settings: Settings) -> Problem:
         significance=significance,
         width_ev=width,
         line_width_ev=_line_widths(patterns, analysis, settings),
-        price=_unexplained_price(energy, depth, significance, width),
+        price=_own_price(energy, depth, significance, width),
         patterns=patterns,
         element_price=price,
         testable=testable,
@@ -105,25 +105,40 @@ def _line_widths(patterns: Patterns, analysis: Analysis, settings: Settings) -> 
     return np.sqrt(patterns.width_ev**2 + (resolution * patterns.energy_ev) ** 2 + (1.5 * step) ** 2)
 
 
-def _unexplained_price(
-    energy: FloatArray, depth: FloatArray, significance: FloatArray, width: FloatArray
+def _own_price(energy: FloatArray, depth: FloatArray, significance: FloatArray, width: FloatArray) -> FloatArray:
+    """Price of every minimum there is, (f,)."""
+    price = unexplained_price(energy, depth, significance, aside_depth(energy, energy, depth))
+    # a line of unusual shape is found as two minima closer than two lines would often be
+    near = np.abs(energy[None, :] - energy[:, None]) < SPLIT_WIDTHS * width[None, :]
+    split = near & (depth[None, :] > depth[:, None])
+    return np.where(np.any(split, axis=1), np.minimum(price, SPLIT_PRICE), price)
+
+
+def unexplained_price(
+    energy: FloatArray, depth: FloatArray, significance: FloatArray, aside: FloatArray
 ) -> FloatArray:
-    """Less near the secondary edge, much less where a strong line's losses and satellites stand."""
+    """What a minimum of this energy, depth and significance costs unexplained; any shapes that go together.
+
+    Less near the secondary edge, much less where it is no deeper than losses and satellites would be (`aside`).
+    """
     price = UNEXPLAINED + UNEXPLAINED_RISE * np.log(np.maximum(significance, 1.0) / 5.0)
     price = np.minimum(price, WEAK_RISE * np.maximum(significance - WEAK_FROM, 0.2))
     price = price * np.clip(0.35 + 0.65 * (energy - 25.0) / (LOW_ENERGY_EV - 25.0), 0.35, 1.0)
-    below = energy[None, :] - energy[:, None]  # strong (column) minus this one (row)
+    clear = np.log(np.maximum(depth, 1e-300)) - np.log(np.maximum(aside, 1e-300))
+    scale = np.clip(clear / np.log(CLEAR_OF_THEM), 0.0, 1.0)
+    return np.maximum(1.0, price * (0.15 + 0.85 * scale))
+
+
+def aside_depth(energy: FloatArray, found_ev: FloatArray, found_depth: FloatArray) -> FloatArray:
+    """How deep a loss or a satellite of the minima found is likely to be at an energy; any shape."""
+    below = found_ev - energy[..., None]  # strong minus this one
     tail = np.where((below > 0) & (below < TAIL_REACH_EV), TAIL_PART, 0.0)
     satellite = np.interp(
         -below, (0.0, SATELLITE_NEAR_EV, SATELLITE_REACH_EV), (SATELLITE_PART, SATELLITE_PART, SATELLITE_FAR_PART)
     )
     satellite = np.where((below < 0) & (-below < SATELLITE_REACH_EV), satellite, 0.0)
-    likely = np.max((tail + satellite) * depth[None, :], axis=1, initial=0.0)
-    scale = np.clip(np.log(depth / np.maximum(likely, 1e-300)) / np.log(CLEAR_OF_THEM), 0.0, 1.0)
-    price = np.maximum(1.0, price * (0.15 + 0.85 * scale))
-    # a line of unusual shape is found as two minima closer than two lines would often be
-    split = (np.abs(below) < SPLIT_WIDTHS * width[None, :]) & (depth[None, :] > depth[:, None])
-    return np.where(np.any(split, axis=1), np.minimum(price, SPLIT_PRICE), price)
+    likely: FloatArray = np.max((tail + satellite) * found_depth, axis=-1, initial=0.0)
+    return likely
 
 
 def _hidden_depth(grid: FloatArray, energy: FloatArray, depth: FloatArray, width: FloatArray) -> FloatArray:

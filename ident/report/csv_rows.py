@@ -18,6 +18,7 @@ if TYPE_CHECKING:
 ASSIGN_COLUMNS = (
     *("spectrum", "sample", "element", "z", "probability", "verdict", "lines_met", "lines_missing", "state"),
     *("shift_ev", "reasons_for", "reasons_against", "untested", "offset_ev", "charging", "edition"),
+    *("atomic_percent", "atomic_percent_factor"),
 )
 AT_COLUMNS = (
     *("energy_ev", "element", "transition", "expected_ev", "sigma_ev", "deviation_ev", "relative_height", "weight"),
@@ -59,7 +60,7 @@ def _assign_row(answer: Identification, assignment: Assignment) -> tuple[Any, ..
         side: "; ".join(reason.text for reason in assignment.reasons if reason.side == side)
         for side in ("for", "against", "untested")
     }
-    state = assignment.state
+    state, amount = assignment.state, assignment.abundance
     return (
         *(answer.spectrum, answer.header.get("sample"), assignment.element, assignment.z),
         *(assignment.probability, assignment.verdict),
@@ -67,6 +68,7 @@ def _assign_row(answer: Identification, assignment: Assignment) -> tuple[Any, ..
         *(state.name if state else None, state.shift_ev if state else None),
         *(by_side["for"], by_side["against"], by_side["untested"]),
         *(answer.scale.offset_ev, answer.scale.charging, answer.edition),
+        *((amount.atomic_percent, amount.factor) if amount else (None, None)),
     )
 
 

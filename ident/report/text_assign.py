@@ -49,8 +49,13 @@ def _table(answer: Identification) -> list[str]:
     shown = [a for a in answer.assignments if a.verdict != "not supported"]
     if not shown:
         return ["  No element is supported by these minima."]
-    rows = [(a.element, a.verdict, probability(a.probability), _deciding(a)) for a in shown]
-    return columns(("element", "verdict", "probability", "rests on (eV)"), rows, right=(2,))
+    rows = [(a.element, a.verdict, probability(a.probability), _amount(a), _deciding(a)) for a in shown]
+    return columns(("element", "verdict", "probability", "at%", "rests on (eV)"), rows, right=(2, 3))
+
+
+def _amount(assignment: Assignment) -> str:
+    there = assignment.verdict in ("present", "likely") and assignment.abundance
+    return f"{assignment.abundance.atomic_percent:.2g}" if there and assignment.abundance else ""
 
 
 def _deciding(assignment: Assignment) -> str:
@@ -100,9 +105,16 @@ def _doubts(answer: Identification) -> Iterator[str]:
 
 
 def _not_seen(answer: Identification) -> Iterator[str]:
-    if answer.limits:
-        told = [f"{x.element} {x.atomic_percent:.2g} at% ({x.line_ev:.0f} eV)" for x in answer.limits]
-        yield _note("not seen", "more than this would have been: " + ", ".join(told))
+    usual = [f"{x.element} {x.atomic_percent:.2g}" for x in answer.limits if x.usual]
+    if usual:
+        more = len(answer.limits) - len(usual)
+        rest = f"; {more} rarer elements are in the JSON answer" if more else ""
+        yield _note("not seen", f"and would have been called, in 95 of 100 cases, from at%: {', '.join(usual)}{rest}")
+    amounts = [a.abundance.factor for a in answer.assignments if a.verdict in ("present", "likely") and a.abundance]
+    if amounts:
+        least, most = f"{min(amounts):.1f}", f"{max(amounts):.1f}"
+        span = least if least == most else f"{least} to {most}"
+        yield _note("at%", f"for a surface alike throughout, each within a factor {span} (one standard deviation)")
     reasons: dict[str, list[Untestable]] = {}
     for item in answer.untestable:
         reasons.setdefault(item.why.split(", the strongest")[0], []).append(item)
