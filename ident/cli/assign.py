@@ -53,6 +53,7 @@ def _settings(given: dict[str, Any]) -> Settings:
         commonness=not given["no_commonness"],
         expect=given["expect"],
         rule_out=given["rule_out"],
+        why_not=given["why_not"],
         resolution=number if unit == "relative" else None,
         resolution_ev=number if unit == "ev" else None,
     )

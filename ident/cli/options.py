@@ -82,6 +82,7 @@ KNOWING = (
     click.option("--beam", type=float, metavar="KEV", help="Primary energy in keV, when the file does not say it."),
     click.option("--expect", multiple=True, callback=_names, metavar="NAMES", help="Elements likelier than usual."),
     click.option("--rule-out", multiple=True, callback=_names, metavar="NAMES", help="Elements that cannot be there."),
+    click.option("--why-not", multiple=True, callback=_names, metavar="NAMES", help="Say why these are not named."),
     click.option("--insulator", is_flag=True, help="The sample may charge: allow the axis tens of eV."),
     click.option("--no-commonness", is_flag=True, help="Take every element for equally common."),
 )

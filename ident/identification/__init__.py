@@ -18,6 +18,7 @@ from .answer import (
     Unexplained,
     Untestable,
     Verdict,
+    WhyNot,
     minima_answer,
     verdict_of,
 )
@@ -36,6 +37,7 @@ __all__ = [
     "Unexplained",
     "Untestable",
     "Verdict",
+    "WhyNot",
     "identify",
     "minima_answer",
     "relative_resolution",

@@ -120,6 +120,16 @@ class Limit:
 
 
 @dataclass(frozen=True, kw_only=True)
+class WhyNot:
+    """What speaks for and against an element that was asked about."""
+
+    element: str
+    probability: float
+    verdict: Verdict
+    reasons: tuple[Reason, ...]
+
+
+@dataclass(frozen=True, kw_only=True)
 class Untestable:
     """An element on which this scan says nothing."""
 
@@ -153,6 +163,7 @@ class Identification:
     inseparable: tuple[Inseparable, ...]
     unexplained: tuple[Unexplained, ...]
     limits: tuple[Limit, ...]
+    why_not: tuple[WhyNot, ...]  # in the order asked
     untestable: tuple[Untestable, ...]
     artefacts: tuple[ArtefactNote, ...]
     cautions: tuple[str, ...]

@@ -6,9 +6,16 @@ from dataclasses import asdict, fields, replace
 from typing import TYPE_CHECKING, Any
 
 from ..errors import SettingError
-from ..matching.evidence import ElementEvidence, Evidence, InseparableEvidence, RivalEvidence, UntestableEvidence
+from ..matching.evidence import (
+    AskedEvidence,
+    ElementEvidence,
+    Evidence,
+    InseparableEvidence,
+    RivalEvidence,
+    UntestableEvidence,
+)
 from ..matching.settings import Settings
-from ..reasons import explain, state_to_tell
+from ..reasons import explain, explain_asked, state_to_tell
 from ..spectrum import Spectrum
 from .answer import (
     Abundance,
@@ -23,6 +30,7 @@ from .answer import (
     State,
     Unexplained,
     Untestable,
+    WhyNot,
     verdict_of,
 )
 from .cautions import cautions_for
@@ -119,6 +127,7 @@ def assemble(
             )
             for limit in evidence.limits
         ),
+        why_not=tuple(_why_not(asked, evidence) for asked in evidence.asked),
         untestable=_untestable(evidence),
         artefacts=tuple(ArtefactNote(energy_ev=a.energy_ev, what=a.what) for a in analysis.artefacts),
         cautions=cautions_for(assignments, scale),
@@ -138,7 +147,7 @@ def _settle(settings: Settings | None, given: dict[str, Any]) -> Settings:
     strange = sorted(set(given) - known)
     if strange:
         raise SettingError(f"{strange[0]!r} is no setting; there are {', '.join(sorted(known))}")
-    for name in ("expect", "rule_out"):
+    for name in ("expect", "rule_out", "why_not"):
         if name in given and not isinstance(given[name], str):
             given = {**given, name: tuple(given[name])}
     return replace(settings, **given) if settings is not None else Settings(**given)
@@ -182,6 +191,15 @@ def _abundance(element: ElementEvidence) -> Abundance | None:
     if element.abundance is None:
         return None
     return Abundance(atomic_percent=element.abundance.atomic_percent, factor=element.abundance.factor)
+
+
+def _why_not(asked: AskedEvidence, evidence: Evidence) -> WhyNot:
+    return WhyNot(
+        element=asked.element,
+        probability=asked.probability,
+        verdict=verdict_of(asked.probability),
+        reasons=explain_asked(asked, evidence),
+    )
 
 
 def _rival(rival: RivalEvidence) -> Rival:

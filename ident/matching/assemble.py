@@ -13,9 +13,11 @@ from ..spectrum import FloatArray
 from .amounts import find_abundances, find_limits
 from .evidence import (
     AbundanceEvidence,
+    AskedEvidence,
     ElementEvidence,
     Evidence,
     InseparableEvidence,
+    LimitEvidence,
     LineEvidence,
     RivalEvidence,
     StateEvidence,
@@ -58,13 +60,38 @@ def assemble(problem: Problem, solution: Solution, posterior: Posterior) -> Evid
     context = Context(problem=problem, solution=solution, posterior=posterior, sums=sums, abundances=abundances)
     shown = [e for e in np.argsort(-posterior.probability) if posterior.probability[e] >= LEAST_PROBABILITY]
     shown = [int(e) for e in shown if posterior.best_option[e] >= 0]
+    limits = find_limits(problem, solution, posterior.probability)
     return Evidence(
         scale=scale_evidence(problem, solution),
         elements=tuple(_element(context, e) for e in shown),
         unexplained=_unexplained(context),
         inseparable=_inseparable(context, shown),
         untestable=_untestable(context),
-        limits=find_limits(problem, solution, posterior.probability),
+        limits=limits,
+        asked=tuple(_asked(context, symbol, limits) for symbol in problem.settings.why_not),
+    )
+
+
+def _asked(context: Context, symbol: str, limits: tuple[LimitEvidence, ...]) -> AskedEvidence:
+    """Everything known of an element that the analyst asked about."""
+    problem, axis, names = context.problem, context.solution.axis, context.problem.patterns.symbols
+    if symbol not in names:
+        return AskedEvidence(element=symbol, probability=0.0, weighed=None)
+    element = names.index(symbol)
+    place = problem.patterns.energy_ev[element] * (1 + axis.slope) + axis.offset_ev
+    usable = problem.patterns.real[element] & problem.patterns.firm[element] & problem.in_range(place)
+    line = int(np.argmax(np.where(usable, problem.patterns.height[element], -1.0))) if np.any(usable) else None
+    expected = float(place[line]) if line is not None else None
+    near = problem.energy_ev[np.argmin(np.abs(problem.energy_ev - expected))] if expected is not None else None
+    return AskedEvidence(
+        element=symbol,
+        probability=float(context.posterior.probability[element]),
+        weighed=_element(context, element) if context.posterior.best_option[element] >= 0 else None,
+        transition=problem.patterns.transitions[element][line] if line is not None else None,
+        expected_ev=expected,
+        nearest_ev=float(near) if near is not None else None,
+        limit=next((limit for limit in limits if limit.element == symbol), None),
+        ruled_out=symbol in problem.settings.rule_out,
     )
 
 

@@ -137,6 +137,20 @@ class LimitEvidence:
 
 
 @dataclass(frozen=True, kw_only=True)
+class AskedEvidence:
+    """What can be said of an element that was asked about."""
+
+    element: str
+    probability: float
+    weighed: ElementEvidence | None  # None when no minimum stands where one of its strong lines could be
+    transition: str | None = None  # its strongest line in the scan, None when there is none
+    expected_ev: float | None = None
+    nearest_ev: float | None = None  # the minimum nearest to it
+    limit: LimitEvidence | None = None
+    ruled_out: bool = False
+
+
+@dataclass(frozen=True, kw_only=True)
 class Evidence:
     """The matcher's whole answer."""
 
@@ -146,3 +160,4 @@ class Evidence:
     inseparable: tuple[InseparableEvidence, ...]
     untestable: tuple[UntestableEvidence, ...]
     limits: tuple[LimitEvidence, ...] = ()
+    asked: tuple[AskedEvidence, ...] = ()  # in the order asked

@@ -23,7 +23,7 @@ class Settings:
     SettingError
         When a number is outside what can be, or the names contradict each other.
     UnknownNameError
-        When a name in `expect` or `rule_out` is no element.
+        When a name in `expect`, `rule_out` or `why_not` is no element.
     """
 
     beam_kev: float | None = None  # primary energy; the header's, or unknown, when None
@@ -31,6 +31,7 @@ class Settings:
     commonness: bool = True  # use the prior of how often each element is met on surfaces
     expect: tuple[str, ...] = ()  # symbols that are likelier than usual
     rule_out: tuple[str, ...] = ()  # symbols that cannot be there
+    why_not: tuple[str, ...] = ()  # symbols to say of why they are not named; they change no judgement
     resolution: float | None = None  # relative, 0.005 for 0.5 %
     resolution_ev: float | None = None  # absolute, eV
 
@@ -42,6 +43,7 @@ class Settings:
             raise SettingError("a resolution is either relative or in eV, not both; give one of them")
         object.__setattr__(self, "expect", _symbols("expect", self.expect))
         object.__setattr__(self, "rule_out", _symbols("rule_out", self.rule_out))
+        object.__setattr__(self, "why_not", _symbols("why_not", self.why_not))
         both = sorted(set(self.expect) & set(self.rule_out))
         if both:
             raise SettingError(f"{', '.join(both)} cannot be expected and ruled out at once; take it out of one list")

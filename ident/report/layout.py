@@ -50,4 +50,6 @@ def probability(value: float) -> str:
     """Two decimals, never rounded up over a verdict's threshold; the ends are said as bounds."""
     if value >= 0.995:
         return "> 0.99"
+    if value < 0.005:
+        return "< 0.01"
     return f"{math.floor(value * 100) / 100:.2f}"

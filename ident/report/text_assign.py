@@ -10,6 +10,7 @@ from .layout import columns, hanging, heading, probability
 
 if TYPE_CHECKING:
     from ..identification import Assignment, Identification, Untestable
+    from ..reasons import Reason
 
 MOST_LINES = 3
 MOST_REASONS = 6
@@ -72,10 +73,19 @@ def _why(answer: Identification) -> Iterator[str]:
         yield ""
         state = f", as {assignment.state.name}" if assignment.state else ""
         yield f"{assignment.element}: {assignment.verdict}{state}"
-        side = ""
-        for reason in sorted(assignment.reasons[:MOST_REASONS], key=lambda r: _SIDES.index(r.side)):
-            yield hanging(reason.side if reason.side != side else "", reason.text)
-            side = reason.side
+        yield from _sides(assignment.reasons)
+    for asked in answer.why_not:
+        yield ""
+        yield f"Why not {asked.element}? {asked.verdict}, probability {probability(asked.probability)}"
+        yield from _sides(asked.reasons)
+
+
+def _sides(reasons: tuple[Reason, ...]) -> Iterator[str]:
+    """The weightiest reasons, those for first, each side named once."""
+    side = ""
+    for reason in sorted(reasons[:MOST_REASONS], key=lambda r: _SIDES.index(r.side)):
+        yield hanging(reason.side if reason.side != side else "", reason.text)
+        side = reason.side
 
 
 _SIDES = ("for", "against", "untested")

@@ -67,6 +67,7 @@ ANSWER = Identification(
     inseparable=(),
     unexplained=(Unexplained(energy_ev=250.0, significance=12.0, candidates=("Pt",)),),
     limits=(),
+    why_not=(),
     untestable=(Untestable(element="H", why="too few electrons for an Auger transition"),),
     artefacts=(ArtefactNote(energy_ev=500.0, what="spike of one channel"),),
     cautions=(),
