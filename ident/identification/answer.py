@@ -13,6 +13,7 @@ if TYPE_CHECKING:
 
     from ..minima import Analysis
 
+INDICATIVE = "indicative: a surface alike throughout, sensitivities from the tables, no standard measured"
 Verdict = Literal["present", "likely", "possible", "not supported"]
 SCHEMA = 1
 DIGITS = 6  # significant digits of numbers in JSON
@@ -70,10 +71,11 @@ class Rival:
 
 @dataclass(frozen=True, kw_only=True)
 class Abundance:
-    """How much of it there is."""
+    """How much of it there is, were the surface alike throughout; indicative, no quantification."""
 
     atomic_percent: float
     factor: float  # one standard deviation, multiplicative
+    basis: str = INDICATIVE
 
 
 @dataclass(frozen=True, kw_only=True)

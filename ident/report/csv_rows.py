@@ -18,7 +18,7 @@ if TYPE_CHECKING:
 ASSIGN_COLUMNS = (
     *("spectrum", "sample", "element", "z", "probability", "verdict", "lines_met", "lines_missing", "state"),
     *("shift_ev", "reasons_for", "reasons_against", "untested", "offset_ev", "charging", "edition"),
-    *("atomic_percent", "atomic_percent_factor"),
+    *("indicative_atomic_percent", "atomic_percent_factor"),
 )
 AT_COLUMNS = (
     *("energy_ev", "element", "transition", "expected_ev", "sigma_ev", "deviation_ev", "relative_height", "weight"),

@@ -51,7 +51,7 @@ def _table(answer: Identification) -> list[str]:
     if not shown:
         return ["  No element is supported by these minima."]
     rows = [(a.element, a.verdict, probability(a.probability), _amount(a), _deciding(a)) for a in shown]
-    return columns(("element", "verdict", "probability", "at%", "rests on (eV)"), rows, right=(2, 3))
+    return columns(("element", "verdict", "probability", "at% approx.", "rests on (eV)"), rows, right=(2, 3))
 
 
 def _amount(assignment: Assignment) -> str:
@@ -124,7 +124,8 @@ def _not_seen(answer: Identification) -> Iterator[str]:
     if amounts:
         least, most = f"{min(amounts):.1f}", f"{max(amounts):.1f}"
         span = least if least == most else f"{least} to {most}"
-        yield _note("at%", f"for a surface alike throughout, each within a factor {span} (one standard deviation)")
+        said = f"indicative: for a surface alike throughout, each within a factor {span} (one standard deviation)"
+        yield _note("at%", said)
     reasons: dict[str, list[Untestable]] = {}
     for item in answer.untestable:
         reasons.setdefault(item.why.split(", the strongest")[0], []).append(item)
