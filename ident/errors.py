@@ -71,7 +71,19 @@ class TableError(IdentError):
 
 
 class UnknownNameError(IdentError):
-    """A name that is no element or transition, even read forgivingly."""
+    """A name that is no element or transition, even read forgivingly.
+
+    Parameters
+    ----------
+    what : str
+        The whole message.
+    choices : tuple of str
+        Symbols of the elements it may stand for, nearest first; empty when none is near.
+    """
+
+    def __init__(self, what: str, *, choices: tuple[str, ...] = ()) -> None:
+        self.choices = choices
+        super().__init__(what)
 
 
 class SettingError(IdentError):

@@ -102,7 +102,8 @@ def _nearest(word: str) -> str:
     if score >= CLEAR and (not rest or score - rest[0][1] >= LEAD):
         return symbol
     choices = ", ".join(f"{name_of(other)} ({other})" for other, _ in ranked[:3])
-    raise UnknownNameError(f"'{word}' is no element; did you mean one of {choices}?")
+    symbols = tuple(other for other, _ in ranked[:3])
+    raise UnknownNameError(f"'{word}' is no element; did you mean one of {choices}?", choices=symbols)
 
 
 def parse_transition(text: str) -> TransitionName:

@@ -22,11 +22,12 @@ from .answer import (
     minima_answer,
     verdict_of,
 )
-from .build import identify, relative_resolution
+from .build import Examination, examine, identify, relative_resolution
 
 __all__ = [
     "ArtefactNote",
     "Assignment",
+    "Examination",
     "Identification",
     "Inseparable",
     "Limit",
@@ -38,6 +39,7 @@ __all__ = [
     "Untestable",
     "Verdict",
     "WhyNot",
+    "examine",
     "identify",
     "minima_answer",
     "relative_resolution",

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import asdict, fields, replace
+from dataclasses import asdict, dataclass, fields, replace
 from typing import TYPE_CHECKING, Any
 
 from ..errors import SettingError
@@ -65,6 +65,20 @@ def identify(spectrum: Spectrum, settings: Settings | None = None, **settings_gi
     SettingError
         When a setting makes no sense.
     """
+    return examine(spectrum, settings, **settings_given).answer
+
+
+@dataclass(frozen=True, kw_only=True, eq=False)
+class Examination:
+    """An answer with what it was made of, for the questions that look further than the answer."""
+
+    analysis: Analysis
+    evidence: Evidence
+    answer: Identification
+
+
+def examine(spectrum: Spectrum, settings: Settings | None = None, **settings_given: Any) -> Examination:
+    """Identify, and give the minima and the evidence too; parameters and errors are those of `identify`."""
     from ..matching import weigh
     from ..minima import analyse
 
@@ -73,7 +87,8 @@ def identify(spectrum: Spectrum, settings: Settings | None = None, **settings_gi
         chosen = _with_beam(chosen, spectrum.header.beam_kev)
     resolution, notes = relative_resolution(spectrum, chosen)
     analysis = analyse(spectrum, resolution=resolution)
-    return assemble(analysis, weigh(analysis, chosen), chosen, notes)
+    evidence = weigh(analysis, chosen)
+    return Examination(analysis=analysis, evidence=evidence, answer=assemble(analysis, evidence, chosen, notes))
 
 
 def relative_resolution(spectrum: Spectrum, settings: Settings) -> tuple[float | None, tuple[str, ...]]:
