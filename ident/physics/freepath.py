@@ -3,10 +3,6 @@
 from __future__ import annotations
 
 import math
-from typing import overload
-
-import numpy as np
-from numpy.typing import ArrayLike, NDArray
 
 AVOGADRO = 6.02214e23  # CODATA
 
@@ -16,29 +12,9 @@ def plasmon_energy_ev(valence_electrons: float, density_g_cm3: float, molar_mass
     return 28.8 * math.sqrt(valence_electrons * density_g_cm3 / molar_mass)
 
 
-@overload
 def tpp2m_nm(
     energy_ev: float, valence_electrons: float, density_g_cm3: float, molar_mass: float, gap_ev: float = 0.0
-) -> float: ...
-
-
-@overload
-def tpp2m_nm(
-    energy_ev: NDArray[np.float64],
-    valence_electrons: ArrayLike,
-    density_g_cm3: ArrayLike,
-    molar_mass: ArrayLike,
-    gap_ev: ArrayLike = 0.0,
-) -> NDArray[np.float64]: ...
-
-
-def tpp2m_nm(
-    energy_ev: float | NDArray[np.float64],
-    valence_electrons: ArrayLike,
-    density_g_cm3: ArrayLike,
-    molar_mass: ArrayLike,
-    gap_ev: ArrayLike = 0.0,
-) -> float | NDArray[np.float64]:
+) -> float:
     """Mean free path by TPP-2M, in nm; S. Tanuma, C. J. Powell, D. R. Penn, Surf. Interface Anal. 21 (1994) 165.
 
     lambda[A] = E / {Ep^2 [beta ln(gamma E) - C/E + D/E^2]} with Ep the plasmon energy,
@@ -47,24 +23,22 @@ def tpp2m_nm(
 
     Parameters
     ----------
-    energy_ev : float or array
-        Kinetic energy; an array gives an array, and the others may then be arrays that broadcast against it.
-    valence_electrons : array_like
+    energy_ev : float
+        Kinetic energy.
+    valence_electrons : float
         Valence electrons an atom or formula unit.
-    density_g_cm3, molar_mass : array_like
+    density_g_cm3, molar_mass : float
         Density, and molar mass in g/mol.
-    gap_ev : array_like
+    gap_ev : float
         Band gap; zero for a metal.
     """
-    energy, density = np.asarray(energy_ev, dtype=float), np.asarray(density_g_cm3, dtype=float)
-    u = np.asarray(valence_electrons, dtype=float) * density / np.asarray(molar_mass, dtype=float)
-    plasmon = 28.8 * np.sqrt(u)
-    beta = -0.10 + 0.944 / np.hypot(plasmon, gap_ev) + 0.069 * density**0.1
-    gamma = 0.191 / np.sqrt(density)
+    u = valence_electrons * density_g_cm3 / molar_mass
+    plasmon = plasmon_energy_ev(valence_electrons, density_g_cm3, molar_mass)
+    beta = -0.10 + 0.944 / math.hypot(plasmon, gap_ev) + 0.069 * density_g_cm3**0.1
+    gamma = 0.191 / math.sqrt(density_g_cm3)
     c, d = 1.97 - 0.91 * u, 53.4 - 20.8 * u
-    bracket = beta * np.log(gamma * energy) - c / energy + d / energy**2
-    path = 0.1 * energy / (plasmon**2 * bracket)
-    return path if isinstance(energy_ev, np.ndarray) else float(path)
+    bracket = beta * math.log(gamma * energy_ev) - c / energy_ev + d / energy_ev**2
+    return 0.1 * energy_ev / (plasmon**2 * bracket)
 
 
 def atom_size_nm(density_g_cm3: float, molar_mass: float, atoms: int = 1) -> float:
