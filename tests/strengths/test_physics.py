@@ -13,6 +13,7 @@ import xraylib
 
 from ident import tables
 from ident.physics import backscatter, freepath_arrays, ionisation, recording, yields
+from ident.physics.freepath import tpp2m_nm
 
 
 @pytest.mark.parametrize(
