@@ -19,7 +19,7 @@ EDGE_EV = 8.0
 SHAPE_TOLERANCE = 0.07  # part of a strong line's depth that its unknown shape may leave beside it
 TOLERANCE_REACH = 18.0  # line widths beyond which nothing of that rest is left
 MOST = 110
-FEWEST_DIRECT, FEWEST_RECORDED, MOST_EXCESS = 100, 40, 4.0
+FEWEST, SPAN_OF_WIDTHS, MOST_EXCESS = 40, 40.0, 4.0
 NORMAL_QUIET = 0.3853  # 30 % quantile of |x| for a standard normal
 
 
@@ -62,18 +62,24 @@ def filter_field(
         low_gain = np.array([differential.filter_gain(f[::-1]) for f in low_bank.filters])
         noise[:, :low_end] = low_gain[:, None] * differential.sigma[:low_end]
     allowed = _allowed(differential, bank, resolution)
-    fewest = FEWEST_RECORDED if differential.recorded else FEWEST_DIRECT
-    noise = np.hypot(noise * _excess(depth, noise, allowed, fewest)[:, None], trust)
+    excess = np.where(_telling(differential, bank, allowed), _excess(depth, noise, allowed), 1.0)
+    noise = np.hypot(noise * excess[:, None], trust)
     return Field(bank=bank, low_bank=low_bank, low_end=low_end, depth=depth, noise=noise, allowed=allowed)
 
 
-def _excess(depth: FloatArray, noise: FloatArray, allowed: BoolArray, fewest: int) -> FloatArray:
+def _telling(differential: Differential, bank: Bank, allowed: BoolArray) -> BoolArray:
+    """Whether the window is so much wider than each filter that a line in it leaves most outputs quiet; (w,)."""
+    span_ev = np.count_nonzero(np.any(allowed, axis=0)) * differential.step_ev
+    return span_ev > SPAN_OF_WIDTHS * bank.sigmas_ev
+
+
+def _excess(depth: FloatArray, noise: FloatArray, allowed: BoolArray) -> FloatArray:
     """How much noisier each filter's output is than the noise model says, from where it is quiet; (w,), never below 1.
 
     The model may be wrong where data were treated in ways it does not know; the output itself tells.
     """
     inside = np.any(allowed, axis=0)
-    if np.count_nonzero(inside) < fewest:
+    if np.count_nonzero(inside) < FEWEST:
         return np.ones(depth.shape[0])
     quiet = np.quantile(np.abs(depth[:, inside] / noise[:, inside]), 0.3, axis=1) / NORMAL_QUIET
     return np.clip(quiet, 1.0, MOST_EXCESS)
