@@ -17,6 +17,7 @@ if TYPE_CHECKING:
     from .lookup import candidates_at, element_card
     from .matching.settings import Settings
     from .readers import read_spectra, read_spectrum
+    from .rechecking import Recheck, read_labels, recheck
     from .spectrum import Spectrum
 
 __version__ = "0.1.0"
@@ -24,26 +25,32 @@ __version__ = "0.1.0"
 __all__ = [
     "IdentError",
     "Identification",
+    "Recheck",
     "Settings",
     "Spectrum",
     "__version__",
     "candidates_at",
     "element_card",
     "identify",
+    "read_labels",
     "read_spectra",
     "read_spectrum",
+    "recheck",
 ]
 
 _HOMES = {
     "IdentError": "errors",
     "Identification": "identification",
+    "Recheck": "rechecking",
     "Settings": "matching.settings",
     "Spectrum": "spectrum",
     "candidates_at": "lookup",
     "element_card": "lookup",
     "identify": "identification",
+    "read_labels": "rechecking",
     "read_spectra": "readers",
     "read_spectrum": "readers",
+    "recheck": "rechecking",
 }
 
 

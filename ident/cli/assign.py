@@ -30,7 +30,7 @@ def command(spectra: tuple[str, ...], form: str, **given: Any) -> int:
     from ..identification import identify
     from .inputs import Reading, answer_each
 
-    settings = _settings(given)
+    settings = settings_of(given)
     reading = Reading(**{key: given[key] for key in ("kind", "ordinate", "column", "separate", "within", "quiet")})
     if form == "csv":
         _write_head()
@@ -43,7 +43,8 @@ def command(spectra: tuple[str, ...], form: str, **given: Any) -> int:
     return answer_each(spectra, reading, answer)
 
 
-def _settings(given: dict[str, Any]) -> Settings:
+def settings_of(given: dict[str, Any]) -> Settings:
+    """Make the settings of an identification from the options of `READING` and `KNOWING`."""
     from ..matching.settings import Settings
 
     unit, number = given["resolution"] or (None, None)

@@ -11,6 +11,7 @@ import ident
 PUBLIC = {
     "IdentError",
     "Identification",
+    "Recheck",
     "Settings",
     "Spectrum",
     "__version__",
@@ -18,7 +19,9 @@ PUBLIC = {
     "element_card",
     "identify",
     "read_spectra",
+    "read_labels",
     "read_spectrum",
+    "recheck",
 }
 HEAVY = ("numpy", "scipy", "pandas", "mendeleev", "matplotlib", "xraylib", "xraydb")
 
