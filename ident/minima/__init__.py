@@ -19,7 +19,7 @@ THRESHOLD = 3.9  # noise widths
 FEWEST_POINTS = 20
 # Minima are sought in rounds, each down to this part of the most significant one left, and refined in between, so
 # that what a strong line leaves over is not taken for weak ones.
-TIERS = (0.2, 0.06, 0.0)
+TIERS = (0.3, 0.1, 0.03, 0.0)
 SLOPE_TRUST = 0.01  # part of the background's slope that its model may leave behind
 
 __all__ = ["Analysis", "Artefact", "DepthNoise", "Minimum", "analyse"]

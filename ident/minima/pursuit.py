@@ -31,6 +31,7 @@ class Feature:
     depth: float
     sigma_ev: float
     significance: float = 0.0  # when it was taken
+    lean: float = ASYMMETRY  # low-energy over high-energy width
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)

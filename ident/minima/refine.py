@@ -7,6 +7,7 @@ from dataclasses import replace
 import numpy as np
 
 from ..signal.differential import Differential
+from ..signal.widths import widest_sigma_ev
 from ..spectrum import FloatArray
 from .pursuit import Feature, tolerance
 from .shapes import ASYMMETRY, line_shape
@@ -15,7 +16,9 @@ LARGEST_GROUP = 7
 ROUNDS = 4
 ONE_LINE = 1.0  # widths: minima closer than this are one line of unusual shape
 DEPTH_FREEDOM = 0.5  # prior standard deviation of a depth, relative: crowded minima must not blow each other up
-WIDTH_FREEDOM = 0.25  # prior standard deviation of ln sigma about the width that the search chose
+WIDEST = 1.0  # times the widest that a line is taken for
+USUAL_LEAN, LEAN_FREEDOM, LEANS = 1.4, 0.25, (0.8, 3.0)
+WIDTH_FREEDOM = 0.2  # prior standard deviation of ln sigma about the width that the search chose
 
 
 def refine(
@@ -83,23 +86,29 @@ def _refine_group(
     unit = max(f.depth for f in group)  # so that nothing depends on what the ordinate is counted in
     x, y = energy[low:high], derivative[low:high] / unit
     count = len(group)
-    start = np.array([[f.energy_ev, np.log(f.sigma_ev)] for f in group]).T
-    position, width = start[0].copy(), start[1].copy()
+    start = np.array([[f.energy_ev, np.log(f.sigma_ev), np.log(f.lean)] for f in group]).T
+    position, width, lean = start.copy()
     first_depth = np.array([f.depth for f in group]) / unit
     depth = first_depth.copy()
-    if x.size < 3 * count + 3:
+    if x.size < 4 * count + 3:
         return [(f, 0.5 * f.sigma_ev) for f in group]
     background = np.stack([np.ones_like(x), np.linspace(-1.0, 1.0, x.size)], axis=1)
     flat, _ = np.linalg.qr(background)
     noise = max(float(np.mean(differential.sigma[low:high])) * differential.filter_gain(np.ones(1)) / unit, 1e-9)
-    information = np.eye(3 * count + 2)
+    information = np.eye(4 * count + 2)
     for _ in range(ROUNDS):
-        shapes, slopes, stretches = _jacobian(x, position, width)
-        design = np.concatenate([shapes, slopes * depth, stretches * depth, background], axis=1)
+        shapes, slopes, stretches, leanings = _jacobian(x, position, width, lean)
+        design = np.concatenate([shapes, slopes * depth, stretches * depth, leanings * depth, background], axis=1)
         misfit = y - shapes @ depth
         rest = max(noise, float(np.std(misfit - flat @ (flat.T @ misfit))))
         ridge = np.concatenate(
-            [(DEPTH_FREEDOM * first_depth) ** -2, np.exp(-2 * width), np.full(count, WIDTH_FREEDOM**-2), np.zeros(2)]
+            [
+                (DEPTH_FREEDOM * first_depth) ** -2,
+                np.exp(-2 * width),
+                np.full(count, WIDTH_FREEDOM**-2),
+                np.full(count, LEAN_FREEDOM**-2),
+                np.zeros(2),
+            ]
         )
         information = design.T @ design / rest**2 + np.diag(ridge)
         pull = np.concatenate(
@@ -107,29 +116,38 @@ def _refine_group(
                 (first_depth - depth) * (DEPTH_FREEDOM * first_depth) ** -2,
                 (start[0] - position) * np.exp(-2 * width),
                 (start[1] - width) / WIDTH_FREEDOM**2,
+                (np.log(USUAL_LEAN) - lean) / LEAN_FREEDOM**2,
                 [0, 0],
             ]
         )
         step = np.linalg.solve(information + 1e-12 * np.eye(information.shape[0]), design.T @ misfit / rest**2 + pull)
         depth = np.maximum(depth + step[:count], 0.02 * (depth > 0))
         position = position + np.clip(step[count : 2 * count], -1.5, 1.5)
-        width = np.clip(width + np.clip(step[2 * count : 3 * count], -0.3, 0.3), start[1] - 0.7, start[1] + 0.7)
+        most = np.log(WIDEST * widest_sigma_ev(position))
+        width = np.clip(width + np.clip(step[2 * count : 3 * count], -0.3, 0.3), start[1] - 0.7, most)
+        lean = np.clip(lean + np.clip(step[3 * count : 4 * count], -0.3, 0.3), *np.log(LEANS))
     spread = np.sqrt(np.clip(np.diag(np.linalg.inv(information))[count : 2 * count], 1e-6, None))
     return [
-        (replace(f, energy_ev=float(p), depth=float(d) * unit, sigma_ev=float(np.exp(w))), float(s))
-        for f, p, d, w, s in zip(group, position, depth, width, spread, strict=True)
+        (
+            replace(f, energy_ev=float(p), depth=float(d) * unit, sigma_ev=float(np.exp(w)), lean=float(np.exp(a))),
+            float(s),
+        )
+        for f, p, d, w, a, s in zip(group, position, depth, width, lean, spread, strict=True)
     ]
 
 
-def _jacobian(x: FloatArray, position: FloatArray, width: FloatArray) -> tuple[FloatArray, FloatArray, FloatArray]:
-    """Shapes (n, f) and their derivatives with position and with ln sigma."""
-    sigma = np.exp(width)
+def _jacobian(
+    x: FloatArray, position: FloatArray, width: FloatArray, lean: FloatArray
+) -> tuple[FloatArray, FloatArray, FloatArray, FloatArray]:
+    """Shapes (n, f) and their derivatives with position, with ln sigma and with ln lean."""
+    sigma, leans = np.exp(width), np.exp(lean)
     offset = x[:, None] - position
-    shape = line_shape(offset, sigma)
+    shape = line_shape(offset, sigma, leans)
     h = 0.02
-    moved = line_shape(offset - h * sigma, sigma)
-    wider = line_shape(offset, sigma * (1.0 + h))
-    return shape, (moved - shape) / (h * sigma), (wider - shape) / h
+    moved = line_shape(offset - h * sigma, sigma, leans)
+    wider = line_shape(offset, sigma * (1.0 + h), leans)
+    leaning = line_shape(offset, sigma, leans * (1.0 + h))
+    return shape, (moved - shape) / (h * sigma), (wider - shape) / h, (leaning - shape) / h
 
 
 def rendered(energy_ev: FloatArray, features: tuple[Feature, ...]) -> FloatArray:
@@ -138,5 +156,7 @@ def rendered(energy_ev: FloatArray, features: tuple[Feature, ...]) -> FloatArray
     for feature in features:
         low = np.searchsorted(energy_ev, feature.energy_ev - 7.0 * feature.sigma_ev)
         high = np.searchsorted(energy_ev, feature.energy_ev + 4.0 * feature.sigma_ev)
-        total[low:high] += feature.depth * line_shape(energy_ev[low:high] - feature.energy_ev, feature.sigma_ev)
+        total[low:high] += feature.depth * line_shape(
+            energy_ev[low:high] - feature.energy_ev, feature.sigma_ev, feature.lean
+        )
     return total

@@ -18,12 +18,15 @@ ASYMMETRY = 1.6  # low-energy over high-energy width; common practice, no source
 SIGMAS_EV = (0.85, 1.15, 1.55, 2.1, 2.8, 3.75, 5.0, 6.7, 9.0)
 
 
-def line_shape(offset_ev: FloatArray, sigma_ev: FloatArray | float) -> FloatArray:
-    """Differential line of depth one with its minimum at zero; eV from the minimum in, shape out."""
+def line_shape(offset_ev: FloatArray, sigma_ev: FloatArray | float, lean: FloatArray | float = ASYMMETRY) -> FloatArray:
+    """Differential line of depth one with its minimum at zero; eV from the minimum in, shape out.
+
+    `lean` is the width on the low-energy side over that on the high-energy side.
+    """
     u = (offset_ev + sigma_ev) / sigma_ev
     low = u < 0
-    v = np.where(low, u / ASYMMETRY, u)
-    lobe = np.where(low, 1.0 / ASYMMETRY, 1.0)
+    v = np.where(low, u / lean, u)
+    lobe = np.where(low, 1.0 / lean, 1.0)
     shape: FloatArray = -lobe * v * np.exp(0.5 - 0.5 * v * v)
     return shape
 

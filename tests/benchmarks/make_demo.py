@@ -128,7 +128,7 @@ DEMOS: tuple[Demo, ...] = (
     Demo(
         file="bond_pad_lifted.txt",
         part="barometer board, bond pad 12: wire lifted",
-        surface="Al 0.7 both; F 0.4; O 0.5; C 0.2; Au 0.15",
+        surface="Al 0.7 both; F 0.4; O 0.5; C 0.2; Au 0.5",
         seed=DEMO_SEEDS[2],
         axes_ev=(_scan(20, 2200),),
         write=_tabs,
@@ -198,7 +198,7 @@ DEMOS: tuple[Demo, ...] = (
         file="solder_short_scan.csv",
         part="battery lug, solder joint: cracked; short scan before the beam failed",
         surface="Sn 0.8; Pb 0.7; O 0.3; C 0.4",
-        seed=DEMO_SEEDS[9],
+        seed=DEMO_SEEDS[24],
         axes_ev=(_scan(20, 1000),),
         write=_csv,
         recording=replace(GOOD, unit="normalised", signal_to_noise=24.0),

@@ -47,7 +47,7 @@ def test_file_is_read_as_it_was_made(file: str) -> None:
 
 @pytest.mark.parametrize("demo", DEMOS, ids=lambda demo: demo.file)
 def test_ident_finds_what_the_readme_promises(demo: Demo) -> None:
-    # Truth: what was put into the forward model; carbon of the solder is too weak to ask for.
+    # Truth: what was put into the forward model.
     case = demo_cases()[demo.file]
     answer = _answer(demo, demo.expect)
     called = {assignment.element for assignment in answer.assignments if assignment.probability >= 0.5}
@@ -56,7 +56,7 @@ def test_ident_finds_what_the_readme_promises(demo: Demo) -> None:
 
 @pytest.mark.parametrize("demo", [demo for demo in DEMOS if demo.expect], ids=lambda demo: demo.file)
 def test_without_what_is_known_of_the_part_the_element_is_named_and_left_open(demo: Demo) -> None:
-    # Lead and oxidised silicon stand at the same energy, and gold and aluminium nearly; common practice, no source.
+    # Lead and silicon stand at the same energy, and gold and aluminium nearly; common practice, no source.
     case = demo_cases()[demo.file]
     said = {assignment.element: assignment.verdict for assignment in _answer(demo, ()).assignments}
     assert all(said[element] in {"possible", "likely", "present"} for element in case.must)
