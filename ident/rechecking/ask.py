@@ -200,7 +200,7 @@ def _notes(way: Sequence[Part], reading: LabelReading) -> list[Reason]:
     ]
     if not reading.clear:
         others = " or ".join(said_in_names(other) for other in reading.ways if other != tuple(way))
-        text = f"read as {said_in_names(tuple(way))}; as {others} no line would be near, or the list is in capitals"
+        text = f"read as {said_in_names(tuple(way))}, which fits better here than {others}"
         notes.append(reason("label-unclear", "untested", text))
     return notes
 

@@ -19,6 +19,7 @@ if TYPE_CHECKING:
 
 FAR_EV = 25.0  # beyond all that axis and chemistry allow: no line anywhere near
 ROUGH_EV = 7.0  # off its minimum, and none nearer: the energy of a table or a rough reading, not another place
+POOR_LIMIT = 20.0  # atomic per cent: where no less would have been called, an absent minimum excludes little
 NO_LINES = ("H", "He")
 # beside those of the rules, of questions why not, and of lookups
 RECHECK_CODES = (
@@ -72,9 +73,12 @@ def _judge_bare(scene: Scene, part: Part) -> Judgement:
         return Judgement(verdict="agrees", reasons=(first, *behind), probability=probability)
     asked = scene.asked.get(symbol)
     better = scene.inseparable_from(symbol)
-    if probability >= POSSIBLE or better or _all_hidden(scene, symbol):
+    if probability >= POSSIBLE or better or _all_hidden(scene, symbol) or _poorly_seen(scene, symbol):
         return Judgement(
-            verdict="undecided", reasons=(_open(symbol, probability), *behind), better=better, probability=probability
+            verdict="undecided",
+            reasons=(_open(scene, symbol), *(behind or _against(scene, symbol))),
+            better=better,
+            probability=probability,
         )
     if asked is None or asked.expected_ev is None:
         ranges = format_ranges(scene.examined.analysis.spectrum.ranges_ev)
@@ -105,7 +109,7 @@ def _judge_at(scene: Scene, part: Part, energy_ev: float) -> Judgement:
     if probability >= LIKELY:
         return _on_a_likely_element(place, mine)
     if probability >= POSSIBLE:
-        return place.says("undecided", _open(symbol, probability), *place.who_else(), *_behind(scene, symbol))
+        return place.says("undecided", _open(scene, symbol), *place.who_else(), *_behind(scene, symbol))
     return _on_an_unlikely_element(place)
 
 
@@ -224,6 +228,8 @@ def _on_an_unlikely_element(place: _Place) -> Judgement:
     scene, symbol = place.scene, place.part.symbol
     behind = _against(scene, symbol)
     if place.minimum is None:
+        if _too_faint(place):
+            return place.says("undecided", _open(scene, symbol), *place.who_else(), *behind)
         return place.says("disagrees", *place.who_else(), *behind)
     rivals = scene.inseparable_from(symbol)
     sure = [claim for claim in place.others if claim.probability >= LIKELY and claim.share >= MAIN_SHARE]
@@ -231,8 +237,24 @@ def _on_an_unlikely_element(place: _Place) -> Judgement:
         text = f"the scan cannot tell {symbol} from {joined(rivals)} here"
         return place.says("undecided", reason("undecided-here", "untested", text), *place.who_else(), *behind)
     if not sure and not _loss_only(place) and not place.away_ev:
-        return place.says("undecided", *(place.who_else() or (_open(symbol, scene.probability(symbol)),)), *behind)
+        return place.says("undecided", *(place.who_else() or (_open(scene, symbol),)), *behind)
     return place.says("disagrees", *place.who_else(), *behind)
+
+
+def _too_faint(place: _Place) -> bool:
+    """Whether the element could be here without a minimum to show for it."""
+    loss = place.scene.loss_of(place.energy_ev, 0.0)
+    return not place.away_ev and loss is None and _poorly_seen(place.scene, place.part.symbol)
+
+
+def _poorly_seen(scene: Scene, symbol: str) -> bool:
+    """Whether a good deal of the element would not have been called in this scan, and no line of it is missing."""
+    asked = scene.asked.get(symbol)
+    if asked is None or asked.ruled_out or asked.expected_ev is None:
+        return False
+    if asked.weighed is not None and any(line.status == "missing" for line in asked.weighed.lines):
+        return False
+    return asked.limit is None or asked.limit.atomic_percent >= POOR_LIMIT
 
 
 def _other_transition(place: _Place) -> Reason | None:
@@ -280,7 +302,12 @@ def _against(scene: Scene, symbol: str) -> tuple[Reason, ...]:
     return explain_asked(asked, scene.examined.evidence) if asked is not None else _behind(scene, symbol)
 
 
-def _open(symbol: str, probability: float) -> Reason:
+def _open(scene: Scene, symbol: str) -> Reason:
+    asked, probability = scene.asked.get(symbol), scene.probability(symbol)
+    if probability < POSSIBLE and asked is not None and _poorly_seen(scene, symbol):
+        amount = "any amount" if asked.limit is None else f"up to {asked.limit.atomic_percent:.2g} at%"
+        text = f"nothing speaks for {name_of(symbol)}, but this scan may have missed {amount} of it"
+        return reason("undecided-here", "untested", text)
     text = f"the spectrum neither supports nor excludes {name_of(symbol)}, {_p(probability)}"
     return reason("undecided-here", "untested", text)
 
