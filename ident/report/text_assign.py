@@ -50,7 +50,7 @@ def _table(answer: Identification) -> list[str]:
     shown = [a for a in answer.assignments if a.verdict != "not supported"]
     if not shown:
         return ["  No element is supported by these minima."]
-    rows = [(a.element, a.verdict, probability(a.probability), _amount(a), _deciding(a)) for a in shown]
+    rows = [(a.element, a.verdict, probability(a.probability), _amount(a), deciding(a)) for a in shown]
     return columns(("element", "verdict", "probability", "at% approx.", "rests on (eV)"), rows, right=(2, 3))
 
 
@@ -59,7 +59,8 @@ def _amount(assignment: Assignment) -> str:
     return f"{assignment.abundance.atomic_percent:.2g}" if there and assignment.abundance else ""
 
 
-def _deciding(assignment: Assignment) -> str:
+def deciding(assignment: Assignment) -> str:
+    """The lines that an element rests on, the strongest first."""
     met = {line.found_ev: line for line in reversed(assignment.lines) if line.found_ev is not None}
     told = [f"{line.transition} {line.found_ev:.0f}" for line in list(met.values())[::-1][:MOST_LINES]]
     more = [f"{len(met) - MOST_LINES} more"] if len(met) > MOST_LINES else []
