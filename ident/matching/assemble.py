@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
 
 import numpy as np
 
@@ -11,18 +10,16 @@ from .. import tables
 from ..patterns import tilted
 from ..spectrum import FloatArray
 from .amounts import find_abundances, find_limits
+from .context import Context
+from .doubts import find_inseparable, find_unexplained, find_untestable
 from .evidence import (
-    AbundanceEvidence,
     AskedEvidence,
     ElementEvidence,
     Evidence,
-    InseparableEvidence,
     LimitEvidence,
     LineEvidence,
     RivalEvidence,
     StateEvidence,
-    UnexplainedEvidence,
-    UntestableEvidence,
 )
 from .options import Options
 from .posterior import Posterior
@@ -37,22 +34,6 @@ LEAST_PROBABILITY = 0.01
 LOW_LINE_EV = 110.0
 
 
-@dataclass(frozen=True, kw_only=True, eq=False)
-class Context:
-    """All that the parts below look at."""
-
-    problem: Problem
-    solution: Solution
-    posterior: Posterior
-    sums: Sums  # of the best set
-    abundances: dict[int, AbundanceEvidence]
-
-    @property
-    def options(self) -> Options:
-        """The options of the settled axis."""
-        return self.solution.options
-
-
 def assemble(problem: Problem, solution: Solution, posterior: Posterior) -> Evidence:
     """Put the whole answer together."""
     sums = sums_of(problem, solution.options, solution.members)
@@ -64,9 +45,9 @@ def assemble(problem: Problem, solution: Solution, posterior: Posterior) -> Evid
     return Evidence(
         scale=scale_evidence(problem, solution),
         elements=tuple(_element(context, e) for e in shown),
-        unexplained=_unexplained(context),
-        inseparable=_inseparable(context, shown),
-        untestable=_untestable(context),
+        unexplained=find_unexplained(context),
+        inseparable=find_inseparable(context, shown),
+        untestable=find_untestable(context),
         limits=limits,
         asked=tuple(_asked(context, symbol, limits) for symbol in problem.settings.why_not),
     )
@@ -287,92 +268,3 @@ def _rival(context: Context, other: int, index: int, met: list[LineEvidence]) ->
             probability=float(context.posterior.probability[other]),
         )
     return None
-
-
-def _unexplained(context: Context) -> tuple[UnexplainedEvidence, ...]:
-    problem, axis = context.problem, context.solution.axis
-    pattern = problem.patterns
-    cost = minimum_costs(problem, context.sums)
-    left = (cost >= problem.price - 0.5) & (problem.price > 3.0)
-    place = pattern.energy_ev * (1 + axis.slope) + axis.offset_ev
-    out = []
-    for at in np.flatnonzero(left):
-        off = problem.energy_ev[at] - place
-        sigma = np.hypot(pattern.sigma_ev, 1.5)
-        near = pattern.real & (off > pattern.shift_low_ev - sigma) & (off < pattern.shift_high_ev + sigma)
-        near &= pattern.height >= 0.2
-        weight = np.max(np.where(near, np.log(pattern.height + 1e-9) - 0.5 * (off / sigma) ** 2, -np.inf), axis=1)
-        weight = weight + 0.5 * pattern.prior_log_odds
-        best = [int(e) for e in np.argsort(-weight)[:4] if np.isfinite(weight[e])]
-        out.append(
-            UnexplainedEvidence(
-                energy_ev=float(problem.energy_ev[at]),
-                significance=float(problem.significance[at]),
-                candidates=tuple(pattern.symbols[e] for e in best),
-            )
-        )
-    return tuple(sorted(out, key=lambda item: -item.significance))
-
-
-def _inseparable(context: Context, shown: list[int]) -> tuple[InseparableEvidence, ...]:
-    """Pairs of which one is there and the scan does not say which."""
-    problem, posterior, axis = context.problem, context.posterior, context.solution.axis
-    pattern, options = problem.patterns, context.options
-    out = []
-    for element, exchanged in posterior.replacements.items():
-        for other, cost in exchanged:
-            close = cost - _best_cost(context) < 3.0
-            if not close or other not in shown or not 0.05 <= posterior.probability[element] < 0.95:
-                continue
-            index = int(posterior.best_option[element])
-            strongest = int(np.argmax(options.depth[index]))
-            settle = _settling_line(problem, element, other, axis.offset_ev, axis.slope)
-            out.append(
-                InseparableEvidence(
-                    elements=(pattern.symbols[element], pattern.symbols[other]),
-                    at_ev=float(problem.energy_ev[strongest]),
-                    settle_element=settle[0] if settle else None,
-                    settle_transition=settle[1] if settle else None,
-                    settle_ev=settle[2] if settle else None,
-                    in_range=bool(settle and problem.in_range(np.array(settle[2]))),
-                )
-            )
-    return tuple(out)
-
-
-def _best_cost(context: Context) -> float:
-    from .search import total_cost
-
-    return total_cost(context.problem, context.options, context.solution.members)
-
-
-def _settling_line(
-    problem: Problem, first: int, second: int, offset_ev: float, slope: float
-) -> tuple[str, str, float] | None:
-    """The strongest line of either that the other has nothing near."""
-    pattern = problem.patterns
-    best: tuple[float, str, str, float] | None = None
-    for one, other in ((first, second), (second, first)):
-        theirs = pattern.energy_ev[other][pattern.real[other]]
-        for column in np.flatnonzero(pattern.real[one] & (pattern.height[one] >= 0.08)):
-            energy = float(pattern.energy_ev[one, column])
-            if energy > LOW_LINE_EV and np.min(np.abs(theirs - energy)) > 20.0:
-                place = energy * (1 + slope) + offset_ev
-                height = float(pattern.height[one, column])
-                if best is None or height > best[0]:
-                    best = (height, pattern.symbols[one], pattern.transitions[one][column], place)
-    return best[1:] if best else None
-
-
-def _untestable(context: Context) -> tuple[UntestableEvidence, ...]:
-    """Elements none of whose strong lines lies in the scan."""
-    problem, axis = context.problem, context.solution.axis
-    pattern = problem.patterns
-    place = pattern.energy_ev * (1 + axis.slope) + axis.offset_ev
-    strong = pattern.real & (pattern.height >= 0.15)
-    tested = np.any(strong & problem.in_range(place), axis=1)
-    out = []
-    for element in np.flatnonzero(~tested):
-        strongest = float(pattern.energy_ev[element, int(np.argmax(pattern.height[element]))])
-        out.append(UntestableEvidence(element=pattern.symbols[element], cause="out of range", nearest_ev=strongest))
-    return tuple(out)

@@ -1,0 +1,117 @@
+"""What the scan leaves open: minima unexplained, elements it cannot separate, elements it says nothing on."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from .context import Context
+from .evidence import InseparableEvidence, UnexplainedEvidence, UntestableEvidence
+from .problem import Problem, unexplained_price
+from .search import minimum_costs
+
+LOW_LINE_EV, SETTLING_HEIGHT = 110.0, 0.03  # a line that settles a case stands above, and is as high as this
+    110.0,
+    0.03,
+)  # a line that settles a case stands above the one and is as high as the other
+MAIN_PART = 0.3  # of an element's deepest prediction, for a minimum to be one that it rests on
+LOSS_PART = 0.5  # cheaper than this part of its full price, a minimum is likely a loss or a satellite
+LEAST_RIVAL = 0.1  # probability from which an element is a rival worth another scan
+
+
+def find_unexplained(context: Context) -> tuple[UnexplainedEvidence, ...]:
+    problem, axis = context.problem, context.solution.axis
+    pattern = problem.patterns
+    cost = minimum_costs(problem, context.sums)
+    full = unexplained_price(problem.energy_ev, problem.depth, problem.significance, np.zeros_like(problem.depth))
+    left = (cost >= problem.price - 0.5) & (problem.price > 3.0) & (problem.price > LOSS_PART * full)
+    likely = [
+        int(e) for e in np.flatnonzero(context.posterior.probability >= 0.5) if context.posterior.best_option[e] >= 0
+    ]
+    for element in likely:  # not in the best set, yet called: its minima are not left over
+        left &= context.options.depth[int(context.posterior.best_option[element])] <= 0
+    place = pattern.energy_ev * (1 + axis.slope) + axis.offset_ev
+    out = []
+    for at in np.flatnonzero(left):
+        off = problem.energy_ev[at] - place
+        sigma = np.hypot(pattern.sigma_ev, 1.5)
+        near = pattern.real & (off > pattern.shift_low_ev - sigma) & (off < pattern.shift_high_ev + sigma)
+        near &= pattern.height >= 0.2
+        weight = np.max(np.where(near, np.log(pattern.height + 1e-9) - 0.5 * (off / sigma) ** 2, -np.inf), axis=1)
+        weight = weight + 0.5 * pattern.prior_log_odds
+        best = [int(e) for e in np.argsort(-weight)[:4] if np.isfinite(weight[e])]
+        out.append(
+            UnexplainedEvidence(
+                energy_ev=float(problem.energy_ev[at]),
+                significance=float(problem.significance[at]),
+                candidates=tuple(pattern.symbols[e] for e in best),
+            )
+        )
+    return tuple(sorted(out, key=lambda item: -item.significance))
+
+
+def find_inseparable(context: Context, shown: list[int]) -> tuple[InseparableEvidence, ...]:
+    """Pairs of which one is there and the scan does not say which."""
+    problem, posterior, axis = context.problem, context.posterior, context.solution.axis
+    pattern = problem.patterns
+    out = []
+    for element, exchanged in posterior.replacements.items():
+        for other, _ in exchanged:
+            if other not in shown or not 0.05 <= posterior.probability[element] < 0.95:
+                continue
+            shared = _shared_minimum(context, element, other)
+            if shared is None or posterior.probability[other] < LEAST_RIVAL:
+                continue
+            settle = _settling_line(problem, element, other, axis.offset_ev, axis.slope)
+            out.append(
+                InseparableEvidence(
+                    elements=(pattern.symbols[element], pattern.symbols[other]),
+                    at_ev=float(problem.energy_ev[shared]),
+                    settle_element=settle[0] if settle else None,
+                    settle_transition=settle[1] if settle else None,
+                    settle_ev=settle[2] if settle else None,
+                    in_range=bool(settle and problem.in_range(np.array(settle[2]))),
+                )
+            )
+    return tuple(out)
+
+
+def _shared_minimum(context: Context, first: int, second: int) -> int | None:
+    """The minimum that is the strongest of one element and could be a strong line of the other as well."""
+    one, two = (context.options.depth[int(context.posterior.best_option[e])] for e in (first, second))
+    for main, other in ((one, two), (two, one)):
+        at = int(np.argmax(main))
+        if main[at] > 0 and other[at] > MAIN_PART * float(np.max(other)):
+            return at
+    return None
+
+
+def _settling_line(
+    problem: Problem, first: int, second: int, offset_ev: float, slope: float
+) -> tuple[str, str, float] | None:
+    """The strongest line of either that the other has nothing near."""
+    pattern = problem.patterns
+    best: tuple[float, str, str, float] | None = None
+    for one, other in ((first, second), (second, first)):
+        theirs = pattern.energy_ev[other][pattern.real[other]]
+        for column in np.flatnonzero(pattern.real[one] & (pattern.height[one] >= SETTLING_HEIGHT)):
+            energy = float(pattern.energy_ev[one, column])
+            if energy > LOW_LINE_EV and np.min(np.abs(theirs - energy)) > 20.0:
+                place = energy * (1 + slope) + offset_ev
+                height = float(pattern.height[one, column])
+                if best is None or height > best[0]:
+                    best = (height, pattern.symbols[one], pattern.transitions[one][column], place)
+    return best[1:] if best else None
+
+
+def find_untestable(context: Context) -> tuple[UntestableEvidence, ...]:
+    """Elements none of whose strong lines lies in the scan."""
+    problem, axis = context.problem, context.solution.axis
+    pattern = problem.patterns
+    place = pattern.energy_ev * (1 + axis.slope) + axis.offset_ev
+    strong = pattern.real & (pattern.height >= 0.15)
+    tested = np.any(strong & problem.in_range(place), axis=1)
+    out = []
+    for element in np.flatnonzero(~tested):
+        strongest = float(pattern.energy_ev[element, int(np.argmax(pattern.height[element]))])
+        out.append(UntestableEvidence(element=pattern.symbols[element], cause="out of range", nearest_ev=strongest))
+    return tuple(out)
