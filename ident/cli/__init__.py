@@ -95,3 +95,7 @@ def _run(argv: list[str] | None) -> int:
         # the reader of our output has gone: nothing to say, and nothing more to flush
         os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
         return 0
+    except OSError as failed:
+        complain(f"the answer could not be written: {failed.strerror or failed}; send it elsewhere, or make room")
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        return NOT_READ

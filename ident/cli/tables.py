@@ -27,7 +27,10 @@ def command(what: str | None, form: str) -> int:
 def _check() -> int:
     from ..deriving import check_tables
 
-    differences = check_tables()
+    try:
+        differences = check_tables()
+    except ModuleNotFoundError as missing:
+        return _wanting(missing)
     for difference in differences:
         complain(difference)
     if not differences:
@@ -38,9 +41,20 @@ def _check() -> int:
 def _rebuild() -> int:
     from ..deriving import rebuild_tables
 
-    rebuild_tables()
+    try:
+        rebuild_tables()
+    except ModuleNotFoundError as missing:
+        return _wanting(missing)
     click.echo("the derived tables are rebuilt")
     return 0
+
+
+def _wanting(missing: ModuleNotFoundError) -> int:
+    complain(
+        f"the derived tables cannot be worked out without {missing.name}; "
+        "install what rebuilding needs: pip install 'auger-ident[tables]', or '.[tables]' in a checkout"
+    )
+    return 1
 
 
 def _list(form: str) -> int:

@@ -6,7 +6,7 @@ from collections.abc import Sequence
 
 from .answer import Assignment, Scale
 
-CAUTION_FROM = 0.05  # a hazard is mentioned as soon as it is possible
+CAUTION_FROM = 0.5  # said of what is called; a list of everything possible would not be read
 
 # Common practice, no source: what safety sheets of these elements and their compounds agree on.
 HAZARDS = {

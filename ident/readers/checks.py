@@ -20,6 +20,7 @@ KILO = re.compile(r"\bk(?:ilo)?\s?e(?:lectron\s?)?v(?:olts?)?\b", re.IGNORECASE)
 BINDING_REMEDY = (
     "give kinetic energies (photon energy minus binding energy minus work function, for X-ray excited lines)"
 )
+LOWEST_EV = 2.0
 KEV_REMEDY = "multiply the energies by 1000 so that they are in eV"
 NO_AXIS_REMEDY = "give kinetic energies between 0 and 3500 eV as the first column"
 
@@ -67,7 +68,7 @@ def check_ordinate(scan: Scan, source: Source) -> None:
     if huge.size:
         at = int(huge[0])
         source.fail(
-            f"the ordinate {scan.intensity[at]:g} is beyond belief",
+            f"the ordinate {scan.intensity[at]:g} is more than any detector gives",
             line=int(scan.line[at]),
             remedy="remove the row, or the rows that hold a mark for missing values",
         )
@@ -81,7 +82,8 @@ def keep_usable(windows: list[Scan], source: Source) -> tuple[list[Scan], list[s
     InputError
         When fewer than 20 points remain, or when the signal is constant everywhere.
     """
-    warnings, long_enough = [], []
+    windows, warnings = _above_zero(windows)
+    long_enough = []
     for window in windows:
         if len(window) < MIN_POINTS:
             warnings.append(f"{_place(window)} left out: {_points(len(window))}, too few for a window")
@@ -104,6 +106,14 @@ def keep_usable(windows: list[Scan], source: Source) -> tuple[list[Scan], list[s
     flat = [window for window in long_enough if _is_constant(window)]
     warnings += [f"{_place(window)} left out: the signal is constant there" for window in flat]
     return kept, warnings
+
+
+def _above_zero(windows: list[Scan]) -> tuple[list[Scan], list[str]]:
+    """Leave out points at 0 eV, where electrons do not arrive and slopes have no meaning, with a warning."""
+    kept = [window[int(np.searchsorted(window.energy_ev, LOWEST_EV)) :] for window in windows]
+    dropped = sum(len(window) for window in windows) - sum(len(window) for window in kept)
+    said = [f"{_points(dropped)} below {LOWEST_EV:g} eV left out"] if dropped else []
+    return [window for window in kept if len(window)] or windows, said
 
 
 def warn_of_steps(windows: list[Scan]) -> list[str]:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import pytest
-from hypothesis import given
+from hypothesis import assume, given
 from hypothesis import strategies as st
 
 from ident.errors import UnknownNameError
@@ -142,8 +142,10 @@ def test_every_name_and_symbol_reads_back(index: int, by_name: bool, case: str, 
 def test_a_letter_left_out_never_gives_another_element(name: str, data: st.DataObject) -> None:
     """A slip may be asked back, but it is never read as another element."""
     place = data.draw(st.integers(min_value=0, max_value=len(name) - 1))
+    left = name[:place] + name[place + 1 :]
+    assume(left not in NAMES)  # terbium without its t is erbium: no slip that anyone could see
     try:
-        symbol = symbol_from_name(name[:place] + name[place + 1 :])
+        symbol = symbol_from_name(left)
     except UnknownNameError as error:
         assert name in str(error)
     else:

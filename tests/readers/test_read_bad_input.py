@@ -41,7 +41,7 @@ CASES = {
     "NaN in the last row": (with_line(101, "150 nan"), "'nan' in column 2 is not", 101),
     "infinite": (with_line(7, "103.0 -inf"), "'-inf' in column 2 is not", 7),
     "overflow": (with_line(7, "103.0 1e999"), "'1e999' in column 2 is not", 7),
-    "mark for missing": (with_line(7, "103.0 1e37"), "1e+37 is beyond belief", 7),
+    "mark for missing": (with_line(7, "103.0 1e37"), "1e+37 is more than any detector gives", 7),
     "letter for a digit": (with_line(7, "1O3.0 2000"), "'1O3.0' in column 1 is not", 7),
     "underscore": (with_line(7, "103.0 2_000"), "'2_000' in column 2 is not", 7),
     "word in a row": (with_line(7, "overload 2000"), "stands where a row of numbers should", 7),
@@ -242,3 +242,12 @@ def test_a_truncated_iso_14976_file_is_never_read_quietly(length: int) -> None:
     with contextlib.suppress(InputError):
         read = read_spectra("-", stream=io.BytesIO(cut.encode()))
         assert cut.rstrip().endswith("end of experiment") or any(spectrum.warnings for spectrum in read)
+
+
+def test_rows_at_zero_energy_are_left_out_with_a_warning(tmp_path: Path) -> None:
+    # No electron arrives at 0 eV; some programs write the axis from there all the same (common practice, no source).
+    path = tmp_path / "from_zero.csv"
+    path.write_text("\n".join(f"{energy},{1000 + energy % 7}" for energy in range(120)), encoding="utf-8")
+    (spectrum,) = read_spectra(path)
+    assert spectrum.windows[0].energy_ev[0] == 2.0
+    assert any("2 eV left out" in text for text in spectrum.warnings)
