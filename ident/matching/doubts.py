@@ -10,9 +10,6 @@ from .problem import Problem, unexplained_price
 from .search import minimum_costs
 
 LOW_LINE_EV, SETTLING_HEIGHT = 110.0, 0.03  # a line that settles a case stands above, and is as high as this
-    110.0,
-    0.03,
-)  # a line that settles a case stands above the one and is as high as the other
 MAIN_PART = 0.3  # of an element's deepest prediction, for a minimum to be one that it rests on
 LOSS_PART = 0.5  # cheaper than this part of its full price, a minimum is likely a loss or a satellite
 LEAST_RIVAL = 0.1  # probability from which an element is a rival worth another scan
