@@ -1,8 +1,8 @@
 """The derived tables from their inputs; the only place that imports the X-ray libraries.
 
-Inputs, kept by hand: published_lines.csv, families.csv, chemical_shifts.csv, shift_priors.csv, commonness.csv,
-sources.csv. Derived from them: binding_energies.csv, transitions.csv, lines.csv, sensitivities.csv, materials.csv,
-rivals.csv.
+Inputs, kept by hand: published_lines.csv, published_sensitivities.csv, families.csv, chemical_shifts.csv,
+shift_priors.csv, commonness.csv, sources.csv. Derived from them: binding_energies.csv, transitions.csv, lines.csv,
+sensitivities.csv, materials.csv, rivals.csv.
 """
 
 from __future__ import annotations
@@ -43,7 +43,16 @@ TRANSITION_COLUMNS = [
     "state",
     "source",
 ]
-SENSITIVITY_COLUMNS = ["symbol", "z", "transition", "sensitivity", "factor", "kind", "source"]
+SENSITIVITY_COLUMNS = [
+    "symbol",
+    "z",
+    "transition",
+    "sensitivity",
+    "sensitivity_10kev",
+    "factor",
+    "kind",
+    "source",
+]
 BINDING_COLUMNS = ["symbol", "z", "level", "energy_ev", "sigma_ev", "kind", "state", "source"]
 MATERIAL_COLUMNS = [
     "symbol",
@@ -71,7 +80,6 @@ RIVAL_COLUMNS = [
     "kind",
     "source",
 ]
-SENSITIVITY_FACTOR = 2.2
 
 
 def derived_tables() -> dict[str, str]:
@@ -79,12 +87,13 @@ def derived_tables() -> dict[str, str]:
     from .binding import binding_rows
     from .materials import material_rows
     from .rivals import rival_rows
+    from .sensitivity import sensitivity_rows
 
     made: dict[str, Callable[[], str]] = {
         "binding_energies.csv": lambda: rendered(BINDING_COLUMNS, binding_rows()),
         "transitions.csv": lambda: rendered(TRANSITION_COLUMNS, _transition_rows()),
         "lines.csv": lambda: rendered(LINE_COLUMNS, _line_rows()),
-        "sensitivities.csv": lambda: rendered(SENSITIVITY_COLUMNS, _sensitivity_rows()),
+        "sensitivities.csv": lambda: rendered(SENSITIVITY_COLUMNS, sensitivity_rows(_elements())),
         "materials.csv": lambda: rendered(MATERIAL_COLUMNS, material_rows()),
         "rivals.csv": lambda: rendered(RIVAL_COLUMNS, rival_rows(_elements())),
     }
@@ -152,19 +161,3 @@ def _line_rows() -> list[Cells]:
                  row.state if row else "element", row.source if row else "computed"]
             )  # fmt: skip
     return rows
-
-
-def _sensitivity_rows() -> list[Cells]:
-    from .lines import weighted_lines
-
-    strongest = {}
-    for z, symbol in _elements():
-        lines = weighted_lines(z, symbol)
-        if lines:
-            best = max(lines, key=lambda line: line.transition.strength)
-            strongest[symbol] = (z, best.transition.label, best.transition.strength)
-    unit = strongest["Ag"][2]
-    return [
-        [symbol, str(z), label, f"{value / unit:.3g}", number(SENSITIVITY_FACTOR, 1), "calculated", "computed"]
-        for symbol, (z, label, value) in strongest.items()
-    ]

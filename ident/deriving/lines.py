@@ -2,19 +2,22 @@
 
 from __future__ import annotations
 
+import math
 from collections import Counter
 from dataclasses import dataclass
 from statistics import median
 
+from .learning import learned
 from .transitions import Transition, transitions_of
 
-LEAST_HEIGHT = 0.02
+LEAST_HEIGHT = 0.05
 MERGED_EV = 1.5
 # A calculated line is not taken for stronger than this part of the strongest published one, less the more lines of
 # its shell have been published: what is not in the lists is weak.
 MOST_DERIVED = (0.5, 0.4, 0.25, 0.15)
-ACROSS_SHELLS = 0.4  # lines of a shell without any published line are scaled down by this
-PUBLISHED_LOG_SIGMA, SAME_SHELL_LOG_SIGMA, OTHER_LOG_SIGMA = 0.45, 0.8, 1.0
+LEAST_LOG_SIGMA = 0.45
+LEAST_LISTED = 0.1  # what a list leaves out may be as strong as this
+PUBLISHED_LOG_SIGMA = 0.45
 LOW_EV, LOW_LEAST_HEIGHT = 60.0, 0.05
 
 
@@ -34,26 +37,49 @@ def weighted_lines(z: int, symbol: str) -> list[Weighted]:
     scale = _scales(every)
     overall = median(scale.values()) if scale else 1.0
     count = Counter(t.vacancy[0] for t in every if t.published is not None)
+    heights = [t.published.relative_height for t in every if t.published is not None and t.published.relative_height]
+    weakest = max(min(heights, default=1.0), LEAST_LISTED)
     out: list[Weighted] = []
     for transition in every:
         row = transition.published
         if row is not None and row.relative_height is not None:
             out.append(_weighted(transition, row.relative_height, PUBLISHED_LOG_SIGMA, "published"))
+        elif transition.strength <= 0:
+            continue
         elif transition.vacancy[0] in scale:
-            if transition.valence:
+            if transition.one_band:
                 continue  # one valence band, one line
-            height = transition.strength * scale[transition.vacancy[0]]
-            cap = MOST_DERIVED[min(count[transition.vacancy[0]], len(MOST_DERIVED) - 1)]
-            out.append(_weighted(transition, min(height, cap), SAME_SHELL_LOG_SIGMA, "computed"))
+            most = min(MOST_DERIVED[min(count[transition.vacancy[0]], len(MOST_DERIVED) - 1)], weakest)
+            out.append(_unlisted(transition, scale[transition.vacancy[0]], learned().same_shell_log_sigma, most))
         else:
-            factor = overall * (ACROSS_SHELLS if scale else 1.0)
-            cap = MOST_DERIVED[0] if scale else float("inf")
-            out.append(_weighted(transition, min(transition.strength * factor, cap), OTHER_LOG_SIGMA, "computed"))
+            most = min(MOST_DERIVED[0], weakest) if scale else float("inf")
+            out.append(_unlisted(transition, overall, learned().other_shell_log_sigma, most))
     return _trimmed(_merged(out))
 
 
 def _weighted(transition: Transition, height: float, log_sigma: float, kind: str) -> Weighted:
     return Weighted(transition=transition, height=height, log_sigma=log_sigma, kind=kind)
+
+
+def _unlisted(transition: Transition, scale: float, log_sigma: float, most: float) -> Weighted:
+    """A line that is not in the lists: its calculated height, knowing that it lies below what would be listed."""
+    mean, sigma = below(math.log(transition.strength * scale), log_sigma, math.log(most))
+    return _weighted(transition, math.exp(mean), max(sigma, LEAST_LOG_SIGMA), "computed")
+
+
+def below(mean: float, sigma: float, most: float) -> tuple[float, float]:
+    """Mean and standard deviation of a normal distribution cut off above `most` (textbook formula).
+
+    >>> [round(x, 3) for x in below(0.0, 1.0, 0.0)]  # half-normal: -(2 / pi)^0.5 and (1 - 2 / pi)^0.5
+    [-0.798, 0.603]
+    """
+    at = (most - mean) / sigma
+    if at > 8.0:
+        return mean, sigma
+    if at < -8.0:  # far beyond: as near to the edge as the tail is long
+        return most + sigma / at, sigma / -at
+    hazard = math.exp(-0.5 * at**2) / math.sqrt(2.0 * math.pi) / (0.5 * math.erfc(-at / math.sqrt(2.0)))
+    return mean - sigma * hazard, sigma * math.sqrt(max(1.0 - at * hazard - hazard**2, 0.0))
 
 
 def _scales(every: tuple[Transition, ...]) -> dict[str, float]:

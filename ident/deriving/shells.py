@@ -23,6 +23,7 @@ FINALS = ("L1", "L23", "M1", "M23", "M45", "N1", "N23", "N45", "N67", "O1", "O23
 # Partly filled d bands that the compilation leaves out lie within a few eV of the Fermi level.
 L_APART_FROM_Z, M_APART_FROM_Z, N_APART_FROM_Z = 20, 47, 73
 BAND_EV = 2.0
+LANTHANUM_Z = 57
 D_BANDS = {"M45": range(20, 31), "N45": range(39, 49), "O45": range(71, 81)}
 
 
@@ -51,12 +52,19 @@ def level(z: int, name: str) -> Level | None:
     if parts:
         count = sum(DEGENERACY[part] for part in parts)
         mean = sum(DEGENERACY[part] * own[part] for part in parts) / count
-        return Level(energy_ev=mean, electrons=count, band=mean < 12.0)
+        return Level(energy_ev=mean, electrons=min(count, _filled(z, name)), band=mean < 12.0)
     if name == "V":
         return Level(energy_ev=BAND_EV, electrons=2, band=True)
     if name in D_BANDS and z in D_BANDS[name]:
-        return Level(energy_ev=BAND_EV, electrons=min(10, z - D_BANDS[name].start + 1), band=True)
+        return Level(energy_ev=BAND_EV, electrons=_filled(z, name), band=True)
     return None
+
+
+def _filled(z: int, name: str) -> int:
+    """Electrons in a d or f shell that fills up at this Z; more than any level holds where none does."""
+    if name in D_BANDS and z in D_BANDS[name]:
+        return min(10, z - D_BANDS[name].start + 1)
+    return z - LANTHANUM_Z if name == "N67" and LANTHANUM_Z < z <= LANTHANUM_Z + 14 else 99
 
 
 def vacancies(z: int) -> tuple[str, ...]:

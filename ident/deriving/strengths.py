@@ -1,117 +1,159 @@
-"""Rough strengths: how many vacancies, which way they decay, how deep the differential line stands.
+"""Strengths of transitions: how many vacancies, which way they decay, how many electrons get out and are recorded.
 
-Heights are those of E N(E) as a cylindrical mirror records it at 5 keV, like the published ones. Rates of K and L
-vacancies are a registry library's evaluated ones; for M, N and O vacancies no complete set exists there, so the
-final pair is shared out by electrons, outer shells first (a stated rule, common practice, no source).
+Depths of the derivative minima of E N(E), as a cylindrical mirror of 0.5 % records it, in the pure element. For a beam
+energy: ionisation with what is scattered back, Coster-Kronig transfer, branching, mean free path, transmission, width.
+Rates of K and L vacancies are a registry library's evaluated ones; for M, N and O vacancies no complete set exists
+there, so the final pairs share by electrons (`_weight`, a stated rule, no source).
 """
 
 from __future__ import annotations
 
-import math
+from dataclasses import dataclass
 from functools import cache
 
-from .shells import GROUPS, level
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
 
-BEAM_EV = 5000.0
-KEPT_FROM_COSTER_KRONIG = {"L1": 0.15, "L2": 0.4, "M1": 0.05, "M23": 0.25, "N1": 0.05, "N23": 0.1, "O1": 0.1}
+from ..physics.backscatter import shimizu_factor
+from ..physics.freepath_arrays import average_path_nm, tpp2m_paths_nm
+from ..physics.ionisation import MODELS
+from ..physics.recording import analyser_transmission, derivative_depth, recorded_width_ev
+from ..physics.widths import natural_width_ev
+from ..physics.yields import with_transfer
+from ..tables import Material, binding_energies, materials
+from .decay import SUBSHELLS, auger_part, library_rates, transfer, transferred
+from .shells import D_BANDS, DEGENERACY, GROUPS, level
+
+FloatArray = NDArray[np.float64]
+BEAM_EV = 5000.0  # what published heights are nearest to: 3 to 5 keV
+MODEL = "gryzinski"
+ONE_BAND = frozenset({"KVV", "L23VV"})  # families of which all transitions end in one valence band
+LEAST_BINDING_EV = 5.0
+COMPOUND_PATH = 1.45  # mean free path in silica over the average one, TPP-2M, 100 to 1000 eV
 SHELL_ORDER = "KLMNOPQ"
+SCALE = 1e18  # cross-sections in 1e-18 cm2
+# Share of an electron of a final level by how many shells further out it is; leaving-one-out picks 0.3 to 1 for two.
+BY_DISTANCE = {0: 1.0, 1: 1.0, 2: 0.5}
+FURTHER_OUT = 0.1
+
+
+@dataclass(frozen=True, kw_only=True, eq=False)
+class Subshells:
+    """Levels of one shell of an element, innermost first."""
+
+    names: tuple[str, ...]
+    binding_ev: FloatArray
+    electrons: FloatArray
 
 
 @cache
-def strength(z: int, parts: tuple[str, str, str], energy_ev: float) -> float:
-    """Rough depth of a transition's differential line, arbitrary but common units."""
-    return vacancies_made(z, parts[0]) * branching(z, parts) * _shape_factor(z, parts, energy_ev)
+def subshells(z: int, shell: str) -> Subshells:
+    """Subshells with a binding energy; partly filled d bands that have none count as their upper level."""
+    known = binding_energies()
+    names, energies, electrons = [], [], []
+    for name in SUBSHELLS[shell]:
+        row = known.get((_symbol(z), name))
+        if row is not None:
+            names.append(name)
+            energies.append(max(row.energy_ev, LEAST_BINDING_EV))
+            electrons.append(float(DEGENERACY[name]))
+    for group, members in GROUPS.items():
+        own = level(z, group)
+        if group[0] == shell and group in D_BANDS and members[1] not in names and own is not None:
+            names.append(members[1])
+            energies.append(LEAST_BINDING_EV)
+            electrons.append(float(own.electrons))
+    return Subshells(names=tuple(names), binding_ev=np.array(energies), electrons=np.array(electrons))
 
 
-def vacancies_made(z: int, vacancy: str) -> float:
-    """Ionisations by the beam and by what comes back, Gryzinski (1965), with Coster-Kronig transfer, a.u."""
-    own = level(z, vacancy)
-    if own is None:
-        return 0.0
-    total = own.electrons * gryzinski(own.energy_ev)
-    shell = vacancy[0]
-    if shell in "LMN" and vacancy not in {f"{shell}1"}:
-        for other in (f"{shell}1", f"{shell}23"):
-            above = level(z, other)
-            if above is not None and other != vacancy and other[1:] < vacancy[1:] and len(other) > 1:
-                part = own.electrons / _electrons_of_shell(z, shell, below=other)
-                total += 0.6 * part * above.electrons * gryzinski(above.energy_ev)
-    return total * KEPT_FROM_COSTER_KRONIG.get(vacancy, 1.0)
+@cache
+def _symbol(z: int) -> str:
+    return {row.z: row.symbol for row in binding_energies().values()}[z]
 
 
-def gryzinski(binding_ev: float, beam_ev: float = BEAM_EV) -> float:
-    """Gryzinski's ionisation cross-section an electron of a shell, in units of 6.51e-14 cm2 eV2 / eV2."""
-    u = beam_ev / max(binding_ev, 5.0)
-    if u <= 1.0:
-        return 0.0
-    g = (1 / u) * ((u - 1) / (u + 1)) ** 1.5 * (1 + (2 / 3) * (1 - 1 / (2 * u)) * math.log(2.7 + math.sqrt(u - 1)))
-    return g / max(binding_ev, 5.0) ** 2
+def vacancies_of_shell(z: int, shell: str, beam_ev: ArrayLike, model: str = MODEL) -> FloatArray:
+    """Vacancies in each subshell of a shell (n, m) at beam energies (m,), backscattering and transfer counted in."""
+    own = subshells(z, shell)
+    beam = np.atleast_1d(np.asarray(beam_ev, dtype=float))
+    binding = own.binding_ev[:, None]
+    made = SCALE * MODELS[model](binding, own.electrons[:, None], beam) * shimizu_factor(z, beam / binding)
+    place = {name: index for index, name in enumerate(own.names)}
+    moves = {
+        (place[source], place[target]): part
+        for (source, target), part in transfer(z, shell).items()
+        if source in place and target in place
+    }
+    return with_transfer(made, moves) if moves else made
 
 
-def _electrons_of_shell(z: int, shell: str, *, below: str) -> float:
-    names = [name for name in (f"{shell}23", f"{shell}45", f"{shell}67") if name > below]
-    return float(sum(own.electrons for name in names if (own := level(z, name)) is not None)) or 1.0
+@cache
+def members(z: int, vacancy: str) -> list[int]:
+    """Places of the subshells of a level or group of levels among those of its shell."""
+    own = subshells(z, vacancy[0]).names
+    return [own.index(name) for name in GROUPS.get(vacancy, (vacancy,)) if name in own]
+
+
+def vacancies_made(z: int, vacancy: str, beam_ev: ArrayLike, model: str = MODEL) -> FloatArray:
+    """Vacancies in a level or a group of levels, in 1e-18 cm2 an atom, at beam energies (m,)."""
+    if vacancy[0] not in SUBSHELLS:
+        return np.zeros(np.atleast_1d(np.asarray(beam_ev)).shape)
+    out: FloatArray = vacancies_of_shell(z, vacancy[0], beam_ev, model)[members(z, vacancy)].sum(axis=0)
+    return out
 
 
 @cache
 def branching(z: int, parts: tuple[str, str, str]) -> float:
-    """Part of the vacancies that decay by a transition, fluorescence taken off."""
-    if parts[0] in {"K", "L1", "L2", "L3", "L23"}:
-        rate = _library_rate(z, parts)
-        if rate is not None:
-            return rate
-    return _shared_rate(z, parts)
-
-
-def _library_rate(z: int, parts: tuple[str, str, str]) -> float | None:
-    import xraylib
-
-    initial = list(GROUPS.get(parts[0], (parts[0],)))
-    total, found = 0.0, False
-    for vacancy in initial:
-        auger = _yield(z, vacancy)
-        for first in GROUPS.get(parts[1], (parts[1],)):
-            for second in GROUPS.get(parts[2], (parts[2],)):
-                for pair in {(first, second), (second, first)}:
-                    name = f"{vacancy}_{pair[0]}{pair[1]}_AUGER"
-                    macro = getattr(xraylib, name, None)
-                    if macro is None:
-                        continue
-                    try:
-                        rate = float(xraylib.AugerRate(z, macro))
-                    except ValueError:
-                        continue
-                    if rate > 0:
-                        found = True
-                        total += rate * auger / len(initial) * (0.5 if pair[0] == pair[1] and first != second else 1)
-    return total if found else None
-
-
-def _yield(z: int, vacancy: str) -> float:
-    import xraylib
-
-    try:
-        return float(xraylib.AugerYield(z, getattr(xraylib, f"{vacancy}_SHELL")))
-    except ValueError:
-        return 1.0
+    """Part of the vacancies of a level or group that decays by a transition; a group counts by its electrons."""
+    names = [subshells(z, parts[0][0]).names[place] for place in members(z, parts[0])]
+    total = sum(DEGENERACY[name] for name in names)
+    held = sum(DEGENERACY[name] * shares(z, parts[0], name).get(parts[1:], 0.0) for name in names)
+    return held / total if total else 0.0
 
 
 @cache
-def _shared_rate(z: int, parts: tuple[str, str, str]) -> float:
-    weights = {pair: _pair_weight(z, parts[0], pair) for pair in _pairs(z, parts[0])}
-    total = sum(weights.values())
-    return weights.get((parts[1], parts[2]), 0.0) / total if total else 0.0
+def shares(z: int, vacancy: str, member: str) -> dict[tuple[str, str], float]:
+    """Parts of the vacancies of a subshell by pairs of final levels; with fluorescence they add up to one."""
+    pairs = _pairs(z, vacancy)
+    inside = {pair: _weight(z, vacancy, pair) for pair in pairs if _own_shell(z, member, pair)}
+    outside = {pair: _weight(z, vacancy, pair) for pair in pairs if pair not in inside}
+    rates = library_rates(z, member) if member[0] in "KL" else {}
+    grouped = {pair: _grouped(rates, pair) for pair in outside}
+    if sum(grouped.values()) > 0:
+        outside = grouped
+    moved = transferred(z, member) if inside else 0.0
+    left = auger_part(z, member) + (transferred(z, member) - moved)
+    if not any(outside.values()):
+        moved, left = moved + left, 0.0
+    return {**_scaled(inside, moved), **_scaled(outside, left)}
+
+
+def _own_shell(z: int, member: str, pair: tuple[str, str]) -> bool:
+    """Whether a hole stays in the shell by a transition that the transfer probabilities count."""
+    moves = {target for source, target in transfer(z, member[0]) if source == member}
+    return any(set(GROUPS.get(name, (name,))) & moves for name in pair)
+
+
+def _scaled(weights: dict[tuple[str, str], float], total: float) -> dict[tuple[str, str], float]:
+    every = sum(weights.values())
+    return {pair: total * weight / every for pair, weight in weights.items()} if every > 0 else {}
+
+
+def _grouped(rates: dict[tuple[str, str], float], pair: tuple[str, str]) -> float:
+    first, second = (GROUPS.get(name, (name,)) for name in pair)
+    wanted = {(min(a, b), max(a, b)) for a in first for b in second}
+    return sum(rate for found, rate in rates.items() if found in wanted)
 
 
 @cache
 def _pairs(z: int, vacancy: str) -> tuple[tuple[str, str], ...]:
+    from .families import formula_ev
     from .transitions import final_pairs
 
-    return final_pairs(z, vacancy)
+    return tuple(p for p in final_pairs(z, vacancy) if (formula_ev(z, (vacancy, *p)) or 0.0) > 0.0)
 
 
-def _pair_weight(z: int, vacancy: str, pair: tuple[str, str]) -> float:
-    """Electrons of both levels; within the next shell most, further out less, the outer subshells most."""
+def _weight(z: int, vacancy: str, pair: tuple[str, str]) -> float:
+    """Electrons of both levels, those far out less."""
     shell = SHELL_ORDER.index(vacancy[0])
     weight = 1.0
     for name in pair:
@@ -119,19 +161,44 @@ def _pair_weight(z: int, vacancy: str, pair: tuple[str, str]) -> float:
         if own is None:
             return 0.0
         away = (SHELL_ORDER.index(name[0]) if name != "V" else shell + 2) - shell
-        weight *= own.electrons * {0: 1.0, 1: 1.0, 2: 0.2}.get(away, 0.03)
-        weight *= {"1": 0.4, "2": 0.7}.get(name[1:2], 1.0)
-    own = level(z, pair[0])
-    return weight * (0.5 if pair[0] == pair[1] and own is not None else 1.0)
+        weight *= own.electrons * BY_DISTANCE.get(away, FURTHER_OUT)
+    return weight * (0.5 if pair[0] == pair[1] else 1.0)
 
 
-def _shape_factor(z: int, parts: tuple[str, str, str], energy_ev: float) -> float:
-    """E N(E) transmission, mean free path as E^0.7 above 75 eV, and width of the differential line squared."""
-    bands = sum(1 for name in parts[1:] if (own := level(z, name)) is not None and own.band)
-    natural = (2.0, 3.5, 5.0)[bands]
-    if {"M1", "M23", "N1", "N23"} & set(parts[1:]):
-        natural += 1.5  # such holes live short
-    if {"M1", "N1"} & set(parts[1:]):
-        natural += 2.0
-    width = math.hypot(natural, 0.005 * energy_ev)
-    return energy_ev * max(energy_ev, 75.0) ** 0.7 / width**2
+def parts_of_line(z: int, parts: tuple[str, str, str]) -> tuple[tuple[str, str, str], ...]:
+    """The transitions that make one line: all of one valence band in light elements, else the transition itself."""
+    from .families import family_name
+
+    if family_name(parts, z) not in ONE_BAND:
+        return (parts,)
+    every = ((parts[0], *pair) for pair in _pairs(z, parts[0]))
+    return tuple(other for other in every if family_name(other, z) in ONE_BAND)
+
+
+@cache
+def strength(z: int, parts: tuple[str, str, str], energy_ev: float, beam_ev: float = BEAM_EV) -> float:
+    """Depth of a transition's derivative minimum from the pure element, arbitrary but common units."""
+    made = float(vacancies_made(z, parts[0], beam_ev)[0])
+    return made * branching(z, parts) * float(recorded_part(z, parts, energy_ev)[0])
+
+
+def recorded_part(z: int, parts: tuple[str, str, str], energy_ev: float) -> FloatArray:
+    """Depth an Auger electron made: mean free path in the element, analyser, width; shape (1,)."""
+    natural = natural_width_ev(z, parts[0], parts[1] + parts[2])
+    width = recorded_width_ev(natural, energy_ev)
+    depth = derivative_depth(free_path_nm(z, energy_ev), width) * analyser_transmission(energy_ev)
+    return np.atleast_1d(depth)
+
+
+def free_path_nm(z: int, energy_ev: ArrayLike) -> FloatArray:
+    """Mean free path in the element where it is a solid, else in a compound; below 50 eV that at 50 eV."""
+    own = _materials().get(z)
+    energy = np.maximum(np.asarray(energy_ev, dtype=float), 50.0)
+    if own is None or own.kind != "compiled":
+        return COMPOUND_PATH * average_path_nm(energy)
+    return tpp2m_paths_nm(energy, own.valence_electrons, own.density_g_cm3, own.molar_mass, own.gap_ev)
+
+
+@cache
+def _materials() -> dict[int, Material]:
+    return {row.z: row for row in materials().values()}

@@ -15,8 +15,9 @@ from .families import (
     levels_of,
     published_minimum_ev,
 )
+from .learning import correction, line_strength
 from .shells import FINALS, level, vacancies
-from .strengths import SHELL_ORDER, strength
+from .strengths import ONE_BAND, SHELL_ORDER, strength
 
 LOWEST_EV, HIGHEST_EV = 20.0, 3200.0
 HIGHEST_Z = 92
@@ -35,6 +36,8 @@ class Transition:
     energy_kind: str
     strength: float
     vacancy: str
+    parts: tuple[str, str, str]
+    one_band: bool  # one of several transitions that make one line of a valence band
     valence: bool
     published: PublishedLine | None = None
 
@@ -94,6 +97,16 @@ def _published(symbol: str) -> dict[tuple[str, str, str], PublishedLine]:
     return rows
 
 
+def published_transitions() -> list[tuple[str, int, tuple[str, str, str], float, PublishedLine]]:
+    """Published handbook lines whose levels are known: symbol, Z, levels, energy on the absolute scale, row."""
+    out = []
+    for symbol in dict.fromkeys(row.symbol for row in published_lines()):
+        for parts, row in _published(symbol).items():
+            if level(row.z, parts[0]) is not None and parts[1:] in final_pairs(row.z, parts[0]):
+                out.append((symbol, row.z, parts, published_minimum_ev(row), row))
+    return out
+
+
 def canonical(z: int, parts: tuple[str, str, str]) -> tuple[str, str, str]:
     """A published triple in the levels that vacancies and final pairs use."""
     own = set(vacancies(z))
@@ -116,6 +129,12 @@ def _is_valence(z: int, parts: tuple[str, str, str]) -> bool:
     return (parts[0] == "K" and z <= 5) or (parts[0] == "L23" and 12 <= z <= 16)
 
 
+def _strength(z: int, parts: tuple[str, str, str], energy_ev: float, row: PublishedLine | None) -> float:
+    """Corrected strength; a published valence line is all transitions of its band."""
+    whole = line_strength if row is not None else strength
+    return whole(z, parts, energy_ev) * correction(z, parts, energy_ev)
+
+
 def _from_row(z: int, parts: tuple[str, str, str], row: PublishedLine) -> Transition:
     return Transition(
         symbol=row.symbol,
@@ -127,6 +146,8 @@ def _from_row(z: int, parts: tuple[str, str, str], row: PublishedLine) -> Transi
         energy_kind="published",
         strength=0.0,
         vacancy=parts[0],
+        parts=parts,
+        one_band=family_name(parts, z) in ONE_BAND,
         valence=_is_valence(z, parts),
         published=row,
     )
@@ -155,8 +176,10 @@ def _transition(z: int, symbol: str, parts: tuple[str, str, str], row: Published
         energy_ev=energy,
         sigma_ev=sigma,
         energy_kind=kind,
-        strength=strength(z, parts, round(energy, 2)),
+        strength=_strength(z, parts, round(energy, 2), row),
         vacancy=parts[0],
+        parts=parts,
+        one_band=family_name(parts, z) in ONE_BAND,
         valence=_is_valence(z, parts),
         published=row,
     )

@@ -177,21 +177,49 @@ class ShiftPrior:
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Sensitivity:
-    """Rough depth of an element's strongest line per atomic percent, Ag M5N45N45 = 1."""
+    """Depth of the strongest line of the pure element, Ag M5N45N45 = 1, at beams of 5 and 10 keV."""
 
     unique_by: ClassVar[tuple[str, ...]] = ("symbol",)
 
     symbol: str
     z: int
     transition: str
-    sensitivity: float
+    sensitivity: float  # at 5 keV
+    sensitivity_10kev: float
     factor: float  # one standard deviation, multiplicative
     kind: str
     source: str
 
     def __post_init__(self) -> None:
         _need(self.sensitivity > 0, "sensitivity", "must be positive")
+        _need(self.sensitivity_10kev > 0, "sensitivity_10kev", "must be positive")
         _need(self.factor > 1, "factor", "must lie above 1")
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class PublishedSensitivity:
+    """Sensitivity of an element's line as handbooks give it, pure elements, Ag M5N45N45 = 1."""
+
+    unique_by: ClassVar[tuple[str, ...]] = ("symbol", "transition")
+
+    symbol: str
+    z: int
+    transition: str
+    sensitivity: float
+    factor: float  # one standard deviation, multiplicative
+    beam_kev: float
+    status: str  # read or from memory
+    confidence: str
+    kind: str
+    state: str
+    source: str
+
+    def __post_init__(self) -> None:
+        _need(self.sensitivity > 0, "sensitivity", "must be positive")
+        _need(self.factor > 1, "factor", "must lie above 1")
+        _need(self.beam_kev > 0, "beam_kev", "must be positive")
+        _need(self.status in {"read", "from memory"}, "status", "must be read or from memory")
+        _need(self.confidence in {"normal", "low"}, "confidence", "must be normal or low")
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)

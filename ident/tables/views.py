@@ -14,6 +14,7 @@ from .rows import (
     Line,
     Material,
     PublishedLine,
+    PublishedSensitivity,
     Rival,
     Sensitivity,
     ShiftPrior,
@@ -89,6 +90,12 @@ def shift_range(symbol: str, valence: bool) -> tuple[float, float]:
 def sensitivities() -> dict[str, Sensitivity]:
     """Rough sensitivity of every element, by symbol."""
     return {row.symbol: row for row in read_rows("sensitivities.csv", Sensitivity)}
+
+
+@cache
+def published_sensitivities() -> tuple[PublishedSensitivity, ...]:
+    """Sensitivities as handbooks give them."""
+    return read_rows("published_sensitivities.csv", PublishedSensitivity)
 
 
 @cache

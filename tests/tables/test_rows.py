@@ -16,13 +16,14 @@ UNCERTAINTY = {
     "lines.csv": ("sigma_ev", "height_log_sigma"),
     "materials.csv": ("density_sigma_g_cm3",),
     "published_lines.csv": ("sigma_ev",),
+    "published_sensitivities.csv": ("factor",),
     "rivals.csv": ("reach_ev",),
     "sensitivities.csv": ("factor",),
     "transitions.csv": ("sigma_ev",),
 }
 STATE = (
     *("binding_energies.csv", "chemical_shifts.csv", "lines.csv", "materials.csv", "published_lines.csv"),
-    "transitions.csv",
+    *("published_sensitivities.csv", "transitions.csv"),
 )
 JUDGEMENTS = {"commonness.csv", "families.csv", "shift_priors.csv", "sources.csv"}  # no energies, or a range
 
