@@ -71,7 +71,7 @@ def main() -> None:
     print("Terms learned: " + ", ".join(f"{n} {c}" for n, c in zip(TERMS, own.coefficients, strict=True)) + ".")
     print("\nKept: a published height as it is, else the corrected one on the scale of its shell; for sensitivities")
     print(
-        "the mean of logarithms of published and calculated, else the calculated one with its neighbours' errors taken off."
+        "the mean of logarithms of published and calculated, else the calculated one, less the errors of its neighbours."
     )
     print("\n## Heights, by element\n\n" + "\n".join(describe_heights()))
     print("\n## Sensitivities, by element\n\n" + "\n".join(describe_sensitivities(sensitivities_at(elements, BEAM_EV))))
