@@ -71,6 +71,9 @@ def _judge_bare(scene: Scene, part: Part) -> Judgement:
     if probability >= LIKELY:
         first = reason("element-fits", "for", f"the spectrum speaks for {name_of(symbol)}, {_p(probability)}")
         return Judgement(verdict="agrees", reasons=(first, *behind), probability=probability)
+    if not scene.examined.analysis.minima:
+        nothing = reason("nothing-there", "against", "nothing in this spectrum stands above the noise")
+        return Judgement(verdict="disagrees", reasons=(nothing,), probability=probability)
     asked = scene.asked.get(symbol)
     better = scene.inseparable_from(symbol)
     if probability >= POSSIBLE or better or _all_hidden(scene, symbol) or _poorly_seen(scene, symbol):

@@ -200,7 +200,7 @@ def _scaled(value: float, cell: str) -> float:
 def _score(rows: Sequence[_Row]) -> tuple[int, int, int]:
     """Count rows with an energy and an element; among equals, fewest numbers not read, and least beside them."""
     good = [row for row in rows if any(_may_be_energy(v) for _, v in row.values) and _elements(row)]
-    not_read = sum(bool(NUMBER.fullmatch(text)) for row in rows for _, text in row.texts)
+    not_read = sum(text.lstrip("+-\"'")[:1].isdigit() for row in rows for _, text in row.texts)
     return len(good), -not_read, -sum(len(row.values) + len(row.texts) for row in good)
 
 
