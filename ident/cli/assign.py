@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Any
 
 import click
 
-from .options import KNOWING, READING, format_option, with_options
+from .options import KNOWING, READING, figure_option, format_option, with_options
 
 if TYPE_CHECKING:
     from ..identification import Identification
@@ -18,26 +18,35 @@ if TYPE_CHECKING:
 @click.command("assign", short_help="Which elements are here, how sure, and why?")
 @click.argument("spectra", nargs=-1, required=True, metavar="SPECTRUM...")
 @format_option
+@figure_option
 @with_options(READING)
 @with_options(KNOWING)
-def command(spectra: tuple[str, ...], form: str, **given: Any) -> int:
+def command(spectra: tuple[str, ...], form: str, figure: str | None, **given: Any) -> int:
     """Name the elements in each SPECTRUM, ranked, with probability and reasons.
 
     SPECTRUM is a text table (energy and ordinate in columns) or an ISO 14976 file; - reads standard input.
 
     Example: ident assign --rule-out Co survey.csv
     """
-    from ..identification import identify
+    from ..identification import examine
+    from .figures import Figures
     from .inputs import Reading, answer_each
 
     settings = settings_of(given)
-    reading = Reading(**{key: given[key] for key in ("kind", "ordinate", "column", "separate", "within", "quiet")})
+    figures = Figures(figure, len(spectra)) if figure is not None else None
+    reading = Reading(
+        **{key: given[key] for key in ("kind", "ordinate", "column", "separate", "within", "quiet")},
+        one_figure=figures is not None and figures.single,
+    )
     if form == "csv":
         _write_head()
 
     def answer(spectrum: Spectrum) -> tuple[bool, Sequence[str]]:
-        found = identify(spectrum, settings)
+        examined = examine(spectrum, settings)
+        found = examined.answer
         click.echo(_rendered(found, form), nl=False)
+        if figures is not None:
+            figures.draw(examined)
         return found.minima > 0, found.warnings
 
     return answer_each(spectra, reading, answer)

@@ -29,6 +29,7 @@ class Reading:
     separate: bool = False
     within: tuple[float, float] | None = None
     quiet: bool = False
+    one_figure: bool = False  # True: the answer is drawn into one file, so that one spectrum may come
 
     def spectra_of(self, path: str) -> tuple[Spectrum, ...]:
         """Read the spectra of one file, or of standard input for "-"."""
@@ -41,6 +42,10 @@ class Reading:
             separate=self.separate,
             stream=stream,
         )
+        if self.one_figure and len(spectra) > 1:
+            raise InputError(
+                f"holds {len(spectra)} spectra, and --figure names one file", source=path, remedy="name a folder"
+            )
         if self.within is None:
             return spectra
         return tuple(spectrum.crop(*self.within) for spectrum in spectra)

@@ -52,6 +52,12 @@ format_option = click.option(
     help="How to answer; json is one object a line.",
 )
 
+figure_option = click.option(
+    "--figure",
+    metavar="PATH",
+    help="Draw the answer: a .png, .svg or .pdf, or a folder for one .png a spectrum.",
+)
+
 READING = (
     click.option(
         "--kind",
