@@ -69,10 +69,10 @@ def main() -> None:
     same, other = math.exp(own.same_shell_log_sigma), math.exp(own.other_shell_log_sigma)
     print(f"\nA height from published ones of the same shell: factor {same:.2f}; of other shells only: {other:.2f}.")
     print("Terms learned: " + ", ".join(f"{n} {c}" for n, c in zip(TERMS, own.coefficients, strict=True)) + ".")
-    print("\nKept: a published height as it is, else the corrected one on the scale of its shell; for sensitivities")
     print(
-        "the mean of logarithms of published and calculated, else the calculated one, less the errors of its neighbours."
+        "\nKept: a published height as it is, else the corrected one on the scale of its shell. Sensitivities: mean of"
     )
+    print("logarithms of published and calculated, else the calculated one, less the errors of its neighbours in Z.")
     print("\n## Heights, by element\n\n" + "\n".join(describe_heights()))
     print("\n## Sensitivities, by element\n\n" + "\n".join(describe_sensitivities(sensitivities_at(elements, BEAM_EV))))
 
