@@ -96,7 +96,7 @@ def _judge_bare(scene: Scene, part: Part) -> Judgement:
 
 def _judge_at(scene: Scene, part: Part, energy_ev: float) -> Judgement:
     symbol, probability = part.symbol, scene.probability(part.symbol)
-    minimum = scene.minimum_at(energy_ev)
+    minimum = scene.minimum_at(energy_ev, symbol)
     if not scene.in_range(energy_ev):
         ranges = format_ranges(scene.examined.analysis.spectrum.ranges_ev)
         text = f"{energy_ev:g} eV was not scanned; the spectrum covers {ranges}"

@@ -79,10 +79,14 @@ class Scene:
         scale = self.examined.evidence.scale
         return energy_ev * (1.0 + scale.slope) + scale.offset_ev
 
-    def minimum_at(self, energy_ev: float) -> Minimum | None:
-        """The minimum that a label at an energy means, or None."""
+    def minimum_at(self, energy_ev: float, symbol: str = "") -> Minimum | None:
+        """The minimum that a label at an energy means, or None: one that its element explains, else the nearest."""
         near = [m for m in self.examined.analysis.minima if self._reaches(energy_ev - m.energy_ev, m.width_ev)]
-        return min(near, key=lambda m: abs(energy_ev - m.energy_ev), default=None)
+        return min(near, key=lambda m: (not self._is_of(m, symbol), abs(energy_ev - m.energy_ev)), default=None)
+
+    def _is_of(self, minimum: Minimum, symbol: str) -> bool:
+        claims = (claim for claim in self.claims_on(minimum) if claim.element == symbol)
+        return any(claim.probability >= LIKELY and claim.share >= MAIN_SHARE for claim in claims)
 
     @staticmethod
     def _reaches(away_ev: float, width_ev: float) -> bool:
