@@ -37,6 +37,7 @@ class Scale:
     slope: float
     slope_sigma: float
     charging: Literal["yes", "no", "cannot tell"]
+    readings: tuple[tuple[float, float, float], ...] = ()  # handbook energy, how far too high it reads here, sd; eV
 
 
 @dataclass(frozen=True, kw_only=True)

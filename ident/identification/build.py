@@ -117,6 +117,7 @@ def assemble(
         slope=evidence.scale.slope,
         slope_sigma=evidence.scale.slope_sigma,
         charging=evidence.scale.charging,
+        readings=evidence.scale.readings,
     )
     return Identification(
         spectrum=spectrum.name,

@@ -94,6 +94,7 @@ class ScaleEvidence:
     slope_sigma: float
     charging: Charging
     lines_used: int = 0
+    readings: tuple[tuple[float, float, float], ...] = ()  # handbook energy, how far too high it reads here, sd; eV
 
 
 @dataclass(frozen=True, kw_only=True)

@@ -13,7 +13,7 @@ if TYPE_CHECKING:
     from ..reasons import Reason
 
 MOST_LINES = 3
-MOST_REASONS = 6
+MOST_REASONS, FEW_REASONS = 6, 2  # of what is called, and of what is only possible
 MOST_UNEXPLAINED = 8
 
 
@@ -74,7 +74,8 @@ def _why(answer: Identification) -> Iterator[str]:
         yield ""
         state = f", as {assignment.state.name}" if assignment.state else ""
         yield f"{assignment.element}: {assignment.verdict}{state}"
-        yield from _sides(assignment.reasons)
+        called = assignment.verdict in ("present", "likely")
+        yield from _sides(assignment.reasons[: MOST_REASONS if called else FEW_REASONS])
     for asked in answer.why_not:
         yield ""
         yield f"Why not {asked.element}? {asked.verdict}, probability {probability(asked.probability)}"
@@ -94,9 +95,14 @@ _SIDES = ("for", "against", "untested")
 
 def _axis(answer: Identification) -> Iterator[str]:
     scale = answer.scale
-    offset = f"offset {scale.offset_ev:+.1f} +- {scale.offset_sigma_ev:.1f} eV"
-    slope = f"slope {scale.slope:+.2%} +- {scale.slope_sigma:.2%}"
-    yield _note("axis", f"{offset}, {slope} (this axis less Fermi-referenced lines); charging: {scale.charging}")
+    if not scale.readings:
+        yield _note("axis", "not known: no line to judge it by")
+        return
+    told = [
+        f"{abs(off):.1f} +- {sigma:.1f} eV too {'high' if off >= 0 else 'low'} at {at:.0f} eV"
+        for at, off, sigma in scale.readings
+    ]
+    yield _note("axis", f"reads {' and '.join(told)}, against handbook energies; charging: {scale.charging}")
 
 
 def _doubts(answer: Identification) -> Iterator[str]:
