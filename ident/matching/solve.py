@@ -6,15 +6,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from ..scale import (
-    INSULATOR_SIGMA_EV,
-    OFFSET_CENTRE_EV,
-    OFFSET_SIGMA_EV,
-    SLOPE_CENTRE,
-    SLOPE_SIGMA,
-    AxisFit,
-    fit_axis,
-)
+from ..scale import AxisFit, AxisPrior, fit_axis, usual_axis
 from .options import Axis, Options, build_options
 from .problem import Problem
 from .search import search, sums_of, with_known_minors
@@ -44,16 +36,16 @@ class Solution:
 
 def solve(problem: Problem) -> list[Solution]:
     """Search from several axes, settle the promising ones, and give the explanations, cheapest first."""
-    insulator = problem.settings.insulator
-    starts = np.arange(-60.0, 61.0, 4.0) if insulator else np.array(STARTS_EV)
+    prior = axis_prior(problem)
+    starts = np.arange(-60.0, 61.0, 4.0) if problem.settings.insulator else np.array(STARTS_EV)
     tried = []
     for tilt in TILT_CENTRES[problem.ordinate]:
         for start in starts:
-            offset = OFFSET_CENTRE_EV + float(start)
-            axis = Axis(offset_ev=offset, slope=SLOPE_CENTRE, sigma_ev=START_SIGMA_EV, tilt=tilt)
+            offset = prior.offset_ev + float(start)
+            axis = Axis(offset_ev=offset, slope=prior.slope, sigma_ev=START_SIGMA_EV, tilt=tilt)
             options = build_options(problem, axis)
             members, cost = search(problem, options, passes=0)
-            tried.append((cost + _axis_price(offset, SLOPE_CENTRE, insulator), members, options, axis))
+            tried.append((cost + prior.price(offset, prior.slope), members, options, axis))
     tried.sort(key=lambda trial: trial[0])
     settled: list[Solution] = []
     for cost, members, options, axis in tried[:SETTLED]:
@@ -77,16 +69,15 @@ def _distinct(solutions: list[Solution]) -> list[Solution]:
     return kept
 
 
-def _axis_price(offset_ev: float, slope: float, insulator: bool) -> float:
-    sigma = INSULATOR_SIGMA_EV if insulator else OFFSET_SIGMA_EV
-    away, turned = (offset_ev - OFFSET_CENTRE_EV) / np.hypot(sigma, 1.0), (slope - SLOPE_CENTRE) / SLOPE_SIGMA
-    return 0.5 * float(away**2 + turned**2)
+def axis_prior(problem: Problem) -> AxisPrior:
+    """What is known of the axis beforehand."""
+    usual = usual_axis()
+    return usual.of_insulator() if problem.settings.insulator else usual
 
 
 def _settle(
     problem: Problem, axis: Axis, options: Options, members: list[int], *, tilt_centre: float
 ) -> Solution:
-    insulator = problem.settings.insulator
     fit = _fit(problem, options, members)
     cost, known = np.inf, problem
     for _ in range(2):
@@ -103,7 +94,7 @@ def _settle(
         fit = _fit(problem, options, members)
         if _moved_ev(axis, fit) < UNMOVED_EV:
             break
-    cost += _axis_price(fit.offset_ev, fit.slope, insulator) + 0.5 * ((axis.tilt - tilt_centre) / TILT_SIGMA) ** 2
+    cost += axis_prior(problem).price(fit.offset_ev, fit.slope) + 0.5 * ((axis.tilt - tilt_centre) / TILT_SIGMA) ** 2
     return Solution(problem=known, axis=axis, fit=fit, options=options, members=members, cost=cost)
 
 
@@ -144,8 +135,7 @@ def _fit(problem: Problem, options: Options, members: list[int]) -> AxisFit:
     sigma = np.hypot(sigma, 0.7 * np.abs(chemistry))
     sigma = np.where(pattern.valence[element, line], np.hypot(sigma, 2.5), sigma)
     deviation = problem.energy_ev[minimum] - absolute
-    offset_sigma = INSULATOR_SIGMA_EV if problem.settings.insulator else OFFSET_SIGMA_EV
-    return fit_axis(absolute, deviation, sigma, place, len(members), offset_sigma_ev=offset_sigma)
+    return fit_axis(absolute, deviation, sigma, place, len(members), prior=axis_prior(problem))
 
 
 def _tilt(problem: Problem, options: Options, members: list[int], centre: float) -> float:
