@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING
 
 from ..errors import InputError, SettingError
 from .escape import printable
+from .figure_text import FONT, write_within
 from .palette import FAINT_INK, INK, PAPER
 
 if TYPE_CHECKING:
@@ -21,7 +22,6 @@ SHEET_INCHES = (11.69, 8.27)  # A4 on its side (ISO 216)
 DOTS_PER_INCH = 200
 LEFT, RIGHT, LIST_LEFT, LIST_RIGHT = 0.05, 0.70, 0.722, 0.985
 TOP, MIDDLE, UNDER, BOTTOM = 0.905, 0.365, 0.33, 0.075
-LONGEST_TITLE = 110
 
 
 def figure_format(path: str | Path) -> str:
@@ -79,7 +79,7 @@ def _style() -> Iterator[None]:
         mpl.rcdefaults()
         mpl.rcParams.update(
             {
-                "font.family": ["DejaVu Sans"],  # comes with matplotlib
+                "font.family": [FONT],
                 "svg.fonttype": "none",  # text stays text
                 "svg.hashsalt": "ident",
                 "pdf.fonttype": 42,
@@ -128,22 +128,8 @@ def _head_and_foot(figure: Figure, answer: Identification) -> None:
     what = f"{answer.spectrum}: {answer.kind} spectrum, {ranges}, {answer.minima} minima above the noise"
     beam = answer.settings.get("beam_kev")
     what += f", {beam:g} keV beam" if beam else ""
-    figure.text(LEFT, 0.958, shortened(title), fontsize=12, weight="bold", color=INK, parse_math=False)
-    figure.text(LEFT, 0.932, shortened(what, 190), fontsize=8, color=FAINT_INK, parse_math=False)
+    write_within(figure, LEFT, LIST_RIGHT, 0.958, title, fontsize=12, weight="bold", color=INK)
+    write_within(figure, LEFT, LIST_RIGHT, 0.932, what, fontsize=8, color=FAINT_INK)
     sha = f"; input SHA-256 {answer.sha256[:16]}…" if answer.sha256 else ""
     foot = f"made by {answer.edition}{sha}; at% are indicative; Auger data alone do not give oxidation states reliably"
-    figure.text(LEFT, 0.018, shortened(foot, 170), fontsize=6.5, color=FAINT_INK, parse_math=False)
-
-
-def shortened(text: str, longest: int = LONGEST_TITLE) -> str:
-    """Make a text from outside safe and short enough for one line."""
-    safe = _with_glyphs(printable(text))
-    return safe if len(safe) <= longest else f"{safe[: longest - 1]}…"
-
-
-def _with_glyphs(text: str) -> str:
-    """Write characters that the font does not have as escapes, rather than as empty boxes."""
-    from matplotlib.font_manager import FontProperties, findfont, get_font
-
-    known = get_font(findfont(FontProperties(family="DejaVu Sans"))).get_charmap()
-    return "".join(c if ord(c) in known else f"\\u{ord(c):04x}" for c in text)
+    write_within(figure, LEFT, LIST_RIGHT, 0.018, foot, fontsize=6.5, color=FAINT_INK)

@@ -17,7 +17,8 @@ if TYPE_CHECKING:
 
 SHARED_FROM = 0.1  # part of a minimum from which an element is named at it
 MOST_NAMES = 3
-STRONGEST, ORDINARY = 2.0, 0.0  # ranks: an element's strongest minimum is labelled whatever else must go
+# ranks: an element's strongest minimum is labelled whatever else must go, then what is no line or has no name
+STRONGEST, DOUBT, ORDINARY = 2.0, 1.6, 0.0
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -48,7 +49,7 @@ def labels_of(answer: Identification) -> tuple[Label, ...]:
         labels.append(_doubted(energy, doubtful.get(energy, []), energy in left))
     labels.extend(
         Label(energy_ev=note.energy_ev, text=(f"{note.what.split(' of ')[0]} {note.energy_ev:.0f} eV",),
-              role="artefact", rank=0.5)
+              role="artefact", rank=DOUBT)
         for note in answer.artefacts
     )  # fmt: skip
     return tuple(sorted(labels, key=lambda label: label.energy_ev))
@@ -103,9 +104,8 @@ def _doubted(energy_ev: float, claims: list[_Claim], unexplained: bool) -> Label
     if unexplained:
         text.insert(0, f"unexplained {energy_ev:.0f} eV")
     best = max((claim.assignment.probability for claim in claims), default=0.0)
-    return Label(
-        energy_ev=energy_ev, text=tuple(text), role="unexplained" if unexplained else "possible", rank=best
-    )  # fmt: skip
+    role: Role = "unexplained" if unexplained else "possible"
+    return Label(energy_ev=energy_ev, text=tuple(text), role=role, rank=DOUBT if unexplained else best)
 
 
 def fitting(labels: Sequence[Label], widths: Sequence[float], room: float) -> tuple[int, ...]:

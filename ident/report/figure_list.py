@@ -6,9 +6,9 @@ import textwrap
 from collections.abc import Iterator, Sequence
 from typing import TYPE_CHECKING, Any
 
-from .escape import printable
 from .figure_labels import Label
 from .figure_panels import SMALL_POINTS, TEXT_POINTS, marker
+from .figure_text import safe
 from .layout import probability
 from .palette import FAINT_INK, INK, MARKS, PREDICTED, RULE
 from .text_assign import deciding
@@ -36,7 +36,7 @@ def draw_list(axes: Axes, answer: Identification, labels: Sequence[Label], left_
 
 def _write(axes: Axes, x: float, y: float, text: str, **style: Any) -> None:
     chosen: dict[str, Any] = {"fontsize": TEXT_POINTS, "color": INK, "va": "center", "parse_math": False, **style}
-    axes.text(x, y, text, **chosen)
+    axes.text(x, y, safe(text), **chosen)
 
 
 def _assignments(axes: Axes, answer: Identification, y: float) -> float:
@@ -57,7 +57,7 @@ def _assignments(axes: Axes, answer: Identification, y: float) -> float:
         _row(axes, assignment, y)
         if assignment in named:
             y -= 0.8 * LINE
-            _write(axes, COLUMNS[1], y, deciding(assignment), fontsize=SMALL_POINTS, color=FAINT_INK)
+            _write(axes, COLUMNS[1], y, deciding(assignment), fontsize=0.92 * SMALL_POINTS, color=FAINT_INK)
             y -= 0.2 * LINE
     if len(doubtful) > MOST_DOUBTFUL:
         y -= LINE
@@ -102,7 +102,7 @@ def _legend(axes: Axes, labels: Sequence[Label], answer: Identification, y: floa
 
 def _notes(axes: Axes, answer: Identification, left_out: Sequence[Label], y: float) -> None:
     for head, text in _doubts(answer, left_out):
-        lines = textwrap.wrap(printable(text), WIDTH)
+        lines = textwrap.wrap(safe(text), WIDTH)
         if y - LINE * (len(lines) + 1) < 0.0:
             _write(axes, 0.0, max(y, 0.0), "more in the text answer", fontsize=SMALL_POINTS, color=FAINT_INK)
             return

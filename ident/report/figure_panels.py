@@ -13,6 +13,7 @@ from ..identification.predicted import background_slope
 from ..spectrum import FloatArray
 from .figure_axis import Stretch, merged, stretches_of, ticks_of, transforms
 from .figure_labels import Label, fitting, interleaved, spread
+from .figure_text import safe
 from .palette import FAINT_INK, GAP, INK, MARKS, PAPER, PREDICTED, RULE, Mark
 
 if TYPE_CHECKING:
@@ -43,7 +44,7 @@ def marker(mark: Mark, *, shared: bool = False) -> dict[str, Any]:
         "markeredgewidth": 0.4 if mark.shape == "cross" else 1.1,
         "markerfacecolor": PAPER if hollow else mark.colour,
         "markerfacecoloralt": PAPER,
-        "fillstyle": "left" if shared else "full",
+        "fillstyle": "left" if shared and mark.shape != "cross" else "full",
         "linestyle": "none",
     }
 
@@ -149,8 +150,8 @@ def _text(axes: Axes, label: Label) -> Text:
     """Write a label upright, for now anywhere."""
     faint = label.role in ("possible", "artefact")
     return axes.text(
-        0.5, 0.5, "\n".join(label.text), transform=None, rotation=90, ha="center", va="top", linespacing=1.05,
-        multialignment="right", fontsize=LABEL_POINTS, color=FAINT_INK if faint else INK, parse_math=False,
+        0.5, 0.5, "\n".join(safe(line) for line in label.text), transform=None, rotation=90, ha="center", va="top",
+        linespacing=1.05, multialignment="right", fontsize=LABEL_POINTS, color=FAINT_INK if faint else INK, parse_math=False,
         gid="minimum label", zorder=4,
     )  # fmt: skip
 
@@ -230,8 +231,7 @@ def _place(
     written = [at for at in kept if labels[at].text]
     feet = {at: _foot(curve, axes, label) for at, label in enumerate(labels)}
     for at, label in enumerate(labels):
-        if at in kept:
-            _mark(axes, feet[at], label)
+        _mark(axes, feet[at], label)
     hung = [texts[at] for at in written]
     tops = [feet[at] for at in written]
     centres = spread([foot[0] for foot in tops], [widths[at] for at in written], frame.x0, frame.x1)
@@ -241,7 +241,9 @@ def _place(
     ]
     for group in interleaved(extents):
         ends = extents[group[0]][0], max(extents[at][1] for at in group)
-        _hang(axes, [(hung[at], tops[at], centres[at]) for at in group], ends, outline)
+        marked = [foot for foot in feet.values() if ends[0] - 4.0 * point <= foot[0] <= ends[1] + 4.0 * point]
+        lowest = min(foot[1] for foot in marked) + 0.45 * CLEAR * point
+        _hang(axes, [(hung[at], tops[at], centres[at]) for at in group], _roof(outline, ends, lowest))
     return tuple(label for at, label in enumerate(labels) if at not in kept)
 
 
@@ -273,16 +275,15 @@ def _mark(axes: Axes, foot: tuple[float, float], label: Label) -> None:
               **marker(MARKS[label.role], shared=label.shared))  # fmt: skip
 
 
-def _hang(
-    axes: Axes,
-    labels: Sequence[tuple[Text, tuple[float, float], float]],
-    ends: tuple[float, float],
-    outline: FloatArray,
-) -> None:
-    """Hang labels (text, foot, centre) under what is drawn between two ends, and lead each minimum to its own."""
+def _roof(outline: FloatArray, ends: tuple[float, float], lowest: float) -> float:
+    """The lower edge of what is drawn between two ends; at most `lowest`; pixels."""
+    under = outline[(outline[:, 0] >= ends[0] - 1.0) & (outline[:, 0] <= ends[1] + 1.0), 1]
+    return min(float(np.min(under, initial=np.inf)), lowest)
+
+
+def _hang(axes: Axes, labels: Sequence[tuple[Text, tuple[float, float], float]], roof: float) -> None:
+    """Hang labels (text, foot, centre) at one height, and lead each minimum to its own."""
     point = _points(axes)
-    under = outline[(outline[:, 0] >= ends[0]) & (outline[:, 0] <= ends[1]), 1]
-    roof = min(float(np.min(under, initial=np.inf)), *(foot[1] + 0.45 * CLEAR * point for _, foot, _ in labels))
     slanting = any(abs(centre - foot[0]) > 1.0 for _, foot, centre in labels)
     elbow = roof - CLEAR * point
     top = elbow - (FAN * point if slanting else 0.0)

@@ -1,8 +1,8 @@
 """The colours and marks of figures and pages, decided here and nowhere else.
 
 No colour stands alone: every one has a mark of its own shape and a word. The colours keep apart in grey, since each
-has another lightness, and for every common kind of colour blindness, since blue, orange and violet differ in what
-those eyes see (hues after Okabe and Ito, "Color Universal Design", 2008; lightness ours).
+has another lightness, and for eyes that miss one kind of cone, since blue, orange and grey look different to all of
+them (hues after Okabe and Ito, "Color Universal Design", 2008; lightness ours).
 """
 
 from __future__ import annotations
@@ -32,5 +32,5 @@ MARKS: dict[Role, Mark] = {
     "likely": Mark(word="likely", colour="#0a68b0", shape="diamond"),
     "possible": Mark(word="possible", colour="#4592cc", shape="ring"),
     "unexplained": Mark(word="unexplained", colour="#cb5308", shape="cross"),
-    "artefact": Mark(word="artefact", colour="#5b2a6b", shape="square"),
+    "artefact": Mark(word="artefact", colour="#434343", shape="square"),
 }
