@@ -17,7 +17,7 @@ SURE_GAIN = 8.0
 # Heavy elements have weak lines below 400 eV that are in no table (common practice, no source).
 UNLISTED_ABOVE_Z, UNLISTED_EV = 36, (40.0, 400.0)
 UNLISTED_PRICE, UNLISTED_PART, UNLISTED_LOG_SIGMA = 3.2, 0.1, 0.5
-SECOND_STATE_PRICE, STATES_APART_EV = 3.5, 3.0  # an element and its oxide at the same time
+SECOND_STATE_PRICE, STATES_APART_EV = 2.0, 3.0  # an element and its oxide at the same time
 
 
 @dataclass(frozen=True, eq=False)
