@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from .files import edition, list_tables, reference_folder
 from .rows import (
+    REFERENCE_METALS,
     STRONG_HEIGHT,
     BindingEnergy,
     ChemicalShift,
@@ -14,6 +15,7 @@ from .rows import (
     PublishedLine,
     PublishedSensitivity,
     Rival,
+    ScaleLine,
     Sensitivity,
     ShiftPrior,
     Source,
@@ -30,12 +32,14 @@ from .views import (
     published_sensitivities,
     read_lines,
     rivals_of,
+    scale_lines,
     sensitivities,
     shift_range,
     sources,
 )
 
 __all__ = [
+    "REFERENCE_METALS",
     "STRONG_HEIGHT",
     "BindingEnergy",
     "ChemicalShift",
@@ -46,6 +50,7 @@ __all__ = [
     "PublishedLine",
     "PublishedSensitivity",
     "Rival",
+    "ScaleLine",
     "Sensitivity",
     "ShiftPrior",
     "Source",
@@ -63,6 +68,7 @@ __all__ = [
     "read_lines",
     "reference_folder",
     "rivals_of",
+    "scale_lines",
     "sensitivities",
     "shift_range",
     "sources",

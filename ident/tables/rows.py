@@ -12,6 +12,7 @@ from typing import ClassVar
 from .elements import AFTER_URANIUM, WITH_LINES
 
 STRONG_HEIGHT = 0.2  # of the element's strongest line: from here a line has rivals, is one, or decides
+REFERENCE_METALS = ("Al", "Cu", "Ag", "Au")  # by which energy scales are set
 KINDS = frozenset({"measured", "compiled", "calculated", "recalled"})
 
 
@@ -78,6 +79,37 @@ class PublishedLine:
         _need(self.status in {"read", "from memory"}, "status", "must be read or from memory")
         _need(self.confidence in {"normal", "low"}, "confidence", "must be normal or low")
         _need(self.sigma_ev > 0, "sigma_ev", "must be positive")
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class ScaleLine:
+    """A line of a reference metal by which the energy scale is set."""
+
+    unique_by: ClassVar[tuple[str, ...]] = ("symbol", "transition")
+
+    symbol: str
+    z: int
+    transition: str
+    energy_ev: float
+    sigma_ev: float
+    form: str  # direct or derivative
+    reference_level: str  # fermi or handbook
+    role: str  # sharp, low or minor: what the scale may rest on, see reference/README.md
+    relative_height: float  # strongest line of the metal is 1
+    status: str  # read or from memory
+    kind: str
+    state: str
+    source: str
+
+    def __post_init__(self) -> None:
+        _need(self.symbol in REFERENCE_METALS, "symbol", f"must be one of {', '.join(REFERENCE_METALS)}")
+        _need(20 <= self.energy_ev <= 3200, "energy_ev", "must lie between 20 and 3200 eV")
+        _need(self.sigma_ev > 0, "sigma_ev", "must be positive")
+        stated = (self.form, self.reference_level) in {("direct", "fermi"), ("derivative", "handbook")}
+        _need(stated, "form", "must be direct with reference_level fermi, or derivative with handbook")
+        _need(self.role in {"sharp", "low", "minor"}, "role", "must be sharp, low or minor")
+        _need(0 < self.relative_height <= 1, "relative_height", "must lie between 0 and 1")
+        _need(self.status in {"read", "from memory"}, "status", "must be read or from memory")
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)

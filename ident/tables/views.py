@@ -16,6 +16,7 @@ from .rows import (
     PublishedLine,
     PublishedSensitivity,
     Rival,
+    ScaleLine,
     Sensitivity,
     ShiftPrior,
     Source,
@@ -127,6 +128,12 @@ def rivals_of(symbol: str) -> tuple[Rival, ...]:
 def published_lines() -> tuple[PublishedLine, ...]:
     """Published line energies as their sources state them."""
     return read_rows("published_lines.csv", PublishedLine)
+
+
+@cache
+def scale_lines() -> tuple[ScaleLine, ...]:
+    """Lines of the reference metals by which an energy scale is set."""
+    return read_rows("scale_lines.csv", ScaleLine)
 
 
 @cache

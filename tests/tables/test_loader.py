@@ -27,6 +27,7 @@ KINDS = {
     "published_lines.csv": tables.PublishedLine,
     "published_sensitivities.csv": tables.PublishedSensitivity,
     "rivals.csv": tables.Rival,
+    "scale_lines.csv": tables.ScaleLine,
     "sensitivities.csv": tables.Sensitivity,
     "shift_priors.csv": tables.ShiftPrior,
     "sources.csv": tables.Source,

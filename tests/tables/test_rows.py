@@ -18,12 +18,13 @@ UNCERTAINTY = {
     "published_lines.csv": ("sigma_ev",),
     "published_sensitivities.csv": ("factor",),
     "rivals.csv": ("reach_ev",),
+    "scale_lines.csv": ("sigma_ev",),
     "sensitivities.csv": ("factor",),
     "transitions.csv": ("sigma_ev",),
 }
 STATE = (
     *("binding_energies.csv", "chemical_shifts.csv", "lines.csv", "materials.csv", "published_lines.csv"),
-    *("published_sensitivities.csv", "transitions.csv"),
+    *("published_sensitivities.csv", "scale_lines.csv", "transitions.csv"),
 )
 JUDGEMENTS = {"commonness.csv", "families.csv", "shift_priors.csv", "sources.csv"}  # no energies, or a range
 
