@@ -93,13 +93,14 @@ def draw_direct(axes: Axes, examination: Examination, labels: Sequence[Label]) -
 
 
 def _set_ordinate(axes: Axes, low: float, high: float, *, steep: bool, power: int) -> None:
-    """Limits and ticks; logarithmic with ticks at 1, 2 and 5 where the ordinate falls steeply."""
+    """Limits and ticks; logarithmic where the ordinate falls steeply."""
     if steep:
         axes.set_yscale("log")
         margin = (high / low) ** 0.06
         axes.set_ylim(low / margin, high * margin)
         decades = range(math.floor(math.log10(low)) - 1, math.ceil(math.log10(high)) + 1)
-        ticks = [digit * 10.0**decade for decade in decades for digit in (1, 2, 5)]
+        digits = (1, 2, 5) if high > 12.0 * low else (1, 1.5, 2, 3, 4, 5, 7)
+        ticks = [digit * 10.0**decade for decade in decades for digit in digits]
         axes.set_yticks([tick for tick in ticks if low / margin <= tick <= high * margin])
         axes.set_yticks([], minor=True)
     else:
@@ -151,8 +152,8 @@ def _text(axes: Axes, label: Label) -> Text:
     faint = label.role in ("possible", "artefact")
     return axes.text(
         0.5, 0.5, "\n".join(safe(line) for line in label.text), transform=None, rotation=90, ha="center", va="top",
-        linespacing=1.05, multialignment="right", fontsize=LABEL_POINTS, color=FAINT_INK if faint else INK, parse_math=False,
-        gid="minimum label", zorder=4,
+        linespacing=1.05, multialignment="right", fontsize=LABEL_POINTS, color=FAINT_INK if faint else INK,
+        parse_math=False, gid="minimum label", zorder=4,
     )  # fmt: skip
 
 
