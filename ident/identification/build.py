@@ -87,8 +87,7 @@ def examine(spectrum: Spectrum, settings: Settings | None = None, **settings_giv
         chosen = _with_beam(chosen, spectrum.header.beam_kev)
     resolution, notes = relative_resolution(spectrum, chosen)
     analysis = analyse(spectrum, resolution=resolution)
-    # without minima there is nothing to say of an element that was asked about
-    evidence = weigh(analysis, chosen if analysis.minima else replace(chosen, why_not=()))
+    evidence = weigh(analysis, chosen)
     return Examination(analysis=analysis, evidence=evidence, answer=assemble(analysis, evidence, chosen, notes))
 
 

@@ -63,8 +63,9 @@ def _asked(context: Context, symbol: str, limits: tuple[LimitEvidence, ...]) -> 
     usable = problem.patterns.real[element] & problem.patterns.firm[element] & problem.in_range(place)
     line = int(np.argmax(np.where(usable, problem.patterns.height[element], -1.0))) if np.any(usable) else None
     expected = float(place[line]) if line is not None else None
-    anything = expected is not None and problem.energy_ev.size > 0
-    near = problem.energy_ev[np.argmin(np.abs(problem.energy_ev - expected))] if anything else None
+    near = None
+    if expected is not None and problem.energy_ev.size:
+        near = problem.energy_ev[np.argmin(np.abs(problem.energy_ev - expected))]
     return AskedEvidence(
         element=symbol,
         probability=float(context.posterior.probability[element]),
