@@ -16,6 +16,7 @@ if TYPE_CHECKING:
     from ..identification import Assignment, Identification, LineNote
 
 SHARED_FROM = 0.1  # part of a minimum from which an element is named at it
+RIVAL_FROM = 0.25  # probability from which another element that rests on the minimum is named too
 MOST_NAMES = 3
 # ranks: an element's strongest minimum is labelled whatever else must go, then what is no line or has no name
 STRONGEST, DOUBT, ORDINARY = 2.0, 1.6, 0.0
@@ -44,7 +45,10 @@ def labels_of(answer: Identification) -> tuple[Label, ...]:
     claims = _claims([a for a in answer.assignments if a.verdict in ("present", "likely")])
     doubtful = _claims([a for a in answer.assignments if a.verdict == "possible"])
     left = {item.energy_ev for item in answer.unexplained}
-    labels = [_claimed(energy, found, energy in left) for energy, found in claims.items()]
+    labels = [
+        _claimed(energy, found, _rivals(doubtful.get(energy, [])), poorly=energy in left)
+        for energy, found in claims.items()
+    ]
     for energy in sorted((set(doubtful) | left) - set(claims)):
         labels.append(_doubted(energy, doubtful.get(energy, []), energy in left))
     labels.extend(
@@ -76,7 +80,14 @@ def _name(claim: _Claim) -> str:
     return f"{claim.assignment.element} {claim.line.transition}"
 
 
-def _claimed(energy_ev: float, claims: list[_Claim], poorly: bool) -> Label:
+def _rivals(claims: list[_Claim]) -> list[str]:
+    """The likeliest of the elements that rest on a minimum which others claim, where it is nearly as likely."""
+    resting = [c for c in claims if c.strongest and c.assignment.probability >= RIVAL_FROM]
+    likeliest = sorted(resting, key=lambda claim: -claim.assignment.probability)[:1]
+    return [f"or {_name(claim)}?" for claim in likeliest]
+
+
+def _claimed(energy_ev: float, claims: list[_Claim], rivals: list[str], *, poorly: bool) -> Label:
     """A minimum that elements which are present or likely claim; those whose strongest it is are never left out.
 
     `poorly`: the claim explains it no better than leaving it unexplained would.
@@ -90,7 +101,7 @@ def _claimed(energy_ev: float, claims: list[_Claim], poorly: bool) -> Label:
     strongest = any(claim.strongest for claim in claims)
     return Label(
         energy_ev=energy_ev,
-        text=(*text, *([f"+ {more} more"] if more else [])),
+        text=(*text, *([f"+ {more} more"] if more else []), *rivals),
         role="unexplained" if poorly else role,
         shared=len(claims) > 1,
         rank=surest + max(claim.line.relative_height for claim in claims) + (STRONGEST if strongest else ORDINARY),

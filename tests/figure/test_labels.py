@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from itertools import pairwise
 
 import numpy as np
@@ -10,7 +11,9 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.optimize import minimize
 
-from ident.report.figure_labels import Label, fitting, interleaved, spread
+from ident.report.figure_labels import Label, fitting, interleaved, labels_of, spread
+
+from .conftest import examined, invented
 
 places = st.lists(st.tuples(st.floats(0.0, 100.0), st.floats(0.5, 8.0)), min_size=1, max_size=12)
 
@@ -57,3 +60,12 @@ def test_labels_of_the_lowest_rank_go_first() -> None:
 
 def test_only_labels_that_reach_into_each_other_hang_together() -> None:
     assert interleaved([(0.0, 5.0), (4.0, 9.0), (10.0, 12.0), (11.0, 30.0), (29.0, 31.0)]) == ((0, 1), (2, 3, 4))
+
+
+def test_an_element_nearly_as_likely_is_named_where_it_rests_on_a_claimed_minimum() -> None:
+    base = examined("bracket_stain.csv").answer
+    claims = (invented("Zn", 0.7, [990.0, 922.0]), invented("Cu", 0.45, [922.0]), invented("Na", 0.1, [990.0]))
+    named = {label.energy_ev: label for label in labels_of(replace(base, assignments=claims, unexplained=()))}
+    assert named[922.0].text == ("Zn M2N23N45", "or Cu M1N23N45?")
+    assert named[990.0].text == ("Zn M1N23N45",)
+    assert not named[922.0].shared
