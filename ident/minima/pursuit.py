@@ -19,7 +19,7 @@ EDGE_EV = 8.0
 SHAPE_TOLERANCE = 0.07  # part of a strong line's depth that its unknown shape may leave beside it
 TOLERANCE_REACH = 18.0  # line widths beyond which nothing of that rest is left
 MOST = 110
-FEWEST, SPAN_OF_WIDTHS, MOST_EXCESS = 40, 40.0, 4.0
+FEWEST, SPAN_OF_WIDTHS, MOST_EXCESS, MOST_EXCESS_SHORT = 40, 40.0, 4.0, 1.8
 NORMAL_QUIET = 0.3853  # 30 % quantile of |x| for a standard normal
 
 
@@ -63,7 +63,8 @@ def filter_field(
         low_gain = np.array([differential.filter_gain(f[::-1]) for f in low_bank.filters])
         noise[:, :low_end] = low_gain[:, None] * differential.sigma[:low_end]
     allowed = _allowed(differential, bank, resolution)
-    excess = np.where(_telling(differential, bank, allowed), _excess(depth, noise, allowed), 1.0)
+    most = np.where(_telling(differential, bank, allowed), MOST_EXCESS, MOST_EXCESS_SHORT)
+    excess = np.minimum(_excess(depth, noise, allowed), most)
     noise = np.hypot(noise * excess[:, None], trust)
     return Field(bank=bank, low_bank=low_bank, low_end=low_end, depth=depth, noise=noise, allowed=allowed)
 
