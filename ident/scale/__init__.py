@@ -3,5 +3,23 @@
 from __future__ import annotations
 
 from .axis import CHARGING_FROM_EV, ELEMENT_SIGMA_EV, AxisFit, AxisPrior, fit_axis, usual_axis
+from .calibrate import calibrate, calibrate_scale, reference_metal
+from .calibration import CalibrationLine, Deviation, ScaleCalibration
+from .saved import load_scale, save_scale
 
-__all__ = ["CHARGING_FROM_EV", "ELEMENT_SIGMA_EV", "AxisFit", "AxisPrior", "fit_axis", "usual_axis"]
+__all__ = [
+    "CHARGING_FROM_EV",
+    "ELEMENT_SIGMA_EV",
+    "AxisFit",
+    "AxisPrior",
+    "CalibrationLine",
+    "Deviation",
+    "ScaleCalibration",
+    "calibrate",
+    "calibrate_scale",
+    "fit_axis",
+    "load_scale",
+    "reference_metal",
+    "save_scale",
+    "usual_axis",
+]

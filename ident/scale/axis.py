@@ -74,7 +74,8 @@ def fit_axis(
     design = np.zeros((count, 2 + elements))
     design[:, 0] = 1.0
     design[:, 1] = absolute_ev / 1000.0
-    design[np.arange(count), 2 + element] = 1.0
+    if elements:
+        design[np.arange(count), 2 + element] = 1.0
     unit = np.diag([1.0, 1e-3])
     known = np.zeros((2 + elements, 2 + elements))
     known[2:, 2:] = np.eye(elements) * ELEMENT_SIGMA_EV**-2
