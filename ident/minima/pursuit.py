@@ -19,7 +19,8 @@ EDGE_EV = 8.0
 SHAPE_TOLERANCE = 0.07  # part of a strong line's depth that its unknown shape may leave beside it
 TOLERANCE_REACH = 18.0  # line widths beyond which nothing of that rest is left
 MOST = 110
-FEWEST, SPAN_OF_WIDTHS, MOST_EXCESS, MOST_EXCESS_SHORT = 40, 40.0, 4.0, 1.8
+FEWEST_DIRECT, FEWEST_RECORDED = 100, 40
+SPAN_OF_WIDTHS, MOST_EXCESS, MOST_EXCESS_SHORT = 40.0, 4.0, 2.2
 NORMAL_QUIET = 0.3853  # 30 % quantile of |x| for a standard normal
 
 
@@ -64,7 +65,8 @@ def filter_field(
         noise[:, :low_end] = low_gain[:, None] * differential.sigma[:low_end]
     allowed = _allowed(differential, bank, resolution)
     most = np.where(_telling(differential, bank, allowed), MOST_EXCESS, MOST_EXCESS_SHORT)
-    excess = np.minimum(_excess(depth, noise, allowed), most)
+    fewest = FEWEST_RECORDED if differential.recorded else FEWEST_DIRECT
+    excess = np.minimum(_excess(depth, noise, allowed, fewest), most)
     noise = np.hypot(noise * excess[:, None], trust)
     return Field(bank=bank, low_bank=low_bank, low_end=low_end, depth=depth, noise=noise, allowed=allowed)
 
@@ -75,13 +77,13 @@ def _telling(differential: Differential, bank: Bank, allowed: BoolArray) -> Bool
     return span_ev > SPAN_OF_WIDTHS * bank.sigmas_ev
 
 
-def _excess(depth: FloatArray, noise: FloatArray, allowed: BoolArray) -> FloatArray:
+def _excess(depth: FloatArray, noise: FloatArray, allowed: BoolArray, fewest: int) -> FloatArray:
     """How much noisier each filter's output is than the noise model says, from where it is quiet; (w,), never below 1.
 
     The model may be wrong where data were treated in ways it does not know; the output itself tells.
     """
     inside = np.any(allowed, axis=0)
-    if np.count_nonzero(inside) < FEWEST:
+    if np.count_nonzero(inside) < fewest:
         return np.ones(depth.shape[0])
     quiet = np.quantile(np.abs(depth[:, inside] / noise[:, inside]), 0.3, axis=1) / NORMAL_QUIET
     return np.clip(quiet, 1.0, MOST_EXCESS)

@@ -218,6 +218,7 @@ DEMOS: tuple[Demo, ...] = (
         ),
         write=_csv,
         recording=replace(GOOD, gains=(2.0, 1.0, 1.0, 1.5, 1.5), signal_to_noise=70.0),
+        expect=("Cu", "Zn"),
     ),
 )
 
