@@ -9,19 +9,18 @@ from datetime import UTC, datetime
 import numpy as np
 
 from .. import tables
-from ..errors import InputError, SettingError
+from ..errors import SettingError
 from ..minima import Analysis, Minimum, analyse
-from ..names import name_of, symbol_from_name
-from ..spectrum import FloatArray, Spectrum, format_ranges
+from ..names import symbol_from_name
+from ..spectrum import FloatArray, Spectrum
 from .axis import SLOPE_SIGMA, AxisFit, AxisPrior, fit_axis, usual_axis
 from .calibration import CalibrationLine, Deviation, ScaleCalibration, judge
-from .pairing import FAR, LEAST_SIGNIFICANCE, Pair, Reference, first_axis, pair_lines, references
+from .pairing import FAR, LEAST_SIGNIFICANCE, Pair, first_axis, pair_lines
+from .refusals import refuse_feeble, refuse_out_of_range, refuse_without_lines
 
 LOOSE_EV = (1.5, 1.0, 0.7)  # how far the axis may still be off in each round of pairing
 OPEN_OFFSET_EV = 8.0  # the lines give the offset; this keeps the fit from drifting where the slope is open
 DETERMINED = 0.5  # part of the usual deviation of a slope from which the lines are said to give it
-REACH_EV = 12.0  # how far off an axis may be for a line to be looked for
-EDGE_EV = (4.0, 8.0)  # lower and upper end of a window, where a minimum is not found
 VACUUM_EV = -4.5  # an axis counted from the standard vacuum level reads so much less (IUPAC 2020)
 
 Spectra = Mapping[str, Spectrum | Sequence[Spectrum]]
@@ -87,15 +86,17 @@ def calibrate(analyses: Mapping[str, Sequence[Analysis]], *, date: str | None = 
         )
         for metal, several in analyses.items()
     }
-    _refuse_out_of_range(analyses)
+    refuse_out_of_range(analyses)
     offset_ev, slope = first_axis(minima)
     for loose_ev in LOOSE_EV:
         pairs = pair_lines(minima, offset_ev, slope, loose_ev)
-        _refuse_without_lines(analyses, pairs, offset_ev, slope)
+        refuse_without_lines(analyses, pairs, offset_ev, slope)
         widened = _widening(pairs)
         fit, used = _fit(pairs, widened)
         offset_ev, slope = fit.offset_ev, fit.slope
-    _refuse_without_lines(analyses, [p for p, good in zip(pairs, used, strict=True) if good], offset_ev, slope)
+    kept = [pair for pair, good in zip(pairs, used, strict=True) if good]
+    refuse_without_lines(analyses, kept, offset_ev, slope)
+    refuse_feeble(analyses, kept)
     return _calibration(analyses, pairs, used, fit, widened, date)
 
 
@@ -265,49 +266,3 @@ def _notes(pairs: Sequence[Pair], good: np.ndarray, fit: AxisFit, covariance: Fl
     if abs(there.deviation_ev - VACUUM_EV) < max(1.0, there.sigma_ev) and abs(fit.slope) < 1e-3:
         notes.append("the axis reads 4.5 eV too low or nearly so, as one does that counts from the vacuum level")
     return notes
-
-
-def _refuse_out_of_range(analyses: Mapping[str, Sequence[Analysis]]) -> None:
-    """Refuse a metal none of whose lines that a scale may rest on is scanned."""
-    for metal, several in analyses.items():
-        needed = [r for r in references(metal) if r.row.role != "minor"]
-        if not any(_scanned(several, r.minimum_ev, REACH_EV) for r in needed):
-            ranges = tuple(r for analysis in several for r in analysis.spectrum.ranges_ev)
-            raise InputError(
-                f"covers {format_ranges(ranges)}, which has none of the lines of {name_of(metal)} that a scale needs",
-                source=several[0].spectrum.name,
-                remedy=f"scan {_where(needed)}",
-            )
-
-
-def _refuse_without_lines(
-    analyses: Mapping[str, Sequence[Analysis]], pairs: Sequence[Pair], offset_ev: float, slope: float
-) -> None:
-    """Refuse a metal whose sharp lines, or else low ones, are in range and not there."""
-    for metal, several in analyses.items():
-        for role in ("sharp", "low"):
-            needed = [r for r in references(metal) if r.row.role == role]
-            met = any(p.reference.metal == metal and p.reference.row.role == role for p in pairs)
-            inside = [r for r in needed if _scanned(several, r.minimum_ev * (1.0 + slope) + offset_ev, -1.0)]
-            if met:
-                break
-            if inside or role == "low":
-                raise InputError(
-                    f"shows no {name_of(metal)}: nothing stands above the noise at {_where(inside or needed)}, on an "
-                    "axis up to 10 eV off",
-                    source=several[0].spectrum.name,
-                    remedy="scan it longer, sputter the metal clean, or leave it out",
-                )
-
-
-def _scanned(several: Sequence[Analysis], energy_ev: float, reach_ev: float) -> bool:
-    """Whether a minimum there is in a window: within reach of it, or clear of its ends when the reach is negative."""
-    low, high = (-EDGE_EV[0], EDGE_EV[1]) if reach_ev < 0 else (reach_ev, -reach_ev)
-    return any(
-        start - low <= energy_ev <= end - high for analysis in several for start, end in analysis.spectrum.ranges_ev
-    )
-
-
-def _where(lines: Sequence[Reference]) -> str:
-    """Lines and their energies in words."""
-    return " and ".join(f"{r.row.transition} ({r.minimum_ev:.0f} eV)" for r in lines)
