@@ -14,7 +14,7 @@ LEAST_HEIGHT = 0.05
 MERGED_EV = 1.5
 # A calculated line is not taken for stronger than this part of the strongest published one, less the more lines of
 # its shell have been published: what is not in the lists is weak.
-MOST_DERIVED = (0.5, 0.4, 0.25, 0.15)
+MOST_DERIVED = (0.5, 0.4, 0.25, 0.1)
 LEAST_LOG_SIGMA = 0.45
 LEAST_LISTED = 0.1  # what a list leaves out may be as strong as this
 PUBLISHED_LOG_SIGMA = 0.45
@@ -35,7 +35,7 @@ def weighted_lines(z: int, symbol: str) -> list[Weighted]:
     """Lines of an element, strongest first, the strongest of height one."""
     every = transitions_of(z, symbol)
     scale = _scales(every)
-    overall = median(scale.values()) if scale else 1.0
+    overall = median(value for key, value in scale.items() if len(key) == 1) if scale else 1.0
     count = Counter(t.vacancy[0] for t in every if t.published is not None)
     heights = [t.published.relative_height for t in every if t.published is not None and t.published.relative_height]
     weakest = max(min(heights, default=1.0), LEAST_LISTED)
@@ -50,7 +50,8 @@ def weighted_lines(z: int, symbol: str) -> list[Weighted]:
             if transition.one_band:
                 continue  # one valence band, one line
             most = min(MOST_DERIVED[min(count[transition.vacancy[0]], len(MOST_DERIVED) - 1)], weakest)
-            out.append(_unlisted(transition, scale[transition.vacancy[0]], learned().same_shell_log_sigma, most))
+            own = scale.get(transition.vacancy, scale[transition.vacancy[0]])
+            out.append(_unlisted(transition, own, learned().same_shell_log_sigma, most))
         else:
             most = min(MOST_DERIVED[0], weakest) if scale else float("inf")
             out.append(_unlisted(transition, overall, learned().other_shell_log_sigma, most))
@@ -83,13 +84,14 @@ def below(mean: float, sigma: float, most: float) -> tuple[float, float]:
 
 
 def _scales(every: tuple[Transition, ...]) -> dict[str, float]:
-    """Published height over computed strength, for every shell with published lines."""
+    """Published height over computed strength, for every shell and every vacancy with published lines."""
     ratios: dict[str, list[float]] = {}
     for transition in every:
         row = transition.published
         if row is not None and row.relative_height and transition.strength > 0:
-            ratios.setdefault(transition.vacancy[0], []).append(row.relative_height / transition.strength)
-    return {shell: median(values) for shell, values in ratios.items()}
+            for key in {transition.vacancy[0], transition.vacancy}:
+                ratios.setdefault(key, []).append(row.relative_height / transition.strength)
+    return {key: median(values) for key, values in ratios.items()}
 
 
 def _merged(lines: list[Weighted]) -> list[Weighted]:

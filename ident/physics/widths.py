@@ -13,7 +13,7 @@ import re
 from .lifetimes import level_width_ev
 
 # Full widths at half maximum in eV of the final states, satellites unresolved (common practice, no source).
-SP_BAND_EV, ANION_EV, MULTIPLET_EV, ATOM_LIKE_EV, OUTER_EV = 7.5, 6.0, 3.5, 3.2, 4.5
+SP_BAND_EV, ANION_EV, MULTIPLET_EV, ATOM_LIKE_EV, OUTER_EV = 7.5, 6.0, 3.5, 3.2, 4.0
 LEAST_BAND_EV, MOST_BAND_EV = 4.5, 6.0
 # Widths of d bands in eV, W. A. Harrison, Electronic Structure and the Properties of Solids (1980), from memory; of a
 # wide band that is not full, the occupied part counts: hence the limits.
@@ -22,7 +22,7 @@ D_BAND_EV = {
     42: 10.0, 43: 9.4, 44: 8.4, 45: 6.9, 46: 5.4, 47: 3.6, 71: 7.8, 72: 9.6, 73: 11.1, 74: 11.4, 75: 11.0, 76: 10.3,
     77: 8.7, 78: 7.0, 79: 5.3,
 }  # fmt: skip
-BAND_OF = {"M45": range(21, 29), "N45": range(39, 47), "O45": range(71, 79)}  # beyond: on one atom
+BAND_OF = {"M45": range(21, 29), "N45": range(39, 47), "O45": range(71, 80)}  # beyond: on one atom
 SATELLITE_EV = (6.0, 13.0)  # above the main line: lines of atoms with a second vacancy (common practice, no source)
 
 
@@ -64,7 +64,7 @@ def _final_width_ev(z: int, vacancy: str, parts: list[str]) -> float:
 def _banded(z: int, part: str) -> bool:
     """Whether a final level is a band whose holes do not stay on one atom."""
     if part == "V":
-        return not any(band.stop <= z < band.stop + 8 for band in BAND_OF.values())
+        return not any(band.stop <= z < band.stop + 7 for band in BAND_OF.values())
     return part in BAND_OF and z in BAND_OF[part]
 
 

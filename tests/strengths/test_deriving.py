@@ -91,6 +91,18 @@ def test_auger_yields_used_fall_with_atomic_number(name: str, first: int) -> Non
     assert parts[-1] < parts[0]
 
 
+def test_transfer_from_l2_in_3d_metals() -> None:
+    """xraylib is blank or near zero there (seen by eye); 0.3 to 0.5 for copper (Antonides et al. 1977, from memory)."""
+    with pytest.raises(ValueError, match="Invalid"):
+        xraylib.CosKronTransProb(26, xraylib.FL23_TRANS)
+    assert xraylib.CosKronTransProb(29, xraylib.FL23_TRANS) < 0.05
+    assert 0.3 < decay.transfer(29, "L")["L2", "L3"] < 0.5
+    heavy = [
+        decay.transfer(z, "L")["L2", "L3"] / xraylib.CosKronTransProb(z, xraylib.FL23_TRANS) for z in range(45, 90)
+    ]
+    assert np.median(heavy) == pytest.approx(1.0, abs=0.1)  # both libraries agree
+
+
 @pytest.mark.parametrize(("source", "target"), list(decay.M_TRANSFER))
 def test_m_transfer_carried_down_meets_the_library(source: str, target: str) -> None:
     """Median of xraylib at Z = 67 to 76 (M4 to M5: from 71), to 0.06, M1 to M2 to 0.1."""
