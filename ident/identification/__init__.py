@@ -6,6 +6,7 @@ The module is not called after its function, so that `ident.identify` is always 
 from __future__ import annotations
 
 from .answer import (
+    UNCALIBRATED,
     ArtefactNote,
     Assignment,
     Identification,
@@ -20,11 +21,13 @@ from .answer import (
     Verdict,
     WhyNot,
     minima_answer,
+    plain_data,
     verdict_of,
 )
 from .build import Examination, examine, identify, relative_resolution
 
 __all__ = [
+    "UNCALIBRATED",
     "ArtefactNote",
     "Assignment",
     "Examination",
@@ -42,6 +45,7 @@ __all__ = [
     "examine",
     "identify",
     "minima_answer",
+    "plain_data",
     "relative_resolution",
     "verdict_of",
 ]

@@ -12,8 +12,10 @@ if TYPE_CHECKING:
     import pandas as pd
 
     from ..minima import Analysis
+    from ..scale import ScaleCalibration
 
 INDICATIVE = "indicative: a surface alike throughout, sensitivities from the tables, no standard measured"
+UNCALIBRATED = "not calibrated: this spectrum, and how axes usually are"
 Verdict = Literal["present", "likely", "possible", "not supported"]
 SCHEMA = 1
 DIGITS = 6  # significant digits of numbers in JSON
@@ -37,6 +39,7 @@ class Scale:
     slope: float
     slope_sigma: float
     charging: Literal["yes", "no", "cannot tell"]
+    source: str = UNCALIBRATED  # what was known of the axis beforehand
     readings: tuple[tuple[float, float, float], ...] = ()  # handbook energy, how far too high it reads here, sd; eV
 
 
@@ -235,15 +238,21 @@ def plain_data(value: Any) -> Any:
     return value
 
 
-def minima_answer(analysis: Analysis) -> dict[str, Any]:
-    """Give the minima of a spectrum as plain data for JSON."""
+def minima_answer(analysis: Analysis, scale: ScaleCalibration | None = None) -> dict[str, Any]:
+    """Give the minima of a spectrum as plain data for JSON, with energies on a calibrated axis beside them."""
     spectrum = analysis.spectrum
+    minima = [plain_data(minimum) for minimum in analysis.minima]
+    if scale is not None:
+        for told, minimum in zip(minima, analysis.minima, strict=True):
+            corrected = scale.corrected(minimum.energy_ev, minimum.sigma_ev)
+            told["corrected_ev"], told["corrected_sigma_ev"] = plain_data(corrected)
     return {
         "spectrum": spectrum.name,
         "sha256": spectrum.sha256,
         "kind": spectrum.kind,
         "ranges_ev": plain_data(spectrum.ranges_ev),
-        "minima": [plain_data(minimum) for minimum in analysis.minima],
+        "scale": UNCALIBRATED if scale is None else scale.summary(),
+        "minima": minima,
         "artefacts": [plain_data(artefact) for artefact in analysis.artefacts],
         "warnings": list(analysis.warnings),
     }

@@ -18,6 +18,7 @@ from ..matching.settings import Settings
 from ..reasons import explain, explain_asked, state_to_tell
 from ..spectrum import Spectrum
 from .answer import (
+    UNCALIBRATED,
     Abundance,
     ArtefactNote,
     Assignment,
@@ -116,13 +117,14 @@ def assemble(
         slope=evidence.scale.slope,
         slope_sigma=evidence.scale.slope_sigma,
         charging=evidence.scale.charging,
+        source=UNCALIBRATED if settings.scale is None else settings.scale.summary(),
         readings=evidence.scale.readings,
     )
     return Identification(
         spectrum=spectrum.name,
         sha256=spectrum.sha256,
         edition=edition(),
-        settings=asdict(settings),
+        settings=_told(settings),
         header=asdict(spectrum.header),
         kind=spectrum.kind,
         ranges_ev=spectrum.ranges_ev,
@@ -149,6 +151,16 @@ def assemble(
         cautions=cautions_for(assignments, scale),
         warnings=(*analysis.warnings, *notes),
     )
+
+
+def _told(settings: Settings) -> dict[str, Any]:
+    """Settings as plain data; of a calibration, what it says and which it is."""
+    told = asdict(replace(settings, scale=None))
+    scale = settings.scale
+    if scale is not None:
+        names = ("metals", "date", "offset_ev", "offset_sigma_ev", "slope", "slope_sigma", "within_3_ev")
+        told["scale"] = {name: getattr(scale, name) for name in names}
+    return told
 
 
 def edition() -> str:

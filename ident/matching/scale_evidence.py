@@ -26,10 +26,16 @@ def scale_evidence(problem: Problem, solution: Solution) -> ScaleEvidence:
         offset_sigma_ev=offset_sigma,
         slope=fit.slope,
         slope_sigma=math.sqrt(float(fit.covariance[1, 1])),
-        charging=_charging(fit.offset_ev, offset_sigma, used),
+        charging=_charging(fit.offset_ev - _expected_offset_ev(problem), offset_sigma, used),
         lines_used=used,
         readings=tuple(_reading(fit, energy_ev) for energy_ev in _places(problem)) if used else (),
     )
+
+
+def _expected_offset_ev(problem: Problem) -> float:
+    """Offset that the axis has when nothing charges."""
+    calibration = problem.settings.scale
+    return 0.0 if calibration is None else calibration.prior().offset_ev
 
 
 def _places(problem: Problem) -> list[float]:

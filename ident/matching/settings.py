@@ -7,6 +7,7 @@ from dataclasses import dataclass
 
 from ..errors import SettingError
 from ..names import symbol_from_name
+from ..scale import ScaleCalibration
 
 BEAM_KEV = (0.1, 50.0)  # what electron guns for this job give
 RESOLUTION = (1e-5, 0.05)
@@ -34,6 +35,7 @@ class Settings:
     why_not: tuple[str, ...] = ()  # symbols to say of why they are not named; they change no judgement
     resolution: float | None = None  # relative, 0.005 for 0.5 %
     resolution_ev: float | None = None  # absolute, eV
+    scale: ScaleCalibration | None = None  # calibration of the axis, instead of what axes usually are
 
     def __post_init__(self) -> None:
         _check("beam_kev", self.beam_kev, BEAM_KEV, "keV")
@@ -41,6 +43,8 @@ class Settings:
         _check("resolution_ev", self.resolution_ev, RESOLUTION_EV, "eV")
         if self.resolution is not None and self.resolution_ev is not None:
             raise SettingError("a resolution is either relative or in eV, not both; give one of them")
+        if self.scale is not None and not isinstance(self.scale, ScaleCalibration):
+            raise SettingError("scale is a calibration, such as calibrate_scale or load_scale give")
         object.__setattr__(self, "expect", _symbols("expect", self.expect))
         object.__setattr__(self, "rule_out", _symbols("rule_out", self.rule_out))
         object.__setattr__(self, "why_not", _symbols("why_not", self.why_not))

@@ -7,11 +7,13 @@ from dataclasses import dataclass
 import numpy as np
 
 from ..scale import AxisFit, AxisPrior, fit_axis, usual_axis
+from ..spectrum import FloatArray
 from .options import Axis, Options, build_options
 from .problem import Problem
 from .search import search, sums_of, with_known_minors
 
 STARTS_EV = (-7.0, -3.5, 0.0, 3.5, 7.0)
+CALIBRATED_STARTS_EV = (-1.5, 0.0, 1.5)
 START_SIGMA_EV = 2.0
 FITTED_SIGMA_EV = 0.4
 # The tables' heights are of E N(E), as a cylindrical mirror records it; N(E) tilts them by the power -1 of energy.
@@ -37,7 +39,7 @@ class Solution:
 def solve(problem: Problem) -> list[Solution]:
     """Search from several axes, settle the promising ones, and give the explanations, cheapest first."""
     prior = axis_prior(problem)
-    starts = np.arange(-60.0, 61.0, 4.0) if problem.settings.insulator else np.array(STARTS_EV)
+    starts = _starts_ev(problem)
     tried = []
     for tilt in TILT_CENTRES[problem.ordinate]:
         for start in starts:
@@ -52,6 +54,13 @@ def solve(problem: Problem) -> list[Solution]:
         if cost <= tried[0][0] + WORTH_SETTLING:
             settled.append(_settle(problem, axis, options, members, tilt_centre=axis.tilt))
     return _distinct(sorted(settled, key=lambda solution: solution.cost))
+
+
+def _starts_ev(problem: Problem) -> FloatArray:
+    """Offsets from the prior's to search from; few where a calibration says where the axis is."""
+    if problem.settings.insulator:
+        return np.arange(-60.0, 61.0, 4.0)
+    return np.array(STARTS_EV if problem.settings.scale is None else CALIBRATED_STARTS_EV)
 
 
 def _distinct(solutions: list[Solution]) -> list[Solution]:
@@ -71,8 +80,9 @@ def _distinct(solutions: list[Solution]) -> list[Solution]:
 
 def axis_prior(problem: Problem) -> AxisPrior:
     """What is known of the axis beforehand."""
-    usual = usual_axis()
-    return usual.of_insulator() if problem.settings.insulator else usual
+    calibration = problem.settings.scale
+    prior = usual_axis() if calibration is None else calibration.prior()
+    return prior.of_insulator() if problem.settings.insulator else prior
 
 
 def _settle(

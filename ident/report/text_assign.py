@@ -94,6 +94,8 @@ _SIDES = ("for", "against", "untested")
 
 
 def _axis(answer: Identification) -> Iterator[str]:
+    from ..identification import UNCALIBRATED
+
     scale = answer.scale
     if not scale.readings:
         yield _note("axis", "not known: no line to judge it by")
@@ -102,7 +104,8 @@ def _axis(answer: Identification) -> Iterator[str]:
         f"{abs(off):.1f} +- {sigma:.1f} eV too {'high' if off >= 0 else 'low'} at {at:.0f} eV"
         for at, off, sigma in scale.readings
     ]
-    yield _note("axis", f"reads {' and '.join(told)}, against handbook energies; charging: {scale.charging}")
+    said = f"reads {' and '.join(told)}, against handbook energies; charging: {scale.charging}"
+    yield _note("axis", said if scale.source == UNCALIBRATED else f"{said}; {scale.source}")
 
 
 def _doubts(answer: Identification) -> Iterator[str]:

@@ -21,6 +21,7 @@ from .refusals import refuse_feeble, refuse_out_of_range, refuse_without_lines
 LOOSE_EV = (1.5, 1.0, 0.7)  # how far the axis may still be off in each round of pairing
 OPEN_OFFSET_EV = 8.0  # the lines give the offset; this keeps the fit from drifting where the slope is open
 DETERMINED = 0.5  # part of the usual deviation of a slope from which the lines are said to give it
+STRANGE = 2.0  # usual deviations of a slope
 VACUUM_EV = -4.5  # an axis counted from the standard vacuum level reads so much less (IUPAC 2020)
 
 Spectra = Mapping[str, Spectrum | Sequence[Spectrum]]
@@ -247,6 +248,11 @@ def _notes(pairs: Sequence[Pair], good: np.ndarray, fit: AxisFit, covariance: Fl
         notes.append(
             "these lines hardly give the slope, so that it is mostly what is usual; add a metal far away in energy "
             "(copper and gold, or silver and aluminium)"
+        )
+    if abs(fit.slope - usual_axis().slope) > STRANGE * SLOPE_SIGMA:
+        notes.append(
+            f"a slope of {fit.slope:+.2%} is more than axes usually have: make sure that the metals are clean and were "
+            "recorded alike"
         )
     if not sharp:
         notes.append(

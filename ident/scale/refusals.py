@@ -12,8 +12,9 @@ from .pairing import Pair, Reference, references
 
 REACH_EV = 12.0  # how far off an axis may be for a line to be looked for
 EDGE_EV = (4.0, 8.0)  # lower and upper end of a window, where a minimum is not found
-# A sharp line of a clean metal is at least so deep, over its relative height, against the deepest minimum above 100 eV.
-FEEBLE, LOW_EV = 0.1, 100.0
+# A line of a clean metal is at least so deep, over its relative height, against the deepest minimum: a sharp line
+# against those above 100 eV, a low one that is all there is against any.
+FEEBLE, LOW_EV = {"sharp": 0.1, "low": 0.3}, 100.0
 
 
 def refuse_out_of_range(analyses: Mapping[str, Sequence[Analysis]]) -> None:
@@ -50,11 +51,14 @@ def refuse_without_lines(
 
 
 def refuse_feeble(analyses: Mapping[str, Sequence[Analysis]], pairs: Sequence[Pair]) -> None:
-    """Refuse a metal whose sharp lines are much weaker than what else is there: a neighbour's structure, or dirt."""
+    """Refuse a metal whose lines are much weaker than what else is there: a neighbour's structure, or dirt."""
     for metal, several in analyses.items():
-        sharp = [p for p in pairs if p.reference.metal == metal and p.reference.row.role == "sharp"]
-        if sharp and not any(_leads(pair, analysis) for pair in sharp for analysis in several):
-            best = max(sharp, key=lambda pair: pair.minimum.depth)
+        own = [p for p in pairs if p.reference.metal == metal]
+        telling = [p for p in own if p.reference.row.role == "sharp"] or [
+            p for p in own if p.reference.row.role == "low"
+        ]
+        if not any(_leads(pair, analysis) for pair in telling for analysis in several):
+            best = max(telling, key=lambda pair: pair.minimum.depth)
             raise InputError(
                 f"shows hardly any {name_of(metal)}: the minimum at {best.minimum.energy_ev:.0f} eV is far weaker than "
                 "those of something else",
@@ -67,8 +71,9 @@ def _leads(pair: Pair, analysis: Analysis) -> bool:
     """Whether a line is about as deep as it is when nothing but its metal is there."""
     if pair.minimum not in analysis.minima:
         return False
-    deepest = max(m.depth for m in analysis.minima if m.energy_ev > LOW_EV)
-    return pair.minimum.depth >= FEEBLE * pair.reference.row.relative_height * deepest
+    row = pair.reference.row
+    rivals = [m.depth for m in analysis.minima if row.role == "low" or m.energy_ev > LOW_EV]
+    return pair.minimum.depth >= FEEBLE[row.role] * row.relative_height * max(rivals)
 
 
 def _scanned(several: Sequence[Analysis], energy_ev: float, reach_ev: float) -> bool:
