@@ -66,6 +66,7 @@ def settings_of(given: dict[str, Any]) -> Settings:
         why_not=given["why_not"],
         resolution=number if unit == "relative" else None,
         resolution_ev=number if unit == "ev" else None,
+        scale=given["scale"],
     )
 
 

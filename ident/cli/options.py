@@ -10,6 +10,7 @@ import click
 
 if TYPE_CHECKING:
     from ..physics.scales import EnergyScale
+    from ..scale import ScaleCalibration
 
 Function = TypeVar("Function", bound=Callable[..., Any])
 
@@ -43,6 +44,15 @@ def _names(_: click.Context, __: click.Parameter, value: Iterable[str]) -> tuple
     return tuple(name for text in value for name in re.split(r"[,;\s]+", text) if name)
 
 
+def _scale(_: click.Context, __: click.Parameter, value: str | None) -> ScaleCalibration | None:
+    """Read a scale file, when one is given."""
+    if value is None:
+        return None
+    from ..scale import load_scale
+
+    return load_scale(value)
+
+
 format_option = click.option(
     "--format",
     "form",
@@ -58,7 +68,7 @@ figure_option = click.option(
     help="Draw the answer: a .png, .svg or .pdf, or a folder for one .png a spectrum.",
 )
 
-READING = (
+RECORDED = (
     click.option(
         "--kind",
         type=click.Choice(["auto", "direct", "derivative"]),
@@ -83,6 +93,12 @@ READING = (
     ),
     click.option("--quiet", is_flag=True, help="No progress and no warnings on standard error."),
 )
+
+scale_option = click.option(
+    "--scale", callback=_scale, metavar="FILE", help="Calibration of the axis, from ident scale --save."
+)
+
+READING = (*RECORDED, scale_option)
 
 KNOWING = (
     click.option("--beam", type=float, metavar="KEV", help="Primary energy in keV, when the file does not say it."),

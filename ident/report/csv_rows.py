@@ -14,6 +14,7 @@ if TYPE_CHECKING:
     from ..identification import Assignment, Identification
     from ..lookup import Candidate, ElementCard
     from ..minima import Analysis
+    from ..scale import ScaleCalibration
 
 ASSIGN_COLUMNS = (
     *("spectrum", "sample", "element", "z", "probability", "verdict", "lines_met", "lines_missing", "state"),
@@ -31,6 +32,7 @@ ELEMENT_COLUMNS = (
 MINIMA_COLUMNS = (
     *("spectrum", "energy_ev", "sigma_ev", "depth", "peak_to_peak", "width_ev", "significance"),
 )
+CORRECTED_COLUMNS = ("corrected_ev", "corrected_sigma_ev")
 
 
 def render_rows(rows: Iterable[Sequence[Any]]) -> str:
@@ -103,9 +105,12 @@ def element_rows(card: ElementCard) -> list[tuple[Any, ...]]:
     ]
 
 
-def minima_rows(analysis: Analysis) -> list[tuple[Any, ...]]:
-    """One row per minimum, in the order of `MINIMA_COLUMNS`."""
+def minima_rows(analysis: Analysis, scale: ScaleCalibration | None = None) -> list[tuple[Any, ...]]:
+    """One row per minimum, in the order of `MINIMA_COLUMNS`, and of `CORRECTED_COLUMNS` with a calibration."""
     return [
-        (analysis.spectrum.name, m.energy_ev, m.sigma_ev, m.depth, m.peak_to_peak, m.width_ev, m.significance)
+        (
+            *(analysis.spectrum.name, m.energy_ev, m.sigma_ev, m.depth, m.peak_to_peak, m.width_ev, m.significance),
+            *(() if scale is None else scale.corrected(m.energy_ev, m.sigma_ev)),
+        )
         for m in analysis.minima
     ]

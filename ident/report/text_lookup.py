@@ -13,6 +13,7 @@ if TYPE_CHECKING:
     from ..lookup import Candidate, CardLine, ElementCard
     from ..minima import Analysis
     from ..physics.scales import EnergyScale
+    from ..scale import ScaleCalibration
     from ..tables.files import TableFile
 
 MOST_RIVALS = 3
@@ -124,8 +125,8 @@ def _escape(card: ElementCard) -> list[str]:
     return [hanging("depth", told), *(hanging("", text) for text in escape.formulas if text.split(" ")[0] in used)]
 
 
-def render_minima(analysis: Analysis) -> str:
-    """Write the minima of a spectrum."""
+def render_minima(analysis: Analysis, scale: ScaleCalibration | None = None) -> str:
+    """Write the minima of a spectrum, with energies on a calibrated axis beside them."""
     spectrum = analysis.spectrum
     ranges = ", ".join(f"{low:.0f} to {high:.0f} eV" for low, high in spectrum.ranges_ev)
     parts = [heading(printable(spectrum.name)), f"  {spectrum.kind} spectrum, {ranges}"]
@@ -137,17 +138,26 @@ def render_minima(analysis: Analysis) -> str:
             f"{m.peak_to_peak:.4g}",
             f"{m.width_ev:.1f}",
             f"{m.significance:.1f}",
+            *(() if scale is None else (_plus_minus(scale.corrected(m.energy_ev, m.sigma_ev)),)),
         )
         for m in analysis.minima
     ]
     if rows:
-        head = ("minimum (eV)", "+- eV", "depth", "peak to peak", "width (eV)", "over noise")
-        parts += columns(head, rows, right=range(6))
+        head: tuple[str, ...] = ("minimum (eV)", "+- eV", "depth", "peak to peak", "width (eV)", "over noise")
+        head += () if scale is None else ("corrected (eV)",)
+        parts += columns(head, rows, right=range(len(head)))
     else:
         parts.append("  nothing stands above the noise")
+    if scale is not None:
+        said = f"{scale.summary()}: minima above the Fermi level as an analyser of 0.5 % would show them"
+        parts.append(hanging("corrected", said))
     parts += [hanging("artefact", f"{a.energy_ev:.1f} eV, {a.what}") for a in analysis.artefacts]
     parts += [hanging("warning", printable(text)) for text in analysis.warnings]
     return printable_lines(parts) + "\n\n"
+
+
+def _plus_minus(pair: tuple[float, float]) -> str:
+    return f"{pair[0]:.1f} +- {pair[1]:.1f}"
 
 
 def render_table_list(files: Sequence[TableFile], edition: str) -> str:
