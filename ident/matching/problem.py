@@ -21,7 +21,7 @@ SATELLITE_PART, SATELLITE_NEAR_EV = 0.12, 11.0  # satellites above it
 SATELLITE_FAR_PART, SATELLITE_REACH_EV = 0.04, 35.0  # and steps
 CLEAR_OF_THEM = 5.3  # times as deep as that, a minimum asks for an element in full
 SPLIT_WIDTHS, SPLIT_PRICE = 0.7, 3.0
-ELEMENT_PRICE, COMMONNESS_WEIGHT, EVEN_PRICE = 2.1, 0.9, 6.0
+ELEMENT_PRICE, COMMONNESS_WEIGHT, EVEN_PRICE = 2.3, 0.9, 6.0
 EXPECTED_BONUS, EXPECTED_PRICE = 2.5, 0.6  # what is expected is as likely as carbon and oxygen, however rare it is
 USUAL_RESOLUTION = 0.0055
 

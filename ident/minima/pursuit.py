@@ -64,7 +64,8 @@ def filter_field(
         low_gain = np.array([differential.filter_gain(f[::-1]) for f in low_bank.filters])
         noise[:, :low_end] = low_gain[:, None] * differential.sigma[:low_end]
     allowed = _allowed(differential, bank, resolution)
-    most = np.where(_telling(differential, bank, allowed), MOST_EXCESS, MOST_EXCESS_SHORT)
+    telling = _telling(differential, bank, allowed) | differential.recorded  # recorded noise is known least
+    most = np.where(telling, MOST_EXCESS, MOST_EXCESS_SHORT)
     fewest = FEWEST_RECORDED if differential.recorded else FEWEST_DIRECT
     excess = np.minimum(_excess(depth, noise, allowed, fewest), most)
     noise = np.hypot(noise * excess[:, None], trust)
