@@ -92,7 +92,7 @@ def test_auger_yields_used_fall_with_atomic_number(name: str, first: int) -> Non
 
 
 def test_transfer_from_l2_in_3d_metals() -> None:
-    """xraylib is blank or near zero there (seen by eye); 0.3 to 0.5 for copper (Antonides et al. 1977, from memory)."""
+    """Blank or near zero in xraylib (seen by eye); 0.3 to 0.5 for copper (Antonides et al. 1977, from memory)."""
     with pytest.raises(ValueError, match="Invalid"):
         xraylib.CosKronTransProb(26, xraylib.FL23_TRANS)
     assert xraylib.CosKronTransProb(29, xraylib.FL23_TRANS) < 0.05
