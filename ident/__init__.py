@@ -18,6 +18,7 @@ if TYPE_CHECKING:
     from .matching.settings import Settings
     from .readers import read_spectra, read_spectrum
     from .rechecking import Recheck, read_labels, recheck
+    from .scale import ScaleCalibration, calibrate_scale, load_scale, save_scale
     from .spectrum import Spectrum
 
 __version__ = "0.1.0"
@@ -26,31 +27,39 @@ __all__ = [
     "IdentError",
     "Identification",
     "Recheck",
+    "ScaleCalibration",
     "Settings",
     "Spectrum",
     "__version__",
+    "calibrate_scale",
     "candidates_at",
     "element_card",
     "identify",
+    "load_scale",
     "read_labels",
     "read_spectra",
     "read_spectrum",
     "recheck",
+    "save_scale",
 ]
 
 _HOMES = {
     "IdentError": "errors",
     "Identification": "identification",
     "Recheck": "rechecking",
+    "ScaleCalibration": "scale",
     "Settings": "matching.settings",
     "Spectrum": "spectrum",
+    "calibrate_scale": "scale",
     "candidates_at": "lookup",
     "element_card": "lookup",
     "identify": "identification",
+    "load_scale": "scale",
     "read_labels": "rechecking",
     "read_spectra": "readers",
     "read_spectrum": "readers",
     "recheck": "rechecking",
+    "save_scale": "scale",
 }
 
 

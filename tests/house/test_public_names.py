@@ -12,16 +12,20 @@ PUBLIC = {
     "IdentError",
     "Identification",
     "Recheck",
+    "ScaleCalibration",
     "Settings",
     "Spectrum",
     "__version__",
+    "calibrate_scale",
     "candidates_at",
     "element_card",
     "identify",
+    "load_scale",
     "read_spectra",
     "read_labels",
     "read_spectrum",
     "recheck",
+    "save_scale",
 }
 HEAVY = ("numpy", "scipy", "pandas", "mendeleev", "matplotlib", "xraylib", "xraydb")
 
