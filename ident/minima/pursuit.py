@@ -20,6 +20,7 @@ SHAPE_TOLERANCE = 0.07  # part of a strong line's depth that its unknown shape m
 TOLERANCE_REACH = 18.0  # line widths beyond which nothing of that rest is left
 MOST = 110
 FEWEST_DIRECT, FEWEST_RECORDED = 100, 40
+LEAST_EXCESS_RECORDED = 1.12
 SPAN_OF_WIDTHS, MOST_EXCESS, MOST_EXCESS_SHORT = 40.0, 4.0, 2.2
 NORMAL_QUIET = 0.3853  # 30 % quantile of |x| for a standard normal
 
@@ -67,7 +68,8 @@ def filter_field(
     telling = _telling(differential, bank, allowed) | differential.recorded  # recorded noise is known least
     most = np.where(telling, MOST_EXCESS, MOST_EXCESS_SHORT)
     fewest = FEWEST_RECORDED if differential.recorded else FEWEST_DIRECT
-    excess = np.minimum(_excess(depth, noise, allowed, fewest), most)
+    least = LEAST_EXCESS_RECORDED if differential.recorded else 1.0
+    excess = np.clip(_excess(depth, noise, allowed, fewest), least, most)
     noise = np.hypot(noise * excess[:, None], trust)
     return Field(bank=bank, low_bank=low_bank, low_end=low_end, depth=depth, noise=noise, allowed=allowed)
 
