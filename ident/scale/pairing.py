@@ -88,12 +88,19 @@ def first_axis(minima: Mapping[str, Sequence[Minimum]]) -> tuple[float, float]:
             continue
         for reference in references(metal):
             fit = worth * _clear_of_oxide(metal, found)
-            here = reference.minimum_ev * (1.0 + slope) + offset
+            here = _expected_ev(reference, found) * (1.0 + slope[..., None]) + offset[..., None]
             sigma = np.hypot(min(reference.sigma_ev, 2.0), GRID_EV)
-            near = np.exp(-0.5 * ((energy - here[..., None]) / sigma) ** 2) * fit
+            near = np.exp(-0.5 * ((energy - here) / sigma) ** 2) * fit
             score = score + WORTH[reference.row.role] * near.max(axis=-1)
     best = np.unravel_index(int(np.argmax(score)), score.shape)
     return float(offset[best]), float(slope[best])
+
+
+def _expected_ev(reference: Reference, found: Sequence[Minimum]) -> FloatArray:
+    """Where the line should stand for each minimum that may be it: further above the maximum the wider it is; eV."""
+    if reference.maximum_ev is None:
+        return np.full(len(found), reference.minimum_ev)
+    return reference.maximum_ev + np.array([m.width_ev for m in found]) / FWHM_PER_SIGMA
 
 
 def _worth(found: Sequence[Minimum]) -> tuple[FloatArray, FloatArray]:
@@ -126,7 +133,7 @@ def pair_lines(minima: Mapping[str, Sequence[Minimum]], offset_ev: float, slope:
         fit = worth * _clear_of_oxide(metal, found)
         taken: set[int] = set()
         for reference in sorted(references(metal), key=lambda r: r.sigma_ev):
-            here = reference.minimum_ev * (1.0 + slope) + offset_ev
+            here = _expected_ev(reference, found) * (1.0 + slope) + offset_ev
             away = np.abs(energy - here) / np.hypot(min(reference.sigma_ev, 2.5), loose_ev)
             close = [int(j) for j in np.flatnonzero((away < FAR) & (fit > 0.1)) if int(j) not in taken]
             if close:
