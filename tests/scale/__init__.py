@@ -1,0 +1,1 @@
+"""Tests of energy scales: calibration with reference metals."""
