@@ -59,6 +59,8 @@ def _checked(plain: dict[str, Any]) -> ScaleCalibration:
     for name in ("offset_sigma_ev", "slope_sigma", "chi2"):
         values[name] = _number(name, values[name], 0.0, math.inf)
     for name in ("metals", "spectra", "notes"):
+        if not isinstance(values[name], list):
+            raise ValueError(f"{name} is {values[name]!r}, no list")
         values[name] = tuple(_text(name, item) for item in values[name])
     for name in ("date", "edition", "deciding", "slope_from", "within_3_ev"):
         values[name] = _text(name, values[name])

@@ -70,6 +70,7 @@ DAMAGE = {
     "another schema": (lambda text: text.replace('"schema": 1', '"schema": 7'), "schema 7"),
     "a key gone": (lambda text: text.replace('"slope_sigma"', '"slope_sigm"'), "slope_sigma"),
     "text for a number": (lambda text: text.replace('"slope": ', '"slope": "0.1", "was": '), "slope"),
+    "text for a list": (lambda text: text.replace('"metals": ', '"metals": "Cu", "was": '), "metals"),
     "no number": (lambda text: text.replace('"chi2": ', '"chi2": NaN, "was": '), "chi2"),
     "out of the question": (lambda text: text.replace('"offset_ev": -', '"offset_ev": 700, "was": -'), "offset_ev"),
 }
