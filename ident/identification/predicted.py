@@ -38,7 +38,7 @@ def predict_curves(examination: Examination, elements: Collection[str]) -> tuple
         NaN where no line of these elements is near. Line shapes are those of the search, widths natural and
         instrumental in quadrature: depths are good to about a factor 1.6, as the tables are.
     """
-    from ..minima.shapes import ASYMMETRY, line_shape
+    from ..signal.lines import ASYMMETRY, line_shape
 
     analysis = examination.analysis
     resolution = examination.answer.settings.get("resolution") or USUAL_RESOLUTION

@@ -13,7 +13,6 @@ from ..signal.widths import FWHM_PER_SIGMA, usual_sigma_ev
 from ..spectrum import FloatArray, Spectrum
 from .pursuit import Feature, filter_field, pursue
 from .refine import prune, refine, rendered
-from .shapes import ASYMMETRY
 
 THRESHOLD = 3.9  # noise widths
 FEWEST_POINTS = 20
@@ -33,7 +32,7 @@ class Minimum:
     sigma_ev: float  # standard deviation of the energy
     depth: float  # below the local level, ordinate per eV; always positive
     peak_to_peak: float  # from the positive lobe below to the minimum
-    width_ev: float  # full width at half maximum of the direct line behind it
+    width_ev: float  # full width at half maximum of the direct line behind it, were it symmetric as above its maximum
     significance: float  # depth over the noise of that depth
     window: int  # which window it was found in, from 0
 
@@ -127,7 +126,7 @@ def _search(differential: Differential, number: int, resolution: float | None) -
         kept = tuple(feature for feature, _ in refined)
         more = pursue(differential, rest, field, threshold=THRESHOLD, part=part, known=kept)
         if more:
-            refined = _refined(differential, derivative, kept + more, refined)
+            refined = _refined(differential, derivative, kept + more, refined, resolution)
             rest = derivative - rendered(differential.energy_ev, tuple(feature for feature, _ in refined))
     usual = usual_sigma_ev(differential.energy_ev, resolution)
     usual_noise = _noise_at_width(noise, field.bank.sigmas_ev, usual)
@@ -141,15 +140,16 @@ def _refined(
     derivative: FloatArray,
     features: tuple[Feature, ...],
     done: tuple[tuple[Feature, float], ...],
+    resolution: float | None,
 ) -> tuple[tuple[Feature, float], ...]:
     """Refine, merge what came together, and refine once more where something was merged."""
-    refined = refine(differential, derivative, features, done)
+    refined = refine(differential, derivative, features, done, resolution)
     pruned = prune(refined)
     if len(pruned) == len(refined):
         return refined
     known = set(refined)
     settled = tuple(pair for pair in pruned if pair in known)
-    return refine(differential, derivative, tuple(feature for feature, _ in pruned), settled)
+    return refine(differential, derivative, tuple(feature for feature, _ in pruned), settled, resolution)
 
 
 def _noise_at_width(noise: FloatArray, sigmas_ev: FloatArray, wanted_ev: FloatArray) -> FloatArray:
@@ -178,7 +178,7 @@ def _minimum(
         energy_ev=feature.energy_ev,
         sigma_ev=float(np.hypot(spread_ev, 0.05 * feature.sigma_ev)),
         depth=feature.depth,
-        peak_to_peak=feature.depth * (1.0 + 1.0 / ASYMMETRY),
+        peak_to_peak=feature.depth * (1.0 + 1.0 / feature.lean),
         width_ev=feature.sigma_ev * FWHM_PER_SIGMA,
         significance=min(feature.depth / local, 1.3 * feature.significance),
         window=number,

@@ -8,9 +8,10 @@ import numpy as np
 from numpy.typing import NDArray
 
 from ..signal.differential import Differential
+from ..signal.lines import ASYMMETRY
 from ..signal.widths import narrowest_sigma_ev, widest_sigma_ev
 from ..spectrum import FloatArray
-from .shapes import ASYMMETRY, Bank, filter_bank
+from .shapes import Bank, filter_bank
 
 BoolArray = NDArray[np.bool_]
 
@@ -18,6 +19,7 @@ PARABOLA_BELOW_EV = 160.0
 EDGE_EV = 8.0
 SHAPE_TOLERANCE = 0.07  # part of a strong line's depth that its unknown shape may leave beside it
 TOLERANCE_REACH = 18.0  # line widths beyond which nothing of that rest is left
+SMEAR = 0.7  # part of the step that adds to a line's width
 MOST = 110
 FEWEST_DIRECT, FEWEST_RECORDED = 100, 40
 LEAST_EXCESS_RECORDED = 1.12
@@ -104,9 +106,8 @@ def _correlate(values: FloatArray, weights: FloatArray) -> FloatArray:
 
 def _allowed(differential: Differential, bank: Bank, resolution: float | None) -> BoolArray:
     energy = differential.energy_ev
-    smear = 0.7 * differential.step_ev
-    low = np.hypot(0.8 * narrowest_sigma_ev(energy, resolution), 0.3 * smear)
-    high = np.hypot(widest_sigma_ev(energy, resolution), smear)
+    low = np.hypot(0.8 * narrowest_sigma_ev(energy, resolution), 0.3 * SMEAR * differential.step_ev)
+    high = widest_here_ev(differential, energy, resolution)
     sigma = bank.sigmas_ev[:, None]
     allowed = (sigma >= low) & (sigma <= high)
     allowed[int(np.argmin(np.abs(np.log(bank.sigmas_ev / float(np.median(low))))))] |= ~np.any(allowed, axis=0)
@@ -114,6 +115,12 @@ def _allowed(differential: Differential, bank: Bank, resolution: float | None) -
     clear = np.minimum(2.2 * sigma, 0.25 * float(energy[-1] - energy[0]))
     allowed &= (energy <= energy[-1] - np.maximum(edge, clear)) & (energy >= energy[0] + np.maximum(0.5 * edge, clear))
     return allowed
+
+
+def widest_here_ev(differential: Differential, energy_ev: FloatArray, resolution: float | None) -> FloatArray:
+    """Standard deviation of the widest line taken for one at this step; any number of energies, eV in, eV out."""
+    widest: FloatArray = np.hypot(widest_sigma_ev(energy_ev, resolution), SMEAR * differential.step_ev)
+    return widest
 
 
 def pursue(

@@ -7,16 +7,14 @@ from dataclasses import replace
 import numpy as np
 
 from ..signal.differential import Differential
-from ..signal.widths import widest_sigma_ev
+from ..signal.lines import ASYMMETRY, line_shape
 from ..spectrum import FloatArray
-from .pursuit import Feature, tolerance
-from .shapes import ASYMMETRY, line_shape
+from .pursuit import Feature, tolerance, widest_here_ev
 
 LARGEST_GROUP = 7
 ROUNDS = 4
 ONE_LINE = 1.0  # widths: minima closer than this are one line of unusual shape
 DEPTH_FREEDOM = 0.5  # prior standard deviation of a depth, relative: crowded minima must not blow each other up
-WIDEST = 1.0  # times the widest that a line is taken for
 USUAL_LEAN, LEAN_FREEDOM, LEANS = 1.4, 0.25, (0.8, 3.0)
 WIDTH_FREEDOM = 0.2  # prior standard deviation of ln sigma about the width that the search chose
 
@@ -26,6 +24,7 @@ def refine(
     derivative: FloatArray,
     features: tuple[Feature, ...],
     done: tuple[tuple[Feature, float], ...] = (),
+    resolution: float | None = None,
 ) -> tuple[tuple[Feature, float], ...]:
     """Refine features of one window; give each with the standard deviation of its energy in eV.
 
@@ -38,7 +37,7 @@ def refine(
         if all(feature in spread for feature in group):
             out.extend((feature, spread[feature]) for feature in group)
         else:
-            out.extend(_refine_group(differential, derivative, group))
+            out.extend(_refine_group(differential, derivative, group, resolution))
     return tuple(out)
 
 
@@ -77,7 +76,7 @@ def _groups(features: list[Feature]) -> list[list[Feature]]:
 
 
 def _refine_group(
-    differential: Differential, derivative: FloatArray, group: list[Feature]
+    differential: Differential, derivative: FloatArray, group: list[Feature], resolution: float | None
 ) -> list[tuple[Feature, float]]:
     energy = differential.energy_ev
     first, last = group[0], group[-1]
@@ -123,7 +122,7 @@ def _refine_group(
         step = np.linalg.solve(information + 1e-12 * np.eye(information.shape[0]), design.T @ misfit / rest**2 + pull)
         depth = np.maximum(depth + step[:count], 0.02 * (depth > 0))
         position = position + np.clip(step[count : 2 * count], -1.5, 1.5)
-        most = np.log(WIDEST * widest_sigma_ev(position))
+        most = np.log(widest_here_ev(differential, position, resolution))
         width = np.clip(width + np.clip(step[2 * count : 3 * count], -0.3, 0.3), start[1] - 0.7, most)
         lean = np.clip(lean + np.clip(step[3 * count : 4 * count], -0.3, 0.3), *np.log(LEANS))
     spread = np.sqrt(np.clip(np.diag(np.linalg.inv(information))[count : 2 * count], 1e-6, None))

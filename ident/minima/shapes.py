@@ -1,9 +1,4 @@
-"""Differential line shapes and the filters that look for them.
-
-A line is an asymmetric peak: a Gaussian of standard deviation sigma on its high-energy side, a wider one
-on its low-energy side where losses are. Its derivative has a shallow positive lobe, then a deep minimum one
-sigma above the peak. Shapes here have their minimum at zero and depth one.
-"""
+"""The filters that look for differential lines."""
 
 from __future__ import annotations
 
@@ -12,23 +7,10 @@ from functools import lru_cache
 
 import numpy as np
 
+from ..signal.lines import ASYMMETRY, line_shape
 from ..spectrum import FloatArray
 
-ASYMMETRY = 1.6  # low-energy over high-energy width; common practice, no source
 SIGMAS_EV = (0.85, 1.15, 1.55, 2.1, 2.8, 3.75, 5.0, 6.7, 9.0)
-
-
-def line_shape(offset_ev: FloatArray, sigma_ev: FloatArray | float, lean: FloatArray | float = ASYMMETRY) -> FloatArray:
-    """Differential line of depth one with its minimum at zero; eV from the minimum in, shape out.
-
-    `lean` is the width on the low-energy side over that on the high-energy side.
-    """
-    u = (offset_ev + sigma_ev) / sigma_ev
-    low = u < 0
-    v = np.where(low, u / lean, u)
-    lobe = np.where(low, 1.0 / lean, 1.0)
-    shape: FloatArray = -lobe * v * np.exp(0.5 - 0.5 * v * v)
-    return shape
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)

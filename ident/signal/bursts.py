@@ -9,6 +9,7 @@ from __future__ import annotations
 import numpy as np
 
 from ..spectrum import FloatArray
+from .lines import line_shape
 from .noise import NoiseModel
 
 THRESHOLD = 9.0  # noise widths of the response
@@ -61,9 +62,7 @@ def _best_line_rest(level: FloatArray, pad: int, m: int) -> float:
     best = float(level @ level)
     for sigma in (0.8, 1.2, 1.7, 2.4, 3.4, 4.8):
         for centre in np.arange(pad, pad + m, 0.5):
-            u = (x - centre + sigma) / sigma
-            v = np.where(u < 0, u / 1.6, u)
-            line = -np.where(u < 0, 1 / 1.6, 1.0) * v * np.exp(0.5 - 0.5 * v * v)
+            line = line_shape(x - centre, sigma)
             product = float(line @ level)
             if product > 0:
                 best = min(best, float(level @ level) - product**2 / float(line @ line))
