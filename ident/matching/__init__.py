@@ -16,7 +16,6 @@ if TYPE_CHECKING:
 
 __all__ = ["Evidence", "Settings", "weigh"]
 
-
 # A sample that nobody called an insulator may charge all the same: tried when much is left unexplained, at this price.
 MUCH_UNEXPLAINED, CHARGING_PRICE, WORTH_EXPLAINING = 12.0, 5.0, 5.0
 
@@ -53,9 +52,9 @@ def _solutions(analysis: Analysis, settings: Settings) -> list[Solution]:
 
 def _unexplained(solution: Solution) -> float:
     """What the strong minima cost that no element explains."""
-    from .search import minimum_costs, sums_of
+    from .search import left_over, minimum_costs, sums_of
 
     problem = solution.problem
-    cost = minimum_costs(problem, sums_of(problem, solution.options, solution.members))
-    left = (cost >= problem.price - 0.5) & (problem.price > WORTH_EXPLAINING)
-    return float(np.sum(cost[left]))
+    sums = sums_of(problem, solution.options, solution.members)
+    left = left_over(problem, sums) & (problem.price > WORTH_EXPLAINING)
+    return float(np.sum(minimum_costs(problem, sums)[left]))

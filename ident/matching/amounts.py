@@ -14,7 +14,7 @@ from .. import tables
 from ..patterns import IntArray, tilted
 from ..spectrum import FloatArray
 from .evidence import AbundanceEvidence, LimitEvidence
-from .options import ANCHOR_HEIGHT, LIGHT_Z, LOW_ALONE_PRICE, LOW_LINE_EV, missing_price
+from .options import ANCHOR_HEIGHT, LOW_LINE_EV, LOWEST_LINE_EV, low_alone_price, missing_price
 from .posterior import TEMPERATURE
 from .problem import Problem, aside_depth, unexplained_price
 from .solve import Solution
@@ -33,7 +33,7 @@ MOST_PERCENT, ABSENT_BELOW = 99.5, 0.05
 
 
 def find_abundances(problem: Problem, solution: Solution) -> dict[int, AbundanceEvidence]:
-    """Atomic per cent of every element of the best set, by its index; empty when a sensitivity is wanting."""
+    """Atomic per cent of every element of the best set, by its index; empty when nothing is there."""
     parts = _parts(problem, solution)
     total = sum(parts.values())
     names, known = problem.patterns.symbols, tables.sensitivities()
@@ -125,8 +125,10 @@ def _lay_over(problem: Problem, solution: Solution) -> _Trials:
 def _odds(problem: Problem, trials: _Trials) -> FloatArray:
     """Ln odds of each element at each strength (e, s), rivals weighed in."""
     gain = _summed(trials, trials.gain)
-    high = _summed(trials, trials.gain * (trials.place_ev > LOW_LINE_EV)[:, None]) > 0
-    low_price = np.where(high | (problem.patterns.z <= LIGHT_Z)[:, None], 0.0, LOW_ALONE_PRICE)
+    above = [
+        _summed(trials, trials.gain * (trials.place_ev > edge)[:, None]) > 0 for edge in (LOW_LINE_EV, LOWEST_LINE_EV)
+    ]
+    low_price = low_alone_price(problem.patterns.z[:, None], *above)
     against = gain - problem.element_price[:, None] - low_price
     weight = np.exp(-np.clip(against / TEMPERATURE, -30.0, 30.0))
     line, rival = _near(problem, trials)

@@ -21,7 +21,7 @@ from .evidence import (
     RivalEvidence,
     StateEvidence,
 )
-from .options import Options
+from .options import LOW_LINE_EV, Options
 from .posterior import Posterior
 from .problem import Problem
 from .scale_evidence import scale_evidence
@@ -31,7 +31,6 @@ from .solve import Solution
 SHOWN_HEIGHT = 0.08  # weaker lines are listed only when met
 MOST_LINES = 10
 LEAST_PROBABILITY = 0.01
-LOW_LINE_EV = 110.0
 
 
 def assemble(problem: Problem, solution: Solution, posterior: Posterior) -> Evidence:

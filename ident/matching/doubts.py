@@ -6,21 +6,22 @@ import numpy as np
 
 from .context import Context
 from .evidence import InseparableEvidence, UnexplainedEvidence, UntestableEvidence
+from .options import LOW_LINE_EV
 from .problem import Problem, unexplained_price
-from .search import minimum_costs
+from .search import left_over
 
-LOW_LINE_EV, SETTLING_HEIGHT = 110.0, 0.03  # a line that settles a case stands above, and is as high as this
+SETTLING_HEIGHT = 0.03  # a line that settles a case is as high as this, and above the crowded energies
 MAIN_PART = 0.3  # of an element's deepest prediction, for a minimum to be one that it rests on
 LOSS_PART = 0.5  # cheaper than this part of its full price, a minimum is likely a loss or a satellite
 LEAST_RIVAL = 0.1  # probability from which an element is a rival worth another scan
 
 
 def find_unexplained(context: Context) -> tuple[UnexplainedEvidence, ...]:
+    """Minima that ask for an element and got none, most significant first; losses and satellites left out."""
     problem, axis = context.problem, context.solution.axis
     pattern = problem.patterns
-    cost = minimum_costs(problem, context.sums)
     full = unexplained_price(problem.energy_ev, problem.depth, problem.significance, np.zeros_like(problem.depth))
-    left = (cost >= problem.price - 0.5) & (problem.price > 3.0) & (problem.price > LOSS_PART * full)
+    left = left_over(problem, context.sums) & (problem.price > 3.0) & (problem.price > LOSS_PART * full)
     likely = [
         int(e) for e in np.flatnonzero(context.posterior.probability >= 0.5) if context.posterior.best_option[e] >= 0
     ]

@@ -185,10 +185,8 @@ def _evaluate(
     price[missing] = missing_price(problem, where[missing], depth[missing], log_sigma[missing])
     price = price.sum(axis=1)
     sure = met & firm
-    low_alone = ~np.any(sure & (pattern.energy_ev[row] > LOW_LINE_EV), axis=1) & (pattern.z[row] > LIGHT_Z)
-    price = price + np.where(low_alone, LOW_ALONE_PRICE, 0.0)
-    lowest_alone = ~np.any(sure & (pattern.energy_ev[row] > LOWEST_LINE_EV), axis=1) & (pattern.z[row] <= LIGHT_Z)
-    price = price + np.where(lowest_alone, LOWEST_ALONE_PRICE, 0.0)
+    above = [np.any(sure & (pattern.energy_ev[row] > edge), axis=1) for edge in (LOW_LINE_EV, LOWEST_LINE_EV)]
+    price = price + low_alone_price(pattern.z[row], *above)
     rows = np.broadcast_to(np.arange(row.size)[:, None], met.shape)[sure]
     flat = rows * count + nearest[sure]
     size = row.size * count
@@ -208,6 +206,13 @@ def _evaluate(
         soft=_soft_costs(problem, row, nearest, met & ~firm, off, depth, reach, log_sigma),
         met=np.where(met, nearest, -1),
     )
+
+
+def low_alone_price(z: IntArray, above_low: NDArray[np.bool_], above_lowest: NDArray[np.bool_]) -> FloatArray:
+    """What it costs an element to rest on low lines alone: no line met above 110 eV if heavy, above 75 eV if light."""
+    heavy = np.where(above_low, 0.0, LOW_ALONE_PRICE)
+    light = np.where(above_lowest, 0.0, LOWEST_ALONE_PRICE)
+    return np.where(z > LIGHT_Z, heavy, light)
 
 
 def _width_cost(problem: Problem, row: IntArray, nearest: IntArray) -> FloatArray:

@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass, replace
 
 import numpy as np
+from numpy.typing import NDArray
 
 from ..spectrum import FloatArray
 from .options import Options
@@ -20,7 +21,7 @@ UNLISTED_PRICE, UNLISTED_PART, UNLISTED_LOG_SIGMA = 3.2, 0.1, 0.5
 SECOND_STATE_PRICE, STATES_APART_EV = 2.0, 3.0  # an element and its oxide at the same time
 
 
-@dataclass(frozen=True, eq=False)
+@dataclass(frozen=True, kw_only=True, eq=False)
 class Sums:
     """What sets of options predict at each minimum, (4, f) or (4, o, f): depth, and depth times three things.
 
@@ -37,7 +38,7 @@ class Sums:
 
     def plus(self, options: Options) -> Sums:
         """The same with each option added in turn."""
-        return Sums(self.predicted[:, None, :] + options.predicted)
+        return Sums(predicted=self.predicted[:, None, :] + options.predicted)
 
 
 def minimum_costs(problem: Problem, sums: Sums) -> FloatArray:
@@ -53,9 +54,15 @@ def minimum_costs(problem: Problem, sums: Sums) -> FloatArray:
     return np.where(met, np.minimum(cost, most), price)
 
 
+def left_over(problem: Problem, sums: Sums) -> NDArray[np.bool_]:
+    """Which minima no element of a set explains better than nothing would, (f,)."""
+    left: NDArray[np.bool_] = minimum_costs(problem, sums) >= problem.price - 0.5
+    return left
+
+
 def empty_sums(problem: Problem) -> Sums:
     """The prediction of no element at all."""
-    return Sums(np.zeros((4, problem.energy_ev.size)))
+    return Sums(predicted=np.zeros((4, problem.energy_ev.size)))
 
 
 def alone(problem: Problem, options: Options) -> FloatArray:
@@ -68,7 +75,7 @@ def sums_of(problem: Problem, options: Options, members: list[int]) -> Sums:
     """What the members predict together."""
     if not members:
         return empty_sums(problem)
-    return Sums(options.predicted[:, members].sum(axis=1))
+    return Sums(predicted=options.predicted[:, members].sum(axis=1))
 
 
 def total_cost(problem: Problem, options: Options, members: list[int]) -> float:
