@@ -9,31 +9,16 @@ import io
 import json
 import subprocess
 import sys
-from collections.abc import Callable
 from pathlib import Path
 
 import numpy as np
 import pytest
 
-from ident.cli import main
+from tests.program import Run, one_error_line
 
 ROOT = Path(__file__).resolve().parents[2]
 DEMO = ROOT / "demo_spectra"
 PLATINUM = ROOT / "tests" / "data" / "pt111_derivative.vms"
-
-Run = Callable[..., tuple[int, str, str]]
-
-
-@pytest.fixture
-def run(capsys: pytest.CaptureFixture[str]) -> Run:
-    def call(*argv: object) -> tuple[int, str, str]:
-        with pytest.raises(SystemExit) as end:
-            main([str(word) for word in argv])
-        out, err = capsys.readouterr()
-        code = end.value.code
-        return (code if isinstance(code, int) else 0), out, err
-
-    return call
 
 
 def flat_file(path: Path, *, seed: int = 5) -> Path:
@@ -42,13 +27,6 @@ def flat_file(path: Path, *, seed: int = 5) -> Path:
     counts = np.random.default_rng(seed).poisson(4000.0 * (energy / 100.0) ** 0.3)
     path.write_text("\n".join(f"{e:.1f},{c}" for e, c in zip(energy, counts, strict=True)), encoding="utf-8")
     return path
-
-
-def one_error_line(err: str) -> str:
-    lines = [line for line in err.splitlines() if line.startswith("ident: ") and "warning" not in line]
-    assert len(lines) == 1, err
-    assert "Traceback" not in err
-    return lines[0]
 
 
 @pytest.mark.parametrize(("energy", "element"), [(651, "Fe"), (1396, "Al"), (418, "Ti"), (920, "Cu"), (272, "C")])

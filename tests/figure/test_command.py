@@ -5,39 +5,18 @@ from __future__ import annotations
 import shutil
 import subprocess
 import sys
-from collections.abc import Callable
 from pathlib import Path
 
 import pytest
 
-from ident.cli import main
+from tests.program import Run, one_error_line
 
 from .conftest import DEMO, PLATINUM
 
-Run = Callable[..., tuple[int, str, str]]
-
-
-@pytest.fixture
-def run(capsys: pytest.CaptureFixture[str]) -> Run:
-    def call(*argv: object) -> tuple[int, str, str]:
-        with pytest.raises(SystemExit) as end:
-            main(["assign", "--quiet", *(str(word) for word in argv)])
-        out, err = capsys.readouterr()
-        return (end.value.code if isinstance(end.value.code, int) else 0), out, err
-
-    return call
-
-
-def one_line(err: str) -> str:
-    lines = err.splitlines()
-    assert len(lines) == 1, err
-    assert lines[0].startswith("ident: ")
-    return lines[0]
-
 
 def test_one_spectrum_into_one_file_and_the_answer_as_ever(run: Run, tmp_path: Path) -> None:
-    without = run(PLATINUM)[1]
-    code, out, err = run("--figure", tmp_path / "pt.PNG", PLATINUM)
+    without = run("assign", "--quiet", PLATINUM)[1]
+    code, out, err = run("assign", "--quiet", "--figure", tmp_path / "pt.PNG", PLATINUM)
     assert (code, err) == (0, "")
     assert out == without
     assert (tmp_path / "pt.PNG").read_bytes().startswith(b"\x89PNG")
@@ -48,52 +27,52 @@ def test_several_spectra_into_a_folder_that_is_made(run: Run, tmp_path: Path) ->
     same.parent.mkdir()
     shutil.copy(PLATINUM, same)
     folder = tmp_path / "figures" / "today"
-    code, _, err = run("--figure", folder, PLATINUM, same, DEMO / "connector_pin_derivative.txt")
+    code, _, err = run("assign", "--quiet", "--figure", folder, PLATINUM, same, DEMO / "connector_pin_derivative.txt")
     assert (code, err) == (0, "")
     names = sorted(path.name for path in folder.iterdir())
     assert names == ["connector_pin_derivative.png", "pt111_derivative.png", "pt111_derivative_2.png"]
 
 
 def test_windows_taken_apart_have_a_figure_each(run: Run, tmp_path: Path) -> None:
-    code, _, _ = run("--separate", "--figure", tmp_path, DEMO / "terminal_windows.csv")
+    code, _, _ = run("assign", "--quiet", "--separate", "--figure", tmp_path, DEMO / "terminal_windows.csv")
     assert code == 0
     assert len(list(tmp_path.glob("terminal_windows*.png"))) == 5  # windows, says the README of the demo spectra
 
 
 def test_several_inputs_into_one_file_is_wrong_usage(run: Run, tmp_path: Path) -> None:
-    code, out, err = run("--figure", tmp_path / "a.png", PLATINUM, PLATINUM)
+    code, out, err = run("assign", "--quiet", "--figure", tmp_path / "a.png", PLATINUM, PLATINUM)
     assert (code, out) == (2, "")
-    assert "name a folder" in one_line(err)
+    assert "name a folder" in one_error_line(err)
     assert not list(tmp_path.iterdir())
 
 
 def test_several_spectra_of_one_input_into_one_file(run: Run, tmp_path: Path) -> None:
-    code, _, err = run("--separate", "--figure", tmp_path / "a.png", DEMO / "terminal_windows.csv")
+    code, _, err = run("assign", "--quiet", "--separate", "--figure", tmp_path / "a.png", DEMO / "terminal_windows.csv")
     assert code == 1
-    assert "name a folder" in one_line(err)
+    assert "name a folder" in one_error_line(err)
     assert not list(tmp_path.iterdir())
 
 
 @pytest.mark.parametrize("name", ["figure.jpg", "figure.tiff", "figure.png.exe"])
 def test_other_endings_are_wrong_usage(run: Run, tmp_path: Path, name: str) -> None:
-    code, out, err = run("--figure", tmp_path / name, PLATINUM)
+    code, out, err = run("assign", "--quiet", "--figure", tmp_path / name, PLATINUM)
     assert (code, out) == (2, "")
-    assert "png, svg or pdf" in one_line(err)
+    assert "png, svg or pdf" in one_error_line(err)
 
 
 @pytest.mark.parametrize("place", ["nowhere/figure.png", "file/figure.png", "file/folder", "file"])
 def test_a_place_that_cannot_be_written_is_said_before_anything_is_read(run: Run, tmp_path: Path, place: str) -> None:
     (tmp_path / "file").write_text("not a folder", encoding="utf-8")
-    code, out, err = run("--figure", tmp_path / place, PLATINUM)
+    code, out, err = run("assign", "--quiet", "--figure", tmp_path / place, PLATINUM)
     assert (code, out) == (1, "")
-    assert one_line(err)
+    assert one_error_line(err)
     assert (tmp_path / "file").read_text(encoding="utf-8") == "not a folder"
 
 
 def test_an_input_that_fails_leaves_the_others_their_figures(run: Run, tmp_path: Path) -> None:
-    code, _, err = run("--figure", tmp_path, "no_such_file.csv", PLATINUM)
+    code, _, err = run("assign", "--quiet", "--figure", tmp_path, "no_such_file.csv", PLATINUM)
     assert code == 1
-    assert "no_such_file" in one_line(err)
+    assert "no_such_file" in one_error_line(err)
     assert [path.name for path in tmp_path.iterdir()] == ["pt111_derivative.png"]
 
 

@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
+import os
 import re
 import shlex
+import shutil
 import subprocess
 import sys
 from pathlib import Path
@@ -22,14 +24,28 @@ LINES = [line for block in BLOCKS for line in block.splitlines() if line.strip()
 EXAMPLES = [line for line in LINES if line.startswith("ident ")]
 
 
+@pytest.fixture(scope="module")
+def desk(tmp_path_factory: pytest.TempPathFactory) -> Path:
+    """A folder with the demo spectra, into which the examples may write."""
+    folder = tmp_path_factory.mktemp("desk")
+    shutil.copytree(ROOT / "demo_spectra", folder / "demo_spectra")
+    return folder
+
+
 @pytest.mark.parametrize("line", EXAMPLES)
-def test_readme_example_runs(line: str) -> None:
+def test_readme_example_runs(line: str, desk: Path) -> None:
     command, _, remark = line.partition("  #")
     said = re.search(r"exit (\d)", remark)
     wanted = int(said[1]) if said else 0
     words = shlex.split(command)[1:]
     done = subprocess.run(
-        [sys.executable, "-m", "ident", *words], cwd=ROOT, capture_output=True, text=True, check=False, timeout=300
+        [sys.executable, "-m", "ident", *words],
+        cwd=desk,
+        env={**os.environ, "PYTHONPATH": str(ROOT)},
+        capture_output=True,
+        text=True,
+        check=False,
+        timeout=300,
     )
     assert done.returncode == wanted, done.stderr
     assert "Traceback" not in done.stderr

@@ -7,38 +7,16 @@ import io
 import json
 import subprocess
 import sys
-from collections.abc import Callable
 from pathlib import Path
 
 import numpy as np
 import pytest
 
-from ident.cli import main
+from tests.program import Run, one_error_line
 
 ROOT = Path(__file__).resolve().parents[2]
 SPECTRUM = ROOT / "demo_spectra" / "slip_ring_dead.csv"
 LABELS = ROOT / "demo_spectra" / "slip_ring_dead_labels.csv"
-
-Run = Callable[..., tuple[int, str, str]]
-
-
-@pytest.fixture
-def run(capsys: pytest.CaptureFixture[str]) -> Run:
-    def call(*argv: object) -> tuple[int, str, str]:
-        with pytest.raises(SystemExit) as end:
-            main([str(word) for word in argv])
-        out, err = capsys.readouterr()
-        code = end.value.code
-        return (code if isinstance(code, int) else 0), out, err
-
-    return call
-
-
-def one_error_line(err: str) -> str:
-    lines = [line for line in err.splitlines() if line.startswith("ident: ") and "warning" not in line]
-    assert len(lines) == 1, err
-    assert "Traceback" not in err
-    return lines[0]
 
 
 def test_json_has_the_keys_promised_and_judges_the_demo_labels(run: Run) -> None:

@@ -5,22 +5,20 @@ from __future__ import annotations
 import csv
 import io
 import json
-from collections.abc import Callable
 from dataclasses import replace
 from pathlib import Path
 
 import pytest
 
 from ident import ScaleCalibration, Spectrum, calibrate_scale, load_scale, save_scale
-from ident.cli import main
 from ident.errors import InputError, TableError
 from ident.tables import ScaleLine, reference_folder
 from ident.tables.files import read_rows
+from tests.program import Run
 
 from .metals import Axis, metal_spectrum
 
 AXIS = Axis(offset_ev=-5.0, slope=0.002)
-Run = Callable[..., tuple[int, str, str]]
 
 
 @pytest.fixture(scope="session")
@@ -33,18 +31,6 @@ def written(path: Path, spectrum: Spectrum) -> Path:
     rows = zip(window.energy_ev, window.intensity, strict=True)
     path.write_text("energy (eV),counts\n" + "".join(f"{e:.2f},{c:.0f}\n" for e, c in rows), encoding="utf-8")
     return path
-
-
-@pytest.fixture
-def run(capsys: pytest.CaptureFixture[str]) -> Run:
-    def call(*argv: object) -> tuple[int, str, str]:
-        with pytest.raises(SystemExit) as end:
-            main([str(word) for word in argv])
-        out, err = capsys.readouterr()
-        code = end.value.code
-        return (code if isinstance(code, int) else 0), out, err
-
-    return call
 
 
 def test_round_trip(calibration: ScaleCalibration, tmp_path: Path) -> None:
