@@ -119,9 +119,7 @@ class Spectrum:
         for window in self.windows:
             inside = (window.energy_ev >= low_ev) & (window.energy_ev <= high_ev)
             if np.count_nonzero(inside) > 1:
-                kept.append(
-                    Window(energy_ev=window.energy_ev[inside], intensity=window.intensity[inside])
-                )
+                kept.append(Window(energy_ev=window.energy_ev[inside], intensity=window.intensity[inside]))
         if not kept:
             raise InputError(
                 f"nothing was recorded between {low_ev:g} and {high_ev:g} eV",

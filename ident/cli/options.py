@@ -88,9 +88,7 @@ RECORDED = (
     ),
     click.option("--separate", is_flag=True, help="Take blocks and windows of a file for spectra of their own."),
     click.option("--within", callback=_range, metavar="LO:HI", help="Use this range of the energies only, in eV."),
-    click.option(
-        "--resolution", callback=_resolution, metavar="0.5%|1.2eV", help="Energy resolution of the analyser."
-    ),
+    click.option("--resolution", callback=_resolution, metavar="0.5%|1.2eV", help="Energy resolution of the analyser."),
     click.option("--quiet", is_flag=True, help="No progress and no warnings on standard error."),
 )
 

@@ -69,9 +69,7 @@ def _list(form: str) -> int:
     elif form == "csv":
         from ..report.csv_rows import render_rows
 
-        click.echo(
-            render_rows([("file", "rows", "bytes"), *((f.name, f.rows, f.size_bytes) for f in files)]), nl=False
-        )
+        click.echo(render_rows([("file", "rows", "bytes"), *((f.name, f.rows, f.size_bytes) for f in files)]), nl=False)
     else:
         from ..report.text_lookup import render_table_list
 

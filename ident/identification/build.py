@@ -105,9 +105,7 @@ def relative_resolution(spectrum: Spectrum, settings: Settings) -> tuple[float |
     return relative, (f"the resolution of {settings.resolution_ev:g} eV is taken as {relative:.2%} throughout",)
 
 
-def assemble(
-    analysis: Analysis, evidence: Evidence, settings: Settings, notes: tuple[str, ...] = ()
-) -> Identification:
+def assemble(analysis: Analysis, evidence: Evidence, settings: Settings, notes: tuple[str, ...] = ()) -> Identification:
     """Put an answer together from what was found and weighed."""
     spectrum = analysis.spectrum
     assignments = tuple(_assignment(element, evidence) for element in evidence.elements)

@@ -155,9 +155,7 @@ def _near(problem: Problem, trials: _Trials) -> tuple[IntArray, IntArray]:
     return strong[one], strong[two]
 
 
-def _rival_weights(
-    problem: Problem, trials: _Trials, gain: FloatArray, line: IntArray, rival: IntArray
-) -> FloatArray:
+def _rival_weights(problem: Problem, trials: _Trials, gain: FloatArray, line: IntArray, rival: IntArray) -> FloatArray:
     """Weight of each rival standing for one line of an element, whose other lines are left unexplained; (p, s)."""
     pattern = problem.patterns
     element, other = trials.element[line], trials.element[rival]

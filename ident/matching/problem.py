@@ -114,9 +114,7 @@ def _own_price(energy: FloatArray, depth: FloatArray, significance: FloatArray, 
     return np.where(np.any(split, axis=1), np.minimum(price, SPLIT_PRICE), price)
 
 
-def unexplained_price(
-    energy: FloatArray, depth: FloatArray, significance: FloatArray, aside: FloatArray
-) -> FloatArray:
+def unexplained_price(energy: FloatArray, depth: FloatArray, significance: FloatArray, aside: FloatArray) -> FloatArray:
     """What a minimum of this energy, depth and significance costs unexplained; any shapes that go together.
 
     Less near the secondary edge, much less where it is no deeper than losses and satellites would be (`aside`).

@@ -85,9 +85,7 @@ def axis_prior(problem: Problem) -> AxisPrior:
     return prior.of_insulator() if problem.settings.insulator else prior
 
 
-def _settle(
-    problem: Problem, axis: Axis, options: Options, members: list[int], *, tilt_centre: float
-) -> Solution:
+def _settle(problem: Problem, axis: Axis, options: Options, members: list[int], *, tilt_centre: float) -> Solution:
     fit = _fit(problem, options, members)
     cost, known = np.inf, problem
     for _ in range(2):

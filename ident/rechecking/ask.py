@@ -26,9 +26,7 @@ FITS_EV = 6.0  # a label nearer than that to its element's line was read on this
 SHIFTED_AXIS_EV = 5.0  # from which it matters whether labels are on the spectrum's axis or on that of the tables
 
 
-def recheck(
-    spectrum: Spectrum, labels: LabelsLike, settings: Settings | None = None, **settings_given: Any
-) -> Recheck:
+def recheck(spectrum: Spectrum, labels: LabelsLike, settings: Settings | None = None, **settings_given: Any) -> Recheck:
     """Give a second opinion on somebody else's labels. They never influence it.
 
     Parameters
@@ -173,9 +171,7 @@ def _judge_parts(scene: Scene, way: Sequence[Part], energy_ev: float | None) -> 
     near = [_is_near(scene, part.symbol, energy_ev) for part in way]
     if len(way) == 1 or not any(near):
         near = [True] * len(way)
-    return [
-        (part, judge(scene, part, energy_ev if here else None)) for part, here in zip(way, near, strict=True)
-    ]
+    return [(part, judge(scene, part, energy_ev if here else None)) for part, here in zip(way, near, strict=True)]
 
 
 def _is_near(scene: Scene, symbol: str, energy_ev: float | None) -> bool:

@@ -29,9 +29,7 @@ ELEMENT_COLUMNS = (
     *("element", "z", "transition", "energy_ev", "sigma_ev", "energy_kind", "relative_height", "height_kind"),
     *("state", "rivals", "deciding", "source", "mean_free_path_nm", "mean_free_path_factor", "depth_nm"),
 )
-MINIMA_COLUMNS = (
-    *("spectrum", "energy_ev", "sigma_ev", "depth", "peak_to_peak", "width_ev", "significance"),
-)
+MINIMA_COLUMNS = (*("spectrum", "energy_ev", "sigma_ev", "depth", "peak_to_peak", "width_ev", "significance"),)
 CORRECTED_COLUMNS = ("corrected_ev", "corrected_sigma_ev")
 
 

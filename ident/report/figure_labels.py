@@ -170,9 +170,7 @@ def interleaved(extents: Sequence[tuple[float, float]]) -> tuple[tuple[int, ...]
     return tuple(tuple(group) for group in groups)
 
 
-def _begin(
-    members: Sequence[int], wanted: Sequence[float], widths: Sequence[float], low: float, high: float
-) -> float:
+def _begin(members: Sequence[int], wanted: Sequence[float], widths: Sequence[float], low: float, high: float) -> float:
     """Where a run begins so that its labels are moved least, inside the limits."""
     total, moves = 0.0, 0.0
     for member in members:

@@ -248,9 +248,7 @@ def _place(
     return tuple(label for at, label in enumerate(labels) if at not in kept)
 
 
-def _outline(
-    axes: Axes, curves: Sequence[tuple[FloatArray, FloatArray, FloatArray]]
-) -> tuple[FloatArray, FloatArray]:
+def _outline(axes: Axes, curves: Sequence[tuple[FloatArray, FloatArray, FloatArray]]) -> tuple[FloatArray, FloatArray]:
     """The lower edge of what is drawn, and the measured curve alone, in pixels (n, 2), cut to the panel."""
     frame = axes.get_window_extent()
     out = []

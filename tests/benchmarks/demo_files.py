@@ -26,8 +26,7 @@ def write_table(
     blocks = []
     for window in spectrum.windows:
         rows = [
-            f"{energy:.1f}{separator}{value}"
-            for energy, value in zip(window.energy_ev, _values(window), strict=True)
+            f"{energy:.1f}{separator}{value}" for energy, value in zip(window.energy_ev, _values(window), strict=True)
         ]
         blocks.append("\n".join(rows[::-1] if descending else rows))
     return "\n".join([*head, "# " + separator.join(names), "\n\n".join(blocks)]) + "\n"

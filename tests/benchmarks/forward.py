@@ -46,9 +46,7 @@ class Case:
     spectrum: Spectrum
     truth: dict[str, float]  # element -> strength (depth of its strongest line, pure strong element = 1)
     significance: dict[str, float]  # element -> noise widths of its strongest line that nobody else explains
-    strongest_ev: dict[
-        str, float
-    ]  # element -> minimum of that line on this spectrum's axis; none out of range
+    strongest_ev: dict[str, float]  # element -> minimum of that line on this spectrum's axis; none out of range
     kind: str
     seed: int
     recipe: str
@@ -103,9 +101,7 @@ def make_case(kind: str, seed: int) -> Case:
     sample: tuple[Constituent, ...] = ()
     recipe = "smooth background"
     if kind != "background":
-        draw: Callable[..., tuple[str, tuple[Constituent, ...]]] = (
-            draw_random if kind == "random" else draw_technical
-        )
+        draw: Callable[..., tuple[str, tuple[Constituent, ...]]] = draw_random if kind == "random" else draw_technical
         recipe, sample = draw(rng, insulating=True) if insulator else draw(rng)
     setup = draw_setup(rng, kind, sample)
     return build_case(rng, setup, sample, kind=kind, seed=seed, recipe=recipe)
@@ -128,8 +124,7 @@ def build_case(
     base = background_shape(energy - setup.scale.offset_ev, setup.background)
     taken = record(rng, setup.axes_ev, setup.recording, base=base, shapes=shapes, cores=cores)
     windows = tuple(
-        Window(energy_ev=axis, intensity=values)
-        for axis, values in zip(setup.axes_ev, taken.values, strict=True)
+        Window(energy_ev=axis, intensity=values) for axis, values in zip(setup.axes_ev, taken.values, strict=True)
     )
     found = line_significance(setup.axes_ev, lines, taken)
     return Case(
@@ -183,9 +178,7 @@ def _axis(low_ev: float, high_ev: float, step_ev: float) -> FloatArray:
     return low_ev + step_ev * np.arange(round((high_ev - low_ev) / step_ev) + 1, dtype=np.float64)
 
 
-def _window_axes(
-    rng: np.random.Generator, sample: tuple[Constituent, ...], scale: Scale
-) -> tuple[FloatArray, ...]:
+def _window_axes(rng: np.random.Generator, sample: tuple[Constituent, ...], scale: Scale) -> tuple[FloatArray, ...]:
     """Place windows of 60 eV as an operator would: on strong lines of what he expects, and of C and O."""
     expected = {part.element for part in sample} | {"C", "O"}
     for element in ("S", "Cl", "N"):

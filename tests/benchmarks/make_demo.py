@@ -43,9 +43,7 @@ class Demo:
     file: str
     part: str
     surface: str  # `Fe 0.5 oxide; C 0.3`
-    seed: (
-        int  # of DEMO_SEEDS; spots of one sitting share it, and with it what is drawn for their first element
-    )
+    seed: int  # of DEMO_SEEDS; spots of one sitting share it, and with it what is drawn for their first element
     axes_ev: tuple[FloatArray, ...]
     write: Callable[[Demo, Case], str]
     recording: Recording = GOOD

@@ -39,9 +39,7 @@ def published_lines() -> dict[str, tuple[PublishedLine, ...]]:
                 valence=is_valence(int(row["z"]), row["transition"]),
             )
             lines.setdefault(line.element, []).append(line)
-    return {
-        symbol: tuple(sorted(rows, key=lambda row: -row.relative_height)) for symbol, rows in lines.items()
-    }
+    return {symbol: tuple(sorted(rows, key=lambda row: -row.relative_height)) for symbol, rows in lines.items()}
 
 
 def is_valence(z: int, transition: str) -> bool:

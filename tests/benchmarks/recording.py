@@ -75,9 +75,7 @@ def record(
 ) -> Taken:
     """Record background and lines (both in E·N(E)); `base` is (n,), `shapes` and `cores` (lines, n)."""
     energy = np.concatenate(axes_ev)
-    gain = np.concatenate(
-        [np.full(axis.size, factor) for axis, factor in zip(axes_ev, how.gains, strict=True)]
-    )
+    gain = np.concatenate([np.full(axis.size, factor) for axis, factor in zip(axes_ev, how.gains, strict=True)])
     if not how.times_energy:
         gain = gain * 500.0 / energy
     gain = gain * _counts_per_unit(rng, energy, base, shapes, how)
@@ -86,9 +84,7 @@ def record(
     notes = [how.mode, "E·N(E)" if how.times_energy else "N(E)", how.unit]
     shapes, cores = shapes * gain, cores * gain
     if how.mode == "modulated":
-        shapes, cores, expected = (
-            _modulate(part, axes_ev, how.modulation_ev) for part in (shapes, cores, expected)
-        )
+        shapes, cores, expected = (_modulate(part, axes_ev, how.modulation_ev) for part in (shapes, cores, expected))
         # the lock-in sees the counting noise of its channels over the modulation width
         step = float(np.median(np.diff(axes_ev[0])))
         noise = noise / (how.modulation_ev * np.sqrt(2.0 * how.modulation_ev / step))
@@ -108,13 +104,9 @@ def _split(values: FloatArray, axes_ev: tuple[FloatArray, ...]) -> list[FloatArr
     return np.split(values, np.cumsum([axis.size for axis in axes_ev])[:-1], axis=-1)
 
 
-def _differentiate(
-    values: list[FloatArray], axes_ev: tuple[FloatArray, ...], how: Recording
-) -> list[FloatArray]:
+def _differentiate(values: list[FloatArray], axes_ev: tuple[FloatArray, ...], how: Recording) -> list[FloatArray]:
     if how.mode == "difference":
-        return [
-            _difference(part, axis, how.modulation_ev) for part, axis in zip(values, axes_ev, strict=True)
-        ]
+        return [_difference(part, axis, how.modulation_ev) for part, axis in zip(values, axes_ev, strict=True)]
     if how.mode == "modulated":
         return [_time_constant(part) for part in values]
     return values
@@ -145,17 +137,13 @@ def _modulate(values: FloatArray, axes_ev: tuple[FloatArray, ...], sigma_ev: flo
         kernel = kernel[::-1] / (kernel * x).sum()
         left = 2 * part[:, :1] - part[:, reach:0:-1]
         right = 2 * part[:, -1:] - part[:, -2 : -reach - 2 : -1]
-        parts.append(
-            oaconvolve(np.concatenate([left, part, right], axis=1), kernel[None], mode="valid", axes=1)
-        )
+        parts.append(oaconvolve(np.concatenate([left, part, right], axis=1), kernel[None], mode="valid", axes=1))
     return np.concatenate(parts, axis=1).reshape(values.shape)
 
 
 def _time_constant(values: FloatArray) -> FloatArray:
     """Smear along the scan as a lock-in does: half a channel of time constant; neighbours then correlate."""
-    return np.convolve(
-        np.concatenate([values[:2], values, values[-1:]]), [0.05, 0.65, 0.25, 0.05], mode="valid"
-    )
+    return np.convolve(np.concatenate([values[:2], values, values[-1:]]), [0.05, 0.65, 0.25, 0.05], mode="valid")
 
 
 def _difference(values: FloatArray, axis: FloatArray, sigma_ev: float) -> FloatArray:

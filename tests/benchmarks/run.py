@@ -102,8 +102,7 @@ def describe_background(outcome: BackgroundOutcome) -> str:
     shown = " ".join(f"{seed}:{e} {p:.2f}" for seed, e, p in (*outcome.present, *outcome.likely)[:20])
     return (
         f"{outcome.way}: {outcome.spectra} backgrounds, present {len(outcome.present)}, likely"
-        f" {len(outcome.likely)}, {outcome.ms_per_spectrum:.0f} ms a spectrum"
-        + (f"\n  {shown}" if shown else "")
+        f" {len(outcome.likely)}, {outcome.ms_per_spectrum:.0f} ms a spectrum" + (f"\n  {shown}" if shown else "")
     )
 
 

@@ -67,27 +67,17 @@ RECIPES: tuple[Recipe, ...] = (
     ),
     _recipe("carbon steel", "Fe 0.5-1 both", "Mn 0.4 0.01-0.05; Si 0.3 0.01-0.06 oxide; P 0.2 0.02-0.1"),
     _recipe("nickel contact", "Ni 0.5-1", "P 0.5 0.03-0.3; B 0.1 0.03-0.1; Fe 0.1 0.02-0.1"),
-    _recipe(
-        "copper contact", "Cu 0.5-1", "Ni 0.2 0.02-0.2; Zn 0.2 0.05-0.3; Sn 0.2 0.02-0.2; Be 0.1 0.02-0.1"
-    ),
+    _recipe("copper contact", "Cu 0.5-1", "Ni 0.2 0.02-0.2; Zn 0.2 0.05-0.3; Sn 0.2 0.02-0.2; Be 0.1 0.02-0.1"),
     _recipe("brass", "Cu 0.4-0.8; Zn 0.2-0.6", "Pb 0.4 0.03-0.2; Sn 0.2 0.02-0.08; Ni 0.1 0.02-0.1"),
-    _recipe(
-        "silver contact", "Ag 0.5-1", "Cu 0.4 0.03-0.3; S 0.5 0.05-0.4; Cd 0.15 0.05-0.2; In 0.1 0.05-0.2"
-    ),
+    _recipe("silver contact", "Ag 0.5-1", "Cu 0.4 0.03-0.3; S 0.5 0.05-0.4; Cd 0.15 0.05-0.2; In 0.1 0.05-0.2"),
     _recipe("gold pad", "Au 0.2-0.8", "Ni 0.4 0.02-0.2; Cu 0.3 0.02-0.2; Tl 0.1 0.02-0.1; Co 0.2 0.01-0.05"),
-    _recipe(
-        "palladium finish", "Pd 0.4-1", "Ni 0.4 0.03-0.3; Au 0.4 0.03-0.2; Ag 0.2 0.05-0.3; Cu 0.2 0.02-0.2"
-    ),
+    _recipe("palladium finish", "Pd 0.4-1", "Ni 0.4 0.03-0.3; Au 0.4 0.03-0.2; Ag 0.2 0.05-0.3; Cu 0.2 0.02-0.2"),
     _recipe("platinum electrode", "Pt 0.2-0.8", "Ir 0.2 0.05-0.2; Rh 0.2 0.05-0.2; Ti 0.2 0.02-0.1"),
     _recipe("rhodium finish", "Rh 0.4-1", "Ni 0.3 0.03-0.2; Ag 0.2 0.05-0.3"),
     _recipe("ruthenium electrode", "Ru 0.4-0.9; O 0.1-0.4", "Ir 0.3 0.05-0.2; Ti 0.4 0.05-0.3 oxide"),
     _recipe("tin finish", "Sn 0.4-0.9 both", "Cu 0.4 0.03-0.3; Ni 0.2 0.03-0.2; Pb 0.2 0.05-0.3"),
-    _recipe(
-        "tin-lead solder", "Sn 0.3-0.8; Pb 0.2-0.8", "Sb 0.2 0.05-0.15; Cu 0.3 0.02-0.2; Bi 0.1 0.05-0.3"
-    ),
-    _recipe(
-        "lead-free solder", "Sn 0.4-0.9; Ag 0.05-0.2", "Cu 0.6 0.02-0.15; Bi 0.2 0.05-0.3; In 0.2 0.05-0.3"
-    ),
+    _recipe("tin-lead solder", "Sn 0.3-0.8; Pb 0.2-0.8", "Sb 0.2 0.05-0.15; Cu 0.3 0.02-0.2; Bi 0.1 0.05-0.3"),
+    _recipe("lead-free solder", "Sn 0.4-0.9; Ag 0.05-0.2", "Cu 0.6 0.02-0.15; Bi 0.2 0.05-0.3; In 0.2 0.05-0.3"),
     _recipe("indium seal", "In 0.5-1 both", "Cu 0.2 0.05-0.2; Sn 0.2 0.1-0.3"),
     _recipe("bismuth alloy", "Bi 0.4-0.9; Sn 0.2-0.6", "Pb 0.2 0.1-0.4; Cd 0.3 0.1-0.4"),
     _recipe("zinc plating", "Zn 0.5-1 both", "Fe 0.3 0.03-0.2; Cr 0.5 0.03-0.2 oxide; Ni 0.1 0.03-0.1"),
@@ -103,9 +93,7 @@ RECIPES: tuple[Recipe, ...] = (
         "Al 0.5-1 both; O 0.2-0.5",
         "F 0.4 0.05-0.4; Si 0.3 0.03-0.2; Cu 0.3 0.02-0.1; Au 0.3 0.05-0.3; Cl 0.2 0.05-0.3",
     ),
-    _recipe(
-        "titanium alloy", "Ti 0.5-1 both; Al 0.03-0.15", "V 0.6 0.03-0.1; N 0.2 0.05-0.2; Sn 0.1 0.05-0.1"
-    ),
+    _recipe("titanium alloy", "Ti 0.5-1 both; Al 0.03-0.15", "V 0.6 0.03-0.1; N 0.2 0.05-0.2; Sn 0.1 0.05-0.1"),
     _recipe(
         "magnesium alloy",
         "Mg 0.4-1 both; O 0.2-0.7",
@@ -118,18 +106,14 @@ RECIPES: tuple[Recipe, ...] = (
         "Al 0.5 0.03-0.15; Ti 0.5 0.02-0.1; Fe 0.4 0.03-0.3; Hf 0.1 0.02-0.08",
     ),
     _recipe("cobalt alloy", "Co 0.4-0.9; Cr 0.2-0.5", "Mo 0.5 0.03-0.15; W 0.3 0.03-0.15; Ni 0.3 0.03-0.2"),
-    _recipe(
-        "hard metal", "W 0.3-0.8; C 0.3-0.7; Co 0.1-0.4", "Ti 0.3 0.03-0.2; Ta 0.3 0.03-0.2; Nb 0.1 0.03-0.1"
-    ),
+    _recipe("hard metal", "W 0.3-0.8; C 0.3-0.7; Co 0.1-0.4", "Ti 0.3 0.03-0.2; Ta 0.3 0.03-0.2; Nb 0.1 0.03-0.1"),
     _recipe(
         "magnet",
         "Fe 0.4-0.8; Nd 0.1-0.4",
         "Dy 0.4 0.03-0.15; Pr 0.5 0.05-0.2; B 0.5 0.02-0.1; Co 0.3 0.03-0.1",
     ),
     _recipe("zirconium tube", "Zr 0.4-0.9 both", "Sn 0.4 0.03-0.1; Nb 0.3 0.05-0.2; Fe 0.3 0.02-0.1"),
-    _recipe(
-        "niobium cavity", "Nb 0.4-0.9 both; O 0.2-0.5", "Ta 0.2 0.05-0.2; F 0.3 0.03-0.15; Ti 0.2 0.03-0.15"
-    ),
+    _recipe("niobium cavity", "Nb 0.4-0.9 both; O 0.2-0.5", "Ta 0.2 0.05-0.2; F 0.3 0.03-0.15; Ti 0.2 0.03-0.15"),
     _recipe("molybdenum grid", "Mo 0.4-0.9", "Re 0.2 0.05-0.3; K 0.2 0.03-0.2"),
     _recipe("tungsten wire", "W 0.4-0.9", "Th 0.2 0.05-0.2; K 0.3 0.03-0.2; Re 0.2 0.05-0.3"),
     _recipe("tantalum foil", "Ta 0.4-0.9 both", "Nb 0.2 0.03-0.1; W 0.2 0.03-0.1"),
@@ -152,9 +136,7 @@ RECIPES: tuple[Recipe, ...] = (
     _recipe("chromium nitride coating", "Cr 0.4-0.9; N 0.2-0.6", "Al 0.2 0.1-0.4; Fe 0.2 0.03-0.2"),
     _recipe("zirconium nitride coating", "Zr 0.4-0.9; N 0.2-0.6", "Ti 0.2 0.05-0.3; Hf 0.2 0.03-0.1"),
     _recipe("carbide coating", "Ti 0.4-0.9; C 0.3-0.8", "W 0.2 0.05-0.2; N 0.3 0.1-0.4"),
-    _recipe(
-        "hard carbon coating", "C 0.6-1", "W 0.3 0.03-0.2; Si 0.3 0.03-0.2; Cr 0.3 0.03-0.2; Ar 0.3 0.02-0.1"
-    ),
+    _recipe("hard carbon coating", "C 0.6-1", "W 0.3 0.03-0.2; Si 0.3 0.03-0.2; Cr 0.3 0.03-0.2; Ar 0.3 0.02-0.1"),
     _recipe("boride coating", "Ti 0.3-0.7; B 0.3-0.7", "Zr 0.2 0.1-0.3; N 0.2 0.1-0.3"),
     _recipe(
         "rare-earth film",
@@ -253,9 +235,7 @@ CONTAMINATION: tuple[Maybe, ...] = (
 )
 
 
-def draw_technical(
-    rng: np.random.Generator, *, insulating: bool = False
-) -> tuple[str, tuple[Constituent, ...]]:
+def draw_technical(rng: np.random.Generator, *, insulating: bool = False) -> tuple[str, tuple[Constituent, ...]]:
     """Draw a technical sample with what the air, hands and baths leave on it."""
     pool = [recipe for recipe in RECIPES if recipe.insulator or not insulating]
     recipe = pool[rng.integers(len(pool))]
@@ -277,9 +257,7 @@ def draw_random(rng: np.random.Generator) -> tuple[str, tuple[Constituent, ...]]
     count = int(rng.integers(2, 8))
     elements = {_any_element(rng) for _ in range(count)}
     drawn = [
-        Constituent(
-            element=element, strength=_between(rng, 0.2, 1.0) if index < 2 else _between(rng, 0.01, 1.0)
-        )
+        Constituent(element=element, strength=_between(rng, 0.2, 1.0) if index < 2 else _between(rng, 0.01, 1.0))
         for index, element in enumerate(sorted(elements, key=lambda _: rng.random()))
     ]
     return "random mixture", tuple(drawn)

@@ -90,9 +90,7 @@ def score_case(case: Case, calls: Mapping[str, float]) -> CaseScore:
 
 def summarise(scores: Sequence[CaseScore]) -> Summary:
     """Put the scores of a set together."""
-    right, false, missed = (
-        sum(len(getattr(score, part)) for score in scores) for part in ("right", "false", "missed")
-    )
+    right, false, missed = (sum(len(getattr(score, part)) for score in scores) for part in ("right", "false", "missed"))
     each = np.array([score.f1 for score in scores if score.f1 is not None])
     return Summary(
         spectra=len(scores),
@@ -118,9 +116,7 @@ def calibration_table(judged: Sequence[tuple[float, bool]], bins: int = 10) -> t
         return ()
     pairs = np.array(sorted(judged), dtype=np.float64)
     return tuple(
-        CalibrationBin(
-            count=len(part), probability=float(part[:, 0].mean()), present=float(part[:, 1].mean())
-        )
+        CalibrationBin(count=len(part), probability=float(part[:, 0].mean()), present=float(part[:, 1].mean()))
         for part in np.array_split(pairs, min(bins, len(pairs)))
     )
 

@@ -91,9 +91,7 @@ def test_a_line_under_a_stronger_neighbour_counts_for_less() -> None:
 
 def test_a_neighbour_far_below_the_noise_imitates_nothing() -> None:
     alone = _significance([_line("N", 300.0)])["N"]
-    assert _significance([_line("N", 300.0), _line("Ti", 300.5, height=0.05)])["N"] == pytest.approx(
-        alone, rel=0.01
-    )
+    assert _significance([_line("N", 300.0), _line("Ti", 300.5, height=0.05)])["N"] == pytest.approx(alone, rel=0.01)
 
 
 def test_a_film_takes_more_from_low_energies() -> None:

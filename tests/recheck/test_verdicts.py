@@ -132,9 +132,7 @@ def test_a_correction_is_shown(steel: Spectrum, places: dict[str, float]) -> Non
     assert "name-corrected" in {reason.code for reason in label.reasons}
 
 
-def test_of_several_elements_the_worst_counts_and_with_or_the_best(
-    steel: Spectrum, places: dict[str, float]
-) -> None:
+def test_of_several_elements_the_worst_counts_and_with_or_the_best(steel: Spectrum, places: dict[str, float]) -> None:
     assert only(recheck(steel, [(places["Fe"], "Fe/Co")])) != "agrees"
     assert only(recheck(steel, [(places["Fe"], "Fe or Co")])) == "agrees"
 
