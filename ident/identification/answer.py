@@ -58,10 +58,13 @@ class LineNote:
 
 @dataclass(frozen=True, kw_only=True)
 class State:
-    """The chemical state whose shift fits best."""
+    """The chemical state that the places of the lines speak for; Auger data alone do not prove it."""
 
     name: str
     shift_ev: float
+    odds: float | None = None  # to one, over the next best state; None where two states stand there at once
+    next: str | None = None
+    second: str | None = None  # a state in which the element stands there as well
 
 
 @dataclass(frozen=True, kw_only=True)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import asdict, dataclass, fields, replace
 from typing import TYPE_CHECKING, Any
 
@@ -12,6 +13,7 @@ from ..matching.evidence import (
     Evidence,
     InseparableEvidence,
     RivalEvidence,
+    StateEvidence,
     UntestableEvidence,
 )
 from ..matching.settings import Settings
@@ -39,6 +41,7 @@ from .cautions import cautions_for
 if TYPE_CHECKING:
     from ..minima import Analysis
 
+MOST_LOG_ODDS = 14.0  # a million to one: more means nothing
 WIDE_SCAN = 2.0  # highest over lowest energy from which one relative resolution is a rough word
 
 
@@ -206,10 +209,21 @@ def _assignment(element: ElementEvidence, evidence: Evidence) -> Assignment:
             )
             for line in element.lines
         ),
-        state=State(name=state.name, shift_ev=state.shift_ev) if state else None,
+        state=_state(state) if state else None,
         reasons=explain(element, evidence),
         rivals=tuple(_rival(rival) for rival in element.rivals),
         abundance=_abundance(element),
+    )
+
+
+def _state(state: StateEvidence) -> State:
+    two = state.second_name is not None
+    return State(
+        name=state.name,
+        shift_ev=state.shift_ev,
+        odds=None if two else math.exp(min(state.log_odds, MOST_LOG_ODDS)),
+        next=None if two else state.next_name,
+        second=state.second_name,
     )
 
 

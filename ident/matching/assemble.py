@@ -6,7 +6,6 @@ import math
 
 import numpy as np
 
-from .. import tables
 from ..patterns import tilted
 from ..spectrum import FloatArray
 from .amounts import find_abundances, find_limits
@@ -19,14 +18,14 @@ from .evidence import (
     LimitEvidence,
     LineEvidence,
     RivalEvidence,
-    StateEvidence,
 )
-from .options import LOW_LINE_EV, Options
+from .options import LOW_LINE_EV
 from .posterior import Posterior
 from .problem import Problem
 from .scale_evidence import scale_evidence
 from .search import Sums, minimum_costs, sums_of
 from .solve import Solution
+from .states import weigh_states
 
 SHOWN_HEIGHT = 0.08  # weaker lines are listed only when met
 MOST_LINES = 10
@@ -96,7 +95,7 @@ def _element(context: Context, element: int) -> ElementEvidence:
         lines=lines,
         shift_ev=shift,
         shift_sigma_ev=float(np.hypot(1.0, context.solution.axis.sigma_ev)),
-        state=_state(symbol, met, options, index),
+        state=weigh_states(context, element, own),
         strength=strongest,
         prior_log_odds=float(problem.patterns.prior_log_odds[element]),
         common=symbol in {"C", "O"},
@@ -206,28 +205,6 @@ def _sharers(context: Context, others: list[int], minimum: int, total: float) ->
     parts = [(float(options.depth[m, minimum]), int(options.element[m])) for m in others]
     names = context.problem.patterns.symbols
     return tuple(names[e] for part, e in sorted(parts, reverse=True) if part >= 0.1 * total)
-
-
-def _state(symbol: str, met: list[LineEvidence], options: Options, index: int) -> StateEvidence | None:
-    """The tabulated state whose shift lies nearest to the one seen."""
-    rows = [row for row in tables.chemical_shifts(symbol) if any(row.transition == line.transition for line in met)]
-    if not rows:
-        return None
-    scored = []
-    for row in rows:
-        line = next(line for line in met if line.transition == row.transition)
-        valence = row.valence
-        seen = float(options.shift_valence_ev[index] if valence else options.shift_core_ev[index])
-        sigma = math.hypot(row.sigma_ev, math.hypot(1.5, line.found_sigma_ev or 0.0))
-        scored.append((0.5 * ((seen - row.shift_ev) / sigma) ** 2, row))
-    scored.sort(key=lambda pair: pair[0])
-    best_cost, best = scored[0]
-    rest = [(cost, row) for cost, row in scored if row.state != best.state]
-    if best_cost > 2.0 or not rest:
-        return None
-    return StateEvidence(
-        name=best.state, shift_ev=best.shift_ev, next_name=rest[0][1].state, log_odds=rest[0][0] - best_cost
-    )
 
 
 def _rivals(context: Context, element: int, met: list[LineEvidence]) -> tuple[RivalEvidence, ...]:

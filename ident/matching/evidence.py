@@ -48,12 +48,18 @@ class RivalEvidence:
 
 @dataclass(frozen=True, kw_only=True)
 class StateEvidence:
-    """The chemical state whose shift fits best."""
+    """The chemical state that the places of the lines speak for."""
 
     name: str
-    shift_ev: float
+    shift_ev: float  # that the tables give for it, of valence lines where these were seen
     next_name: str | None = None
-    log_odds: float = 0.0  # over the next best state
+    log_odds: float = 0.0  # over the next best state, natural log
+    over_reference: float = 0.0  # the same over the state that the lines' own energies refer to
+    reference: bool = False  # whether it is that state
+    seen_ev: float = 0.0  # shift found, and its standard deviation
+    seen_sigma_ev: float = 0.0
+    second_name: str | None = None  # a state in which the element stands there as well
+    second_shift_ev: float | None = None
 
 
 @dataclass(frozen=True, kw_only=True)

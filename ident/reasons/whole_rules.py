@@ -14,35 +14,55 @@ if TYPE_CHECKING:
 
 LARGE_SHIFT_EV = 5.0
 MOST_LOG_ODDS = 12.0
+MOST_ODDS = 6.9  # a thousand to one, natural log
 MOST_RIVALS = 2
-LEAST_SHIFT_EV = 1.5  # less is within what axis and tables leave open
 LEAST_STATE_ODDS = 1.1  # three to one, natural log
 RARE_LOG_ODDS = -4.6  # one surface in a hundred
 SURE = 0.95
 
 
 def state_to_tell(element: ElementEvidence) -> StateEvidence | None:
-    """Give the state only when the shift is one, speaks for this state rather than none, and rather than the next."""
+    """Give the state when it beats the next three to one, or when two stand there at once."""
     state = element.state
-    if state is None or abs(element.shift_ev) < LEAST_SHIFT_EV or state.log_odds < LEAST_STATE_ODDS:
+    if state is None or (state.log_odds < LEAST_STATE_ODDS and state.second_name is None):
         return None
-    return state if abs(element.shift_ev - state.shift_ev) < abs(element.shift_ev) else None
+    return state
 
 
 class ShiftFitsState(Rule):
-    """The lines are shifted as they are in a known chemical state."""
+    """The lines stand where they do in a known chemical state."""
 
     side: Side = "for"
 
     def says(self, subject: Subject) -> Iterator[Weighed]:
         state = state_to_tell(subject.element)
-        if state is not None:
-            over = f", rather than {state.next_name}" if state.next_name else ""
-            yield (
-                state.log_odds,
-                f"its lines are shifted by {subject.element.shift_ev:+.1f} eV; {state.name} shifts them by "
-                f"{state.shift_ev:+.1f} eV{over}",
-            )
+        if state is None:
+            return
+        if state.second_name is not None:
+            yield 1.0, f"it stands there in two states at once: as {_shifted(state)} and as {_second(state)}"
+            return
+        over = f", {_odds(state.log_odds)} over {state.next_name}" if state.next_name else ""
+        seen = f"shifted by {state.seen_ev:+.1f} +- {state.seen_sigma_ev:.1f} eV"
+        if state.reference:
+            yield 0.3, f"its lines stand where they do in the state '{state.name}' ({seen}{over})"
+        else:
+            yield state.log_odds, f"its lines are {seen}; {state.name} shifts them by {state.shift_ev:+.1f} eV{over}"
+
+
+class StatesAlike(Rule):
+    """The lines are shifted, and two known chemical states fit that alike."""
+
+    side: Side = "untested"
+
+    def says(self, subject: Subject) -> Iterator[Weighed]:
+        state = subject.element.state
+        if state is None or state_to_tell(subject.element) is not None or state.over_reference < LEAST_STATE_ODDS:
+            return
+        yield (
+            0.4,
+            f"its lines are shifted by {state.seen_ev:+.1f} +- {state.seen_sigma_ev:.1f} eV, which fits {state.name} "
+            f"and {state.next_name} ({_odds(state.log_odds)})",
+        )
 
 
 class ShiftLarge(Rule):
@@ -156,6 +176,18 @@ class CannotBeSeparated(Rule):
                 yield 1.2, f"at {pair.at_ev:.1f} eV this scan cannot tell it from {others}"
 
 
+def _odds(log_odds: float) -> str:
+    return f"odds {times(math.exp(log_odds))} to 1" if log_odds < MOST_ODDS else "odds beyond 1000 to 1"
+
+
+def _shifted(state: StateEvidence) -> str:
+    return state.name if state.reference else f"{state.name} ({state.shift_ev:+.1f} eV)"
+
+
+def _second(state: StateEvidence) -> str:
+    return f"{state.second_name} ({state.second_shift_ev or 0.0:+.1f} eV)"
+
+
 def _standing(probability: float) -> str:
     return f"with probability {probability:.2f}" if probability >= 0.01 else "but nothing else supports it"
 
@@ -167,6 +199,7 @@ def _lacks(missing: tuple[tuple[str, float, float], ...]) -> str:
 
 WHOLE_RULES: tuple[type[Rule], ...] = (
     ShiftFitsState,
+    StatesAlike,
     ShiftLarge,
     CommonOnSurfaces,
     RareOnSurfaces,

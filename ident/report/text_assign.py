@@ -9,7 +9,7 @@ from .escape import printable
 from .layout import columns, hanging, heading, probability
 
 if TYPE_CHECKING:
-    from ..identification import Assignment, Identification, Untestable
+    from ..identification import Assignment, Identification, State, Untestable
     from ..reasons import Reason
 
 MOST_LINES = 3
@@ -72,14 +72,19 @@ def _why(answer: Identification) -> Iterator[str]:
         if assignment.verdict == "not supported":
             continue
         yield ""
-        state = f", as {assignment.state.name}" if assignment.state else ""
-        yield f"{assignment.element}: {assignment.verdict}{state}"
+        yield f"{assignment.element}: {assignment.verdict}{_as_state(assignment.state)}"
         called = assignment.verdict in ("present", "likely")
         yield from _sides(assignment.reasons[: MOST_REASONS if called else FEW_REASONS])
     for asked in answer.why_not:
         yield ""
         yield f"Why not {asked.element}? {asked.verdict}, probability {probability(asked.probability)}"
         yield from _sides(asked.reasons)
+
+
+def _as_state(state: State | None) -> str:
+    if state is None:
+        return ""
+    return f", as {state.name}" + (f" and as {state.second}" if state.second else "")
 
 
 def _sides(reasons: tuple[Reason, ...]) -> Iterator[str]:

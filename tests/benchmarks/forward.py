@@ -7,8 +7,8 @@ energy, the axis by 2.5 eV and 0.15 %.
 
 from __future__ import annotations
 
-from collections.abc import Callable
-from dataclasses import dataclass, replace
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, field, replace
 
 import numpy as np
 
@@ -52,6 +52,7 @@ class Case:
     recipe: str
     insulator: bool = False
     notes: tuple[str, ...] = ()
+    states: Mapping[str, str] = field(default_factory=dict)  # element -> element, oxide or both
 
     @property
     def must(self) -> frozenset[str]:
@@ -136,6 +137,7 @@ def build_case(
         seed=seed,
         recipe=recipe,
         insulator=kind == "charging",
+        states={part.element: part.state for part in sample},
         notes=(
             *taken.notes,
             f"axis {setup.scale.offset_ev:+.1f} eV {100 * setup.scale.slope:+.2f} %",

@@ -129,8 +129,13 @@ def test_one_low_line_is_a_weak_foundation() -> None:
 def test_shifts() -> None:
     state = StateEvidence(name="oxide", shift_ev=-7.6, next_name="carbide", log_odds=2.0)
     assert "oxide" in by_code(told(MET, state=state, shift_ev=-8.0))["shift-fits-state"].text
-    assert "shift-fits-state" not in by_code(told(MET, state=state, shift_ev=-0.5))  # no shift to speak of
-    assert "shift-fits-state" not in by_code(told(MET, state=replace(state, log_odds=0.2), shift_ev=-8.0))
+    alike = by_code(told(MET, state=replace(state, log_odds=0.2, over_reference=5.0), shift_ev=-8.0))
+    assert "shift-fits-state" not in alike
+    assert "fits oxide and carbide" in alike["states-alike"].text
+    metal = replace(state, name="element", shift_ev=0.0, reference=True, over_reference=0.0)
+    assert "'element'" in by_code(told(MET, state=metal))["shift-fits-state"].text
+    two = replace(state, second_name="element", second_shift_ev=0.0)
+    assert "two states at once" in by_code(told(MET, state=two))["shift-fits-state"].text
     assert by_code(told(MET, shift_ev=-9.0))["shift-large"].side == "against"
     assert "shift-large" not in by_code(told(MET, shift_ev=-1.0))
 
