@@ -18,13 +18,17 @@ MOST_ODDS = 6.9  # a thousand to one, natural log
 MOST_RIVALS = 2
 LEAST_STATE_ODDS = 1.1  # three to one, natural log
 RARE_LOG_ODDS = -4.6  # one surface in a hundred
-SURE = 0.95
+SURE, CALLED = 0.95, 0.5
 
 
 def state_to_tell(element: ElementEvidence) -> StateEvidence | None:
-    """Give the state when it beats the next three to one, or when two stand there at once."""
+    """Give the state of an element that is called, when it beats the next three to one or two are there at once."""
     state = element.state
-    if state is None or (state.log_odds < LEAST_STATE_ODDS and state.second_name is None):
+    if (
+        state is None
+        or element.probability < CALLED
+        or (state.log_odds < LEAST_STATE_ODDS and state.second_name is None)
+    ):
         return None
     return state
 
@@ -56,7 +60,9 @@ class StatesAlike(Rule):
 
     def says(self, subject: Subject) -> Iterator[Weighed]:
         state = subject.element.state
-        if state is None or state_to_tell(subject.element) is not None or state.over_reference < LEAST_STATE_ODDS:
+        if state is None or subject.element.probability < CALLED or state_to_tell(subject.element) is not None:
+            return
+        if state.over_reference < LEAST_STATE_ODDS:
             return
         yield (
             0.4,

@@ -91,6 +91,7 @@ class Setup:
     recording: Recording
     tilt: float  # exponent: all depths go as (E / 500 eV) ** tilt
     film_nm: float
+    energy_scatter: float = 1.0  # of lines about their published energies; less for the metals of a calibration
 
 
 def make_case(kind: str, seed: int) -> Case:
@@ -206,13 +207,13 @@ def _window_axes(rng: np.random.Generator, sample: tuple[Constituent, ...], scal
 def emit(rng: np.random.Generator, part: Constituent, setup: Setup) -> list[Emission]:
     """Emit every line of one element, in one state or two, and lines that no table lists."""
     losses = draw_losses(rng, part.element)
-    own_ev = rng.normal(0.0, 1.5)
+    own_ev = setup.energy_scatter * rng.normal(0.0, 1.5)
     shift = np.array(OXIDE_SHIFT_EV.get(part.element, OTHER_SHIFT_EV)) * rng.uniform(0.6, 1.1)
     oxide_part = {"element": 0.0, "oxide": 1.0, "both": rng.uniform(0.25, 0.75)}[part.state]
     emitted = []
     rows = published_lines()[part.element]
     for row in rows + _unlisted(rng, rows):
-        moved = own_ev + rng.normal(0.0, 1.0)
+        moved = own_ev + setup.energy_scatter * rng.normal(0.0, 1.0)
         height = part.strength * row.relative_height * np.exp(rng.normal(0.0, 0.3))
         width = row.width_ev * np.exp(rng.normal(0.0, 0.25))
         lean = rng.uniform(1.2, 1.8) if row.valence else rng.uniform(1.1, 1.5)

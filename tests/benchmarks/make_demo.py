@@ -50,6 +50,7 @@ class Demo:
     offset_ev: float = 1.2
     slope: float = 0.0006
     film_nm: float = 0.0
+    energy_scatter: float = 1.0
     expect: tuple[str, ...] = ()  # what the part is known to be made of, without which the scan cannot tell
 
     @property
@@ -101,6 +102,7 @@ def _names(demo: Demo) -> tuple[str, str]:
     return "energy (eV)", f"{ordinate} ({units[how.unit]})"
 
 
+SHARP = replace(GOOD, signal_to_noise=200.0)
 CONTACT = replace(GOOD, unit="per second", signal_to_noise=160.0)
 
 DEMOS: tuple[Demo, ...] = (
@@ -218,6 +220,26 @@ DEMOS: tuple[Demo, ...] = (
         recording=replace(GOOD, gains=(2.0, 1.0, 1.0, 1.5, 1.5), signal_to_noise=70.0),
         expect=("Cu", "Zn"),
     ),
+    Demo(
+        file="copper_foil.csv",
+        part="copper foil, sputtered clean: to set the energy axis of the bench",
+        surface="Cu 1.0; C 0.03",
+        seed=DEMO_SEEDS[30],
+        axes_ev=(_scan(30, 1100, 0.5),),
+        write=_csv,
+        recording=SHARP,
+        energy_scatter=0.1,
+    ),
+    Demo(
+        file="gold_foil.csv",
+        part="gold foil, sputtered clean: to set the energy axis of the bench",
+        surface="Au 1.0; C 0.03",
+        seed=DEMO_SEEDS[31],
+        axes_ev=(_scan(30, 2200, 0.5),),
+        write=_csv,
+        recording=SHARP,
+        energy_scatter=0.1,
+    ),
 )
 
 
@@ -234,6 +256,7 @@ def demo_cases() -> dict[str, Case]:
             recording=demo.recording,
             tilt=0.0,
             film_nm=demo.film_nm,
+            energy_scatter=demo.energy_scatter,
         )
         cases[demo.file] = build_case(rng, setup, demo.sample, kind="demo", seed=demo.seed, recipe=demo.part)
     return cases
