@@ -13,7 +13,7 @@ from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
     from .errors import IdentError
-    from .identification import Identification, identify
+    from .identification import Identification, identify, identify_together
     from .lookup import candidates_at, element_card
     from .matching.settings import Settings
     from .readers import read_spectra, read_spectrum
@@ -35,6 +35,7 @@ __all__ = [
     "candidates_at",
     "element_card",
     "identify",
+    "identify_together",
     "load_scale",
     "read_labels",
     "read_spectra",
@@ -54,6 +55,7 @@ _HOMES = {
     "candidates_at": "lookup",
     "element_card": "lookup",
     "identify": "identification",
+    "identify_together": "identification",
     "load_scale": "scale",
     "read_labels": "rechecking",
     "read_spectra": "readers",

@@ -21,7 +21,8 @@ if TYPE_CHECKING:
 @figure_option
 @with_options(READING)
 @with_options(KNOWING)
-def command(spectra: tuple[str, ...], form: str, figure: str | None, **given: Any) -> int:
+@click.option("--together", is_flag=True, help="The spectra are of one sitting: one offset and slope of the axis.")
+def command(spectra: tuple[str, ...], form: str, figure: str | None, together: bool, **given: Any) -> int:
     """Name the elements in each SPECTRUM, ranked, with probability and reasons.
 
     SPECTRUM is a text table (energy and ordinate in columns) or an ISO 14976 file; - reads standard input.
@@ -41,15 +42,45 @@ def command(spectra: tuple[str, ...], form: str, figure: str | None, **given: An
     if form == "csv":
         _write_head()
 
+    sitting = _Sitting(settings)
+
     def answer(spectrum: Spectrum) -> tuple[bool, Sequence[str]]:
-        examined = examine(spectrum, settings)
-        found = examined.answer
+        examined = examine(spectrum, sitting.of(spectrum))
+        found = sitting.warned(examined.answer, spectrum)
         click.echo(_rendered(found, form), nl=False)
         if figures is not None:
             figures.draw(examined)
         return found.minima > 0, found.warnings
 
-    return answer_each(spectra, reading, answer)
+    return answer_each(spectra, reading, answer, beforehand=sitting.note if together else None)
+
+
+class _Sitting:
+    """The settings of each spectrum, with what the others of the sitting say of its axis."""
+
+    def __init__(self, settings: Settings) -> None:
+        self._settings = settings
+        self._known: dict[int, Settings] | None = None
+
+    def note(self, spectra: Sequence[Spectrum]) -> None:
+        """Look at all spectra of the sitting."""
+        from dataclasses import replace
+
+        from ..identification import sittings_of
+
+        found = zip(spectra, sittings_of(spectra, self._settings), strict=True)
+        known = {id(spectrum): replace(self._settings, sitting=sitting) for spectrum, sitting in found}
+        self._known = known if len(known) > 1 else None
+
+    def of(self, spectrum: Spectrum) -> Settings:
+        """Settings for one spectrum."""
+        return self._settings if self._known is None else self._known[id(spectrum)]
+
+    def warned(self, found: Identification, spectrum: Spectrum) -> Identification:
+        """Add a warning where the others could not help."""
+        from ..identification import warned_of_sitting
+
+        return found if self._known is None else warned_of_sitting(found, self.of(spectrum).sitting)
 
 
 def settings_of(given: dict[str, Any]) -> Settings:
@@ -60,6 +91,7 @@ def settings_of(given: dict[str, Any]) -> Settings:
     return Settings(
         beam_kev=given["beam"],
         insulator=given["insulator"],
+        sputtered=given["sputtered"],
         commonness=not given["no_commonness"],
         expect=given["expect"],
         rule_out=given["rule_out"],

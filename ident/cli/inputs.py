@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import sys
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Iterable, Iterator, Sequence
 from dataclasses import dataclass, field
 from typing import Any
 
@@ -65,7 +65,13 @@ class Tally:
         return ANSWERED if any(self.answered) else NOTHING
 
 
-def answer_each(paths: Sequence[str], reading: Reading, answer: Answer) -> int:
+def answer_each(
+    paths: Sequence[str],
+    reading: Reading,
+    answer: Answer,
+    *,
+    beforehand: Callable[[Sequence[Spectrum]], None] | None = None,
+) -> int:
     """Put a question to every spectrum of every file, and give the exit code.
 
     Parameters
@@ -76,8 +82,21 @@ def answer_each(paths: Sequence[str], reading: Reading, answer: Answer) -> int:
         How to read them.
     answer : callable
         Writes the answer for one spectrum; gives whether anything stood above the noise, and the warnings.
+    beforehand : callable, optional
+        Is given all spectra before the first is answered, for questions that look at several at once.
     """
     tally = Tally()
+    coming: Iterable[Spectrum] = _spectra(paths, reading, tally)
+    if beforehand is not None:
+        coming = list(coming)
+        beforehand(coming)
+    for spectrum in coming:
+        _answer_one(spectrum, reading, answer, tally)
+    return tally.exit_code()
+
+
+def _spectra(paths: Sequence[str], reading: Reading, tally: Tally) -> Iterator[Spectrum]:
+    """Read one file after the other; say of each that cannot be read why."""
     for place, path in enumerate(paths):
         _progress(place, paths, reading)
         try:
@@ -86,9 +105,7 @@ def answer_each(paths: Sequence[str], reading: Reading, answer: Answer) -> int:
             complain(str(failed))
             tally.failed += 1
             continue
-        for spectrum in spectra:
-            _answer_one(spectrum, reading, answer, tally)
-    return tally.exit_code()
+        yield from spectra
 
 
 def _answer_one(spectrum: Spectrum, reading: Reading, answer: Answer, tally: Tally) -> None:

@@ -103,6 +103,7 @@ KNOWING = (
     click.option("--expect", multiple=True, callback=_names, metavar="NAMES", help="Elements likelier than usual."),
     click.option("--rule-out", multiple=True, callback=_names, metavar="NAMES", help="Elements that cannot be there."),
     click.option("--why-not", multiple=True, callback=_names, metavar="NAMES", help="Say why these are not named."),
+    click.option("--sputtered", metavar="GAS", help="What the surface was sputtered with last, such as Ar."),
     click.option("--insulator", is_flag=True, help="The sample may charge: allow the axis tens of eV."),
     click.option("--no-commonness", is_flag=True, help="Take every element for equally common."),
 )

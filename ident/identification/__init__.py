@@ -25,6 +25,7 @@ from .answer import (
     verdict_of,
 )
 from .build import Examination, examine, identify, relative_resolution
+from .together import identify_together, sittings_of, warned_of_sitting
 
 __all__ = [
     "UNCALIBRATED",
@@ -44,8 +45,11 @@ __all__ = [
     "WhyNot",
     "examine",
     "identify",
+    "identify_together",
     "minima_answer",
     "plain_data",
     "relative_resolution",
+    "sittings_of",
     "verdict_of",
+    "warned_of_sitting",
 ]

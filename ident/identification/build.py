@@ -86,7 +86,7 @@ def examine(spectrum: Spectrum, settings: Settings | None = None, **settings_giv
     from ..matching import weigh
     from ..minima import analyse
 
-    chosen = _settle(settings, settings_given)
+    chosen = settings_from(settings, settings_given)
     if chosen.beam_kev is None and spectrum.header.beam_kev is not None:
         chosen = _with_beam(chosen, spectrum.header.beam_kev)
     resolution, notes = relative_resolution(spectrum, chosen)
@@ -118,7 +118,7 @@ def assemble(analysis: Analysis, evidence: Evidence, settings: Settings, notes: 
         slope=evidence.scale.slope,
         slope_sigma=evidence.scale.slope_sigma,
         charging=evidence.scale.charging,
-        source=UNCALIBRATED if settings.scale is None else settings.scale.summary(),
+        source=_scale_source(settings),
         readings=evidence.scale.readings,
     )
     return Identification(
@@ -149,7 +149,7 @@ def assemble(analysis: Analysis, evidence: Evidence, settings: Settings, notes: 
         why_not=tuple(_why_not(asked, evidence) for asked in evidence.asked),
         untestable=_untestable(evidence),
         artefacts=tuple(ArtefactNote(energy_ev=a.energy_ev, what=a.what) for a in analysis.artefacts),
-        cautions=cautions_for(assignments, scale),
+        cautions=cautions_for(assignments, scale, settings.sputtered),
         warnings=(*analysis.warnings, *notes),
     )
 
@@ -164,6 +164,12 @@ def _told(settings: Settings) -> dict[str, Any]:
     return told
 
 
+def _scale_source(settings: Settings) -> str:
+    """Say what the axis was known by beforehand."""
+    known = [part.summary() for part in (settings.scale, settings.sitting) if part is not None]
+    return "; ".join(known) if known else UNCALIBRATED
+
+
 def edition() -> str:
     """Say which edition of program and tables made an answer."""
     from .. import __version__, tables
@@ -171,7 +177,7 @@ def edition() -> str:
     return f"ident {__version__}, tables {tables.edition()}"
 
 
-def _settle(settings: Settings | None, given: dict[str, Any]) -> Settings:
+def settings_from(settings: Settings | None, given: dict[str, Any]) -> Settings:
     known = {field.name for field in fields(Settings)}
     strange = sorted(set(given) - known)
     if strange:

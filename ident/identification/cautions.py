@@ -24,7 +24,7 @@ HAZARDS = {
 BEAM_SENSITIVE = ("F", "Cl", "Br", "I", "Na", "K")
 
 
-def cautions_for(assignments: Sequence[Assignment], scale: Scale) -> tuple[str, ...]:
+def cautions_for(assignments: Sequence[Assignment], scale: Scale, sputtered: str | None = None) -> tuple[str, ...]:
     """Give the cautions that apply to these assignments."""
     said = [
         f"{a.element}: {HAZARDS[a.element]}; follow local rules before touching the sample"
@@ -44,4 +44,9 @@ def cautions_for(assignments: Sequence[Assignment], scale: Scale) -> tuple[str, 
         )
     if scale.charging == "yes":
         said.append("the sample charges: energies are moved by several eV, and lines may be broadened or doubled")
+    if sputtered is not None:
+        said.append(
+            "sputtering reduces oxides, mixes layers, roughens and removes some elements faster than others: the "
+            "surface seen is not the one that was there"
+        )
     return tuple(said)

@@ -21,7 +21,7 @@ from .evidence import (
 )
 from .options import LOW_LINE_EV
 from .posterior import Posterior
-from .problem import Problem
+from .problem import FROM_AIR, Problem, prior_log_odds
 from .scale_evidence import scale_evidence
 from .search import Sums, minimum_costs, sums_of
 from .solve import Solution
@@ -97,8 +97,9 @@ def _element(context: Context, element: int) -> ElementEvidence:
         shift_sigma_ev=float(np.hypot(1.0, context.solution.axis.sigma_ev)),
         state=weigh_states(context, element, own),
         strength=strongest,
-        prior_log_odds=float(problem.patterns.prior_log_odds[element]),
-        common=symbol in {"C", "O"},
+        prior_log_odds=float(prior_log_odds(problem.patterns, problem.settings)[element]),
+        common=symbol in FROM_AIR and problem.settings.sputtered is None,
+        sputter_gas=symbol == problem.settings.sputtered,
         single_low_line=len(met) == 1 and met[0].table_ev < LOW_LINE_EV,
         rivals=_rivals(context, element, met),
         abundance=context.abundances.get(element),

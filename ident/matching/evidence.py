@@ -85,6 +85,7 @@ class ElementEvidence:
     strength: float = 0.0  # depth of its strongest line, units of the differential spectrum
     prior_log_odds: float = 0.0  # what commonness alone said
     common: bool = False  # carbon and oxygen: on nearly everything that has seen air
+    sputter_gas: bool = False  # what the surface was sputtered with
     single_low_line: bool = False  # rests on one line below 110 eV
     rivals: tuple[RivalEvidence, ...] = ()
     abundance: AbundanceEvidence | None = None
@@ -99,6 +100,7 @@ class ScaleEvidence:
     slope: float
     slope_sigma: float
     charging: Charging
+    covariance: tuple[tuple[float, float], ...] = ()  # (2, 2) of offset in eV and slope
     lines_used: int = 0
     readings: tuple[tuple[float, float, float], ...] = ()  # handbook energy, how far too high it reads here, sd; eV
 

@@ -22,6 +22,8 @@ SATELLITE_FAR_PART, SATELLITE_REACH_EV = 0.04, 35.0  # and steps
 CLEAR_OF_THEM = 5.3  # times as deep as that, a minimum asks for an element in full
 SPLIT_WIDTHS, SPLIT_PRICE = 0.7, 3.0
 ELEMENT_PRICE, COMMONNESS_WEIGHT, EVEN_PRICE = 2.3, 0.9, 6.0
+# After sputtering its gas is often there, and carbon and oxygen are not taken for granted (common practice, no source).
+SPUTTER_GAS_LOG_ODDS, SPUTTERED_AIR_LOG_ODDS, FROM_AIR = 0.0, 0.0, ("C", "O")
 EXPECTED_BONUS, EXPECTED_PRICE = 2.5, 0.6  # what is expected is as likely as carbon and oxygen, however rare it is
 USUAL_RESOLUTION = 0.0055
 
@@ -149,9 +151,20 @@ def _hidden_depth(grid: FloatArray, energy: FloatArray, depth: FloatArray, width
     return np.max(depth[:, None] * np.maximum(near, far), axis=0)
 
 
+def prior_log_odds(patterns: Patterns, settings: Settings) -> FloatArray:
+    """How likely each element is before its lines are looked at (e,), natural log odds."""
+    odds = patterns.prior_log_odds
+    if settings.sputtered is None:
+        return odds
+    gas = np.array([symbol == settings.sputtered for symbol in patterns.symbols])
+    air = np.array([symbol in FROM_AIR for symbol in patterns.symbols])
+    odds = np.where(air, np.minimum(odds, SPUTTERED_AIR_LOG_ODDS), odds)
+    return np.where(gas, np.maximum(odds, SPUTTER_GAS_LOG_ODDS), odds)
+
+
 def _element_price(patterns: Patterns, settings: Settings) -> FloatArray:
     if settings.commonness:
-        price = ELEMENT_PRICE - COMMONNESS_WEIGHT * patterns.prior_log_odds
+        price = ELEMENT_PRICE - COMMONNESS_WEIGHT * prior_log_odds(patterns, settings)
     else:
         price = np.full(len(patterns.symbols), EVEN_PRICE)
     expected = np.array([symbol in settings.expect for symbol in patterns.symbols])

@@ -27,6 +27,7 @@ def scale_evidence(problem: Problem, solution: Solution) -> ScaleEvidence:
         slope=fit.slope,
         slope_sigma=math.sqrt(float(fit.covariance[1, 1])),
         charging=_charging(fit.offset_ev - _expected_offset_ev(problem), offset_sigma, used),
+        covariance=tuple((float(row[0]), float(row[1])) for row in fit.covariance),
         lines_used=used,
         readings=tuple(_reading(fit, energy_ev) for energy_ev in _places(problem)) if used else (),
     )

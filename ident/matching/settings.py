@@ -7,7 +7,7 @@ from dataclasses import dataclass
 
 from ..errors import SettingError
 from ..names import symbol_from_name
-from ..scale import ScaleCalibration
+from ..scale import ScaleCalibration, Sitting
 
 BEAM_KEV = (0.1, 50.0)  # what electron guns for this job give
 RESOLUTION = (1e-5, 0.05)
@@ -24,9 +24,10 @@ class Settings:
     SettingError
         When a number is outside what can be, or the names contradict each other.
     UnknownNameError
-        When a name in `expect`, `rule_out` or `why_not` is no element.
+        When `sputtered` or a name in `expect`, `rule_out` or `why_not` is no element.
     """
 
+    sputtered: str | None = None  # gas that the surface was sputtered with last: some of it stays, carbon goes
     beam_kev: float | None = None  # primary energy; the header's, or unknown, when None
     insulator: bool = False  # the axis may be off by tens of eV
     commonness: bool = True  # use the prior of how often each element is met on surfaces
@@ -36,6 +37,7 @@ class Settings:
     resolution: float | None = None  # relative, 0.005 for 0.5 %
     resolution_ev: float | None = None  # absolute, eV
     scale: ScaleCalibration | None = None  # calibration of the axis, instead of what axes usually are
+    sitting: Sitting | None = None  # what other spectra of the same sitting say of the axis, `scale` included
 
     def __post_init__(self) -> None:
         _check("beam_kev", self.beam_kev, BEAM_KEV, "keV")
@@ -45,6 +47,10 @@ class Settings:
             raise SettingError("a resolution is either relative or in eV, not both; give one of them")
         if self.scale is not None and not isinstance(self.scale, ScaleCalibration):
             raise SettingError("scale is a calibration, such as calibrate_scale or load_scale give")
+        if self.sitting is not None and not isinstance(self.sitting, Sitting):
+            raise SettingError("sitting is what find_sittings gives of an axis; use identify_together")
+        if self.sputtered is not None:
+            object.__setattr__(self, "sputtered", symbol_from_name(self.sputtered))
         object.__setattr__(self, "expect", _symbols("expect", self.expect))
         object.__setattr__(self, "rule_out", _symbols("rule_out", self.rule_out))
         object.__setattr__(self, "why_not", _symbols("why_not", self.why_not))

@@ -60,7 +60,8 @@ def _starts_ev(problem: Problem) -> FloatArray:
     """Offsets from the prior's to search from; few where a calibration says where the axis is."""
     if problem.settings.insulator:
         return np.arange(-60.0, 61.0, 4.0)
-    return np.array(STARTS_EV if problem.settings.scale is None else CALIBRATED_STARTS_EV)
+    placed = problem.settings.scale is not None or problem.settings.sitting is not None
+    return np.array(CALIBRATED_STARTS_EV if placed else STARTS_EV)
 
 
 def _distinct(solutions: list[Solution]) -> list[Solution]:
@@ -82,6 +83,8 @@ def axis_prior(problem: Problem) -> AxisPrior:
     """What is known of the axis beforehand."""
     calibration = problem.settings.scale
     prior = usual_axis() if calibration is None else calibration.prior()
+    if problem.settings.sitting is not None:
+        prior = problem.settings.sitting.prior()
     return prior.of_insulator() if problem.settings.insulator else prior
 
 

@@ -97,6 +97,16 @@ class CommonOnSurfaces(Rule):
             yield max(0.1, odds), f"found on nearly every surface that has seen air{told}"
 
 
+class SputterGas(Rule):
+    """The surface was sputtered with the element, and some of it stays."""
+
+    side: Side = "for"
+
+    def says(self, subject: Subject) -> Iterator[Weighed]:
+        if subject.element.sputter_gas:
+            yield 1.0, "the surface was sputtered with it, which leaves some of it implanted: it need not be the part's"
+
+
 class RareOnSurfaces(Rule):
     """The element is seldom met, so that it takes more to believe it."""
 
@@ -208,6 +218,7 @@ WHOLE_RULES: tuple[type[Rule], ...] = (
     StatesAlike,
     ShiftLarge,
     CommonOnSurfaces,
+    SputterGas,
     RareOnSurfaces,
     OneLowLine,
     RestsOnOneLine,

@@ -6,6 +6,7 @@ from .axis import CHARGING_FROM_EV, ELEMENT_SIGMA_EV, AxisFit, AxisPrior, fit_ax
 from .calibrate import calibrate, calibrate_scale, reference_metal
 from .calibration import CalibrationLine, Deviation, ScaleCalibration
 from .saved import load_scale, save_scale
+from .sitting import FittedAxis, Sitting, find_sittings
 
 __all__ = [
     "CHARGING_FROM_EV",
@@ -14,9 +15,12 @@ __all__ = [
     "AxisPrior",
     "CalibrationLine",
     "Deviation",
+    "FittedAxis",
     "ScaleCalibration",
+    "Sitting",
     "calibrate",
     "calibrate_scale",
+    "find_sittings",
     "fit_axis",
     "load_scale",
     "reference_metal",
