@@ -20,6 +20,7 @@ PUBLIC = {
     "candidates_at",
     "element_card",
     "identify",
+    "identify_together",
     "load_scale",
     "read_spectra",
     "read_labels",
