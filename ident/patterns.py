@@ -15,9 +15,6 @@ from .spectrum import FloatArray
 
 IntArray = NDArray[np.int64]
 TILT_PIVOT_EV = 400.0
-PARTNERS = {
-    "oxide": "O", "phate": "O", "carbonate": "O", "nitride": "N", "carbide": "C", "fluoride": "F", "sulphide": "S",
-}  # fmt: skip
 FIRM_HEIGHT = 0.3  # where an element has no published line, its derived lines this strong stand in for them
 
 
@@ -106,7 +103,7 @@ def _states(symbols: tuple[str, ...]) -> tuple[FloatArray, FloatArray, IntArray]
     place = {symbol: index for index, symbol in enumerate(symbols)}
     for index, symbol in enumerate(symbols):
         for row in tables.chemical_shifts(symbol):
-            partner = place.get(_partner(symbol, row.state), -1)
+            partner = place.get(row.partner, -1)
             rows.setdefault((index, int(row.valence)), []).append((row.shift_ev, row.sigma_ev, partner))
     most = 1 + max((len(states) for states in rows.values()), default=0)
     shift = np.zeros((len(symbols), 2, most))
@@ -117,13 +114,6 @@ def _states(symbols: tuple[str, ...]) -> tuple[FloatArray, FloatArray, IntArray]
             at = (index, valence, column)
             shift[at], sigma[at], partner_of[at] = shift_ev, sigma_ev, partner
     return shift, sigma, partner_of
-
-
-def _partner(symbol: str, state: str) -> str:
-    """Element that a state is with: oxygen for anything with oxygen in it, else the other one of its formula."""
-    others = [found for found in re.findall(r"[A-Z][a-z]?", state) if found not in (symbol, "H")]
-    words = [partner for word, partner in PARTNERS.items() if word in state]
-    return "O" if "O" in others else (words + others + [""])[0]
 
 
 def tilted(height: FloatArray, energy_ev: FloatArray, tilt: float) -> FloatArray:

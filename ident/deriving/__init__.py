@@ -1,8 +1,8 @@
 """The derived tables from their inputs; the only place that imports the X-ray libraries.
 
 Inputs, kept by hand: published_lines.csv, published_sensitivities.csv, families.csv, chemical_shifts.csv,
-shift_priors.csv, commonness.csv, sources.csv. Derived from them: binding_energies.csv, transitions.csv, lines.csv,
-sensitivities.csv, materials.csv, rivals.csv.
+shift_ranges.csv, commonness.csv, sources.csv. Derived from them: binding_energies.csv, transitions.csv, lines.csv,
+sensitivities.csv, materials.csv, shift_priors.csv, rivals.csv.
 """
 
 from __future__ import annotations
@@ -66,6 +66,18 @@ MATERIAL_COLUMNS = [
     "state",
     "source",
 ]
+PRIOR_COLUMNS = [
+    "symbol",
+    "z",
+    "valence",
+    "state_class",
+    "partner",
+    "oxidation_state",
+    "shift_ev",
+    "sigma_ev",
+    "kind",
+    "source",
+]
 RIVAL_COLUMNS = [
     "symbol",
     "z",
@@ -88,6 +100,7 @@ def derived_tables() -> dict[str, str]:
     from .materials import material_rows
     from .rivals import rival_rows
     from .sensitivity import sensitivity_rows
+    from .shifts import prior_rows
 
     made: dict[str, Callable[[], str]] = {
         "binding_energies.csv": lambda: rendered(BINDING_COLUMNS, binding_rows()),
@@ -95,6 +108,7 @@ def derived_tables() -> dict[str, str]:
         "lines.csv": lambda: rendered(LINE_COLUMNS, _line_rows()),
         "sensitivities.csv": lambda: rendered(SENSITIVITY_COLUMNS, sensitivity_rows(_elements())),
         "materials.csv": lambda: rendered(MATERIAL_COLUMNS, material_rows()),
+        "shift_priors.csv": lambda: rendered(PRIOR_COLUMNS, prior_rows()),
         "rivals.csv": lambda: rendered(RIVAL_COLUMNS, rival_rows(_elements())),
     }
     return {name: make() for name, make in made.items()}

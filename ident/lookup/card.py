@@ -40,8 +40,10 @@ class CardShift:
 
     transition: str
     state: str
+    state_class: str  # oxide, sulphide and so on
     shift_ev: float
     sigma_ev: float
+    origin: str  # read, from memory, or estimated from electronegativity and oxidation state
     source: str
 
 
@@ -70,7 +72,7 @@ class ElementCard:
     undecided_beside: tuple[str, ...]  # those rivals
     decision: str  # the same in words
     escape: CardEscape | None  # how depths were worked out
-    shifts: tuple[CardShift, ...]
+    shifts: tuple[CardShift, ...]  # of known states, or of those expected where none is known
     sources: tuple[CardSource, ...]
     untestable: str | None  # why no line can be given, if none can
 
@@ -104,12 +106,7 @@ def element_card(name: str, *, scale: EnergyScale = HANDBOOK, emission_deg: floa
         if line.relative_height >= SHOWN_HEIGHT
     )
     decision = decision_on(symbol, scale)
-    shifts = tuple(
-        CardShift(
-            transition=row.transition, state=row.state, shift_ev=row.shift_ev, sigma_ev=row.sigma_ev, source=row.source
-        )
-        for row in tables.chemical_shifts(symbol)
-    )
+    shifts = _known_shifts(symbol) or _expected_shifts(symbol)
     return ElementCard(
         element=symbol,
         name=name_of(symbol),
@@ -157,6 +154,41 @@ def _card_line(line: tables.Line, scale: EnergyScale, emission_deg: float, rival
         mean_free_path_formula=path.formula,
         depth_nm=line_depth_nm(path, emission_deg),
         rivals=rivals,
+    )
+
+
+def _known_shifts(symbol: str) -> tuple[CardShift, ...]:
+    return tuple(
+        CardShift(
+            transition=row.transition,
+            state=row.state,
+            state_class=row.state_class,
+            shift_ev=row.shift_ev,
+            sigma_ev=row.sigma_ev,
+            origin=row.status,
+            source=row.source,
+        )
+        for row in tables.chemical_shifts(symbol)
+    )
+
+
+ROMAN = ("0", "I", "II", "III", "IV", "V", "VI", "VII", "VIII")
+
+
+def _expected_shifts(symbol: str) -> tuple[CardShift, ...]:
+    """What the usual compounds should do where no shift is known, at the strongest line of each class."""
+    strongest = {line.valence: line.transition for line in reversed(tables.lines_of(symbol))}
+    return tuple(
+        CardShift(
+            transition=strongest[row.valence],
+            state=f"{symbol}({ROMAN[row.oxidation_state]}) {row.state_class}",
+            state_class=row.state_class,
+            shift_ev=row.shift_ev,
+            sigma_ev=row.sigma_ev,
+            origin="estimated",
+            source=row.source,
+        )
+        for row in tables.shift_priors(symbol)
     )
 
 

@@ -3,14 +3,13 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
 
 from .. import tables
-from ..patterns import _partner
 from ..spectrum import FloatArray
 from .context import Context
 from .evidence import StateEvidence
@@ -47,7 +46,7 @@ class Seen:
 
 
 def states_of(symbol: str) -> tuple[State, ...]:
-    """States of an element: the one that its lines' energies refer to, then those whose shifts are tabulated."""
+    """States of an element: the one that its lines' energies refer to, then those with known or expected shifts."""
     rows: dict[str, list[tables.ChemicalShift]] = {}
     for row in tables.chemical_shifts(symbol):
         rows.setdefault(row.state, []).append(row)
@@ -59,10 +58,27 @@ def states_of(symbol: str) -> tuple[State, ...]:
         partner="",
         known=np.ones(2, dtype=bool),
     )
-    return (reference, *(_state(symbol, name, members) for name, members in rows.items()))
+    if not rows:
+        return (reference, *_estimated(symbol))
+    return (reference, *(_state(name, members) for name, members in rows.items()))
 
 
-def _state(symbol: str, name: str, rows: Sequence[tables.ChemicalShift]) -> State:
+def _estimated(symbol: str) -> Iterator[State]:
+    """States of an element of which no shift is known, one a class of compounds, from electronegativities."""
+    rows: dict[str, list[tables.ShiftPrior]] = {}
+    for row in tables.shift_priors(symbol):
+        rows.setdefault(row.state_class, []).append(row)
+    for name, members in rows.items():
+        shift, sigma, known = np.zeros(2), np.array(UNKNOWN_SIGMA_EV), np.zeros(2, dtype=bool)
+        for place in {int(row.valence) for row in members}:
+            own = [row for row in members if int(row.valence) == place]
+            shifts = [row.shift_ev for row in own]
+            shift[place], known[place] = float(np.mean(shifts)), True
+            sigma[place] = math.hypot(own[0].sigma_ev, float(np.std(shifts)))
+        yield State(name=f"{name} (estimated)", shift_ev=shift, sigma_ev=sigma, partner=members[0].partner, known=known)
+
+
+def _state(name: str, rows: Sequence[tables.ChemicalShift]) -> State:
     shift, sigma, known = np.zeros(2), np.array(UNKNOWN_SIGMA_EV), np.zeros(2, dtype=bool)
     for place in (0, 1):
         own = [row for row in rows if int(row.valence) == place]
@@ -70,7 +86,7 @@ def _state(symbol: str, name: str, rows: Sequence[tables.ChemicalShift]) -> Stat
             shift[place] = float(np.mean([row.shift_ev for row in own]))
             sigma[place] = float(np.mean([row.sigma_ev for row in own]))
             known[place] = True
-    return State(name=name, shift_ev=shift, sigma_ev=sigma, partner=_partner(symbol, name), known=known)
+    return State(name=name, shift_ev=shift, sigma_ev=sigma, partner=rows[0].partner, known=known)
 
 
 def weigh_states(context: Context, element: int, own: list[int]) -> StateEvidence | None:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from typing import TYPE_CHECKING
 
 from .escape import printable
@@ -96,8 +96,7 @@ def render_card(card: ElementCard) -> str:
     parts.append(hanging("decided" if card.decided_by else "undecided", card.decision))
     if card.escape is not None:
         parts += _escape(card)
-    for shift in card.shifts:
-        parts.append(hanging("shift", f"{shift.transition} {shift.shift_ev:+.1f} eV in {shift.state}"))
+    parts += [hanging(side, text) for side, text in _shifts(card)]
     states = dict.fromkeys(line.state for line in card.lines if line.state)
     if states:
         parts.append(hanging("refers to", ", ".join(states)))
@@ -105,6 +104,16 @@ def render_card(card: ElementCard) -> str:
         doi = f", doi {source.doi}" if source.doi else ""
         parts.append(hanging("source", f"{source.key}: {source.text}{doi}"))
     return printable_lines(parts) + "\n\n"
+
+
+def _shifts(card: ElementCard) -> Iterator[tuple[str, str]]:
+    """Shifts of one transition on one line, in eV with their standard deviations."""
+    for transition in dict.fromkeys(shift.transition for shift in card.shifts):
+        own = [shift for shift in card.shifts if shift.transition == transition]
+        told = ", ".join(f"{shift.state} {shift.shift_ev:+.1f} +- {shift.sigma_ev:.1f}" for shift in own)
+        guess = all(shift.origin == "estimated" for shift in own)
+        why = "; estimated from electronegativity and oxidation state, none is known" if guess else ""
+        yield "shifts", f"{transition} by {told} eV{why}"
 
 
 def _rivals(line: CardLine) -> str:

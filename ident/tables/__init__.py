@@ -18,6 +18,7 @@ from .rows import (
     ScaleLine,
     Sensitivity,
     ShiftPrior,
+    ShiftRange,
     Source,
 )
 from .views import (
@@ -34,6 +35,7 @@ from .views import (
     rivals_of,
     scale_lines,
     sensitivities,
+    shift_priors,
     shift_range,
     sources,
 )
@@ -53,6 +55,7 @@ __all__ = [
     "ScaleLine",
     "Sensitivity",
     "ShiftPrior",
+    "ShiftRange",
     "Source",
     "atomic_number",
     "binding_energies",
@@ -70,6 +73,7 @@ __all__ = [
     "rivals_of",
     "scale_lines",
     "sensitivities",
+    "shift_priors",
     "shift_range",
     "sources",
 ]

@@ -192,6 +192,10 @@ def _integer(cell: str) -> int:
     return int(cell)
 
 
+def _optional_integer(cell: str) -> int | None:
+    return None if cell == "" else _integer(cell)
+
+
 def _text(cell: str) -> str:
     return cell
 
@@ -206,6 +210,7 @@ _READERS: dict[Any, Any] = {
     float: _number,
     float | None: _optional,
     int: _integer,
+    int | None: _optional_integer,
     str: _text,
     bool: _flag,
 }

@@ -13,6 +13,10 @@ from .elements import AFTER_URANIUM, WITH_LINES
 
 STRONG_HEIGHT = 0.2  # of the element's strongest line: from here a line has rivals, is one, or decides
 REFERENCE_METALS = ("Al", "Cu", "Ag", "Au")  # by which energy scales are set
+STATE_CLASSES = frozenset(
+    "element oxide hydroxide nitride carbide sulphide sulphate phosphate carbonate fluoride chloride organic "
+    "compound".split()
+)
 KINDS = frozenset({"measured", "compiled", "calculated", "recalled"})
 
 
@@ -177,21 +181,52 @@ class ChemicalShift:
     unique_by: ClassVar[tuple[str, ...]] = ("symbol", "transition", "state")
 
     symbol: str
+    z: int
     transition: str
-    state: str
+    state: str  # formula or plain name
+    state_class: str
+    partner: str  # element that must be on the surface too, empty for none
+    oxidation_state: int | None
     shift_ev: float
     sigma_ev: float
     valence: bool
+    status: str  # read or from memory
     kind: str
     source: str
 
     def __post_init__(self) -> None:
         _need(self.sigma_ev > 0, "sigma_ev", "must be positive")
+        _need(abs(self.shift_ev) <= 40, "shift_ev", "must lie between -40 and 40 eV")
+        _need(self.state_class in STATE_CLASSES, "state_class", f"must be one of {', '.join(sorted(STATE_CLASSES))}")
+        _need(self.partner == "" or self.partner in WITH_LINES, "partner", "is no element from Li to U")
+        _need(self.status in {"read", "from memory"}, "status", "must be read or from memory")
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class ShiftPrior:
-    """How far chemistry may move a class of lines; symbol * is every element not named."""
+    """Shift that a usual compound of an element is expected to show, where chemical_shifts.csv says nothing."""
+
+    unique_by: ClassVar[tuple[str, ...]] = ("symbol", "valence", "state_class", "oxidation_state")
+
+    symbol: str
+    z: int
+    valence: bool
+    state_class: str
+    partner: str
+    oxidation_state: int
+    shift_ev: float
+    sigma_ev: float
+    kind: str
+    source: str
+
+    def __post_init__(self) -> None:
+        _need(self.state_class in STATE_CLASSES, "state_class", f"must be one of {', '.join(sorted(STATE_CLASSES))}")
+        _need(self.sigma_ev > 0, "sigma_ev", "must be positive")
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class ShiftRange:
+    """How far chemistry may move a class of lines, by judgement; symbol * is every element not named."""
 
     unique_by: ClassVar[tuple[str, ...]] = ("symbol", "valence")
     also: ClassVar[tuple[str, ...]] = ("*",)

@@ -19,8 +19,12 @@ from .rows import (
     ScaleLine,
     Sensitivity,
     ShiftPrior,
+    ShiftRange,
     Source,
 )
+
+PRIOR_PART = 0.5  # of its deviation that an expected shift may go below itself
+HIGH_STATE = 6  # oxidation states beyond are met in solutions more than on surfaces
 
 
 @cache
@@ -76,15 +80,44 @@ def chemical_shifts(symbol: str) -> tuple[ChemicalShift, ...]:
 
 
 @cache
-def _priors() -> dict[tuple[str, bool], tuple[float, float]]:
-    rows = read_rows("shift_priors.csv", ShiftPrior)
+def _priors() -> dict[str, tuple[ShiftPrior, ...]]:
+    grouped: dict[str, list[ShiftPrior]] = {}
+    for row in read_rows("shift_priors.csv", ShiftPrior):
+        grouped.setdefault(row.symbol, []).append(row)
+    return {symbol: tuple(rows) for symbol, rows in grouped.items()}
+
+
+def shift_priors(symbol: str) -> tuple[ShiftPrior, ...]:
+    """Shifts expected of an element's usual compounds; empty when its lines do not refer to the element itself."""
+    return _priors().get(symbol, ())
+
+
+@cache
+def _ranges() -> dict[tuple[str, bool], tuple[float, float]]:
+    rows = read_rows("shift_ranges.csv", ShiftRange)
     return {(row.symbol, row.valence): (row.lowest_ev, row.highest_ev) for row in rows}
 
 
+def _usual_oxides(symbol: str, valence: bool) -> list[ShiftPrior]:
+    oxides = [row for row in shift_priors(symbol) if row.state_class == "oxide" and row.valence == valence]
+    return [row for row in oxides if row.oxidation_state <= HIGH_STATE]
+
+
+@cache
 def shift_range(symbol: str, valence: bool) -> tuple[float, float]:
-    """How far down and up chemistry may move an element's core or valence lines, in eV."""
-    priors = _priors()
-    return priors.get((symbol, valence)) or priors[("*", valence)]
+    """How far down and up chemistry may move an element's core or valence lines, in eV.
+
+    By judgement where shift_ranges.csv names the element; else what it gives for all elements, and as far down as
+    known states, or the oxide that is expected, lie below that.
+    """
+    ranges = _ranges()
+    named = ranges.get((symbol, valence))
+    if named is not None:
+        return named
+    low, high = ranges[("*", valence)]
+    known = [row.shift_ev - row.sigma_ev for row in chemical_shifts(symbol) if row.valence == valence]
+    expected = [] if known else [row.shift_ev - PRIOR_PART * row.sigma_ev for row in _usual_oxides(symbol, valence)]
+    return min([low, *known, *expected]), high
 
 
 @cache

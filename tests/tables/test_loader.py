@@ -30,6 +30,7 @@ KINDS = {
     "scale_lines.csv": tables.ScaleLine,
     "sensitivities.csv": tables.Sensitivity,
     "shift_priors.csv": tables.ShiftPrior,
+    "shift_ranges.csv": tables.ShiftRange,
     "sources.csv": tables.Source,
 }
 BERYLLIUM = "Be,4,0.02,special,recalled,crust"  # line 3 of commonness.csv
@@ -108,11 +109,12 @@ def test_a_damaged_row_is_pointed_at(folder: Path, what: str) -> None:
         ("sensitivities.csv", ",calculated,computed", "e-9,calculated,computed", "factor"),
         ("published_sensitivities.csv", "Ag,47,M5N45N45,1,", "Ag,47,M5N45N45,-1,", "sensitivity"),
         ("families.csv", "calculated,chung1970", "guessed,chung1970", "kind"),
-        ("shift_priors.csv", "Li,1,-12,9", "Li,1,12,9", "highest_ev"),
-        ("shift_priors.csv", "Li,1,-12", "Li,yes,-12", "valence"),
-        ("shift_priors.csv", "Li,1,-12", "?,1,-12", "symbol"),
+        ("shift_ranges.csv", "Li,1,-12,9", "Li,1,12,9", "highest_ev"),
+        ("shift_ranges.csv", "Li,1,-12", "Li,yes,-12", "valence"),
+        ("shift_ranges.csv", "Li,1,-12", "?,1,-12", "symbol"),
+        ("shift_priors.csv", "Ti,22,0,oxide", "Ti,22,0,rust", "state_class"),
         ("chemical_shifts.csv", "recalled,memory", "guessed,memory", "kind"),
-        ("chemical_shifts.csv", "Li,KVV", "*,KVV", "symbol"),
+        ("chemical_shifts.csv", "Li,3,KVV", "*,3,KVV", "symbol"),
         ("binding_energies.csv", "Li,3,K,54.7", "Li,3,K,-54.7", "energy_ev"),
     ],
 )
