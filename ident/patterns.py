@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass
-from functools import lru_cache
 
 import numpy as np
 from numpy.typing import NDArray
@@ -41,7 +40,7 @@ class Patterns:
     state_partner: IntArray  # which element the state is with (index), -1 for none or its own
 
 
-@lru_cache(maxsize=1)
+@tables.cached
 def all_patterns() -> Patterns:
     """The patterns of every element in the table of lines."""
     common = tables.commonness()

@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Any
 
 import click
 
-from .options import KNOWING, READING, figure_option, format_option, with_options
+from .options import KNOWING, READING, figure_option, format_option, tables_option, with_options
 
 if TYPE_CHECKING:
     from ..identification import Identification
@@ -21,6 +21,7 @@ if TYPE_CHECKING:
 @figure_option
 @with_options(READING)
 @with_options(KNOWING)
+@tables_option
 @click.option("--together", is_flag=True, help="The spectra are of one sitting: one offset and slope of the axis.")
 def command(spectra: tuple[str, ...], form: str, figure: str | None, together: bool, **given: Any) -> int:
     """Name the elements in each SPECTRUM, ranked, with probability and reasons.

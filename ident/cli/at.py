@@ -7,7 +7,8 @@ from typing import Any
 import click
 
 from ..lookup import Candidate, EnergyScale, candidates_at
-from .options import STATING, energy_scale, format_option, with_options
+from .options import STATING, energy_scale, format_option, tables_option, with_options
+from .say import say_own_tables
 
 
 @click.command(
@@ -18,6 +19,7 @@ from .options import STATING, energy_scale, format_option, with_options
 @click.argument("energies", nargs=-1, required=True, type=float, metavar="ENERGY...")
 @click.option("--reach", type=float, metavar="EV", help="Only lines at most this many eV away.")
 @with_options(STATING)
+@tables_option
 @format_option
 def command(energies: tuple[float, ...], reach: float | None, form: str, **given: Any) -> int:
     """Name the elements that could explain a minimum at each ENERGY, and what else must then be seen.
@@ -36,9 +38,11 @@ def command(energies: tuple[float, ...], reach: float | None, form: str, **given
 
         rows = [row for energy, candidates in found for row in at_rows(energy, candidates)]
         click.echo(render_rows([AT_COLUMNS, *rows]), nl=False)
+        say_own_tables(form)
         return 0
     for energy, candidates in found:
         click.echo(_rendered(energy, candidates, form, scale), nl=False)
+    say_own_tables(form)
     return 0
 
 

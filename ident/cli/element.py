@@ -8,8 +8,8 @@ import click
 
 from ..errors import UnknownNameError
 from ..lookup import ElementCard, card_answer, element_card
-from .options import STATING, energy_scale, format_option, with_options
-from .say import complain
+from .options import STATING, energy_scale, format_option, tables_option, with_options
+from .say import complain, say_own_tables
 
 
 @click.command("element", short_help="The reference card of an element.")
@@ -22,6 +22,7 @@ from .say import complain
     metavar="DEG",
     help="From the surface normal to where electrons are collected; 42 for a coaxial mirror analyser.",
 )
+@tables_option
 @format_option
 def command(names: tuple[str, ...], emission: float, form: str, **given: Any) -> int:
     """Show the reference card of each element NAME: its lines, their rivals, the line that decides, sources.
@@ -44,6 +45,7 @@ def command(names: tuple[str, ...], emission: float, form: str, **given: Any) ->
             failed = True
     if cards:
         click.echo(_rendered(cards, form), nl=False)
+        say_own_tables(form)
     return 1 if failed else 0
 
 

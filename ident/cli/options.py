@@ -98,6 +98,23 @@ scale_option = click.option(
 
 READING = (*RECORDED, scale_option)
 
+
+def _own_tables(_: click.Context, __: click.Parameter, value: str | None) -> None:
+    """Lay the user's own tables over the shipped ones before anything is read."""
+    from ..tables import use_tables
+
+    use_tables(value)
+
+
+tables_option = click.option(
+    "--tables",
+    metavar="DIR",
+    is_eager=True,
+    expose_value=False,
+    callback=_own_tables,
+    help="Own tables over the shipped ones, row by row: CSV files named and built like them.",
+)
+
 KNOWING = (
     click.option("--beam", type=float, metavar="KEV", help="Primary energy in keV, when the file does not say it."),
     click.option("--expect", multiple=True, callback=_names, metavar="NAMES", help="Elements likelier than usual."),

@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Any
 
 import click
 
-from .options import KNOWING, READING, format_option, with_options
+from .options import KNOWING, READING, format_option, tables_option, with_options
 
 if TYPE_CHECKING:
     from ..rechecking import Recheck
@@ -20,6 +20,7 @@ if TYPE_CHECKING:
 @format_option
 @with_options(READING)
 @with_options(KNOWING)
+@tables_option
 def command(spectrum: str, labels: str, form: str, **given: Any) -> int:
     """Give a second opinion on the LABELS that somebody, or some program, put on the minima of SPECTRUM.
 

@@ -22,3 +22,17 @@ def warn(text: str) -> None:
 def on_terminal() -> bool:
     """Tell whether a person watches both streams, and so has the warnings before his eyes already."""
     return sys.stdout.isatty() and sys.stderr.isatty()
+
+
+def say_own_tables(form: str) -> None:
+    """Say that own tables lie over the shipped ones, where the answer itself has no place for it."""
+    from .. import tables
+
+    if tables.own_tables() is None or form == "json":
+        return
+    if form == "text":
+        from ..report.layout import hanging
+
+        click.echo(hanging("tables", tables.edition()))
+    else:
+        warn(f"tables {tables.edition()}")

@@ -6,7 +6,7 @@ from typing import TYPE_CHECKING, Any
 
 import click
 
-from .options import RECORDED, format_option, with_options
+from .options import RECORDED, format_option, tables_option, with_options
 from .say import on_terminal, warn
 
 if TYPE_CHECKING:
@@ -33,6 +33,7 @@ def _metals(_: click.Context, __: click.Parameter, value: tuple[str, ...]) -> tu
 @click.option("--save", metavar="FILE", help="Write the calibration, for --scale of the other commands.")
 @format_option
 @with_options(RECORDED)
+@tables_option
 def command(metals: tuple[tuple[str, str], ...], save: str | None, form: str, **given: Any) -> int:
     """Fit offset and slope of the energy axis to spectra of clean reference metals, recorded as the others will be.
 

@@ -4,18 +4,21 @@ from __future__ import annotations
 
 import click
 
-from .options import format_option
+from .options import format_option, tables_option
 from .say import complain
 
 
 @click.command("tables", short_help="List, check and rebuild the open tables.")
 @click.option("--check", "what", flag_value="check", help="Rebuild the derived tables and compare with those here.")
 @click.option("--rebuild", "what", flag_value="rebuild", help="Rebuild the derived tables and write them.")
+@tables_option
 @format_option
 def command(what: str | None, form: str) -> int:
     """List the open tables; check them, or rebuild the derived ones from their inputs.
 
     Example: ident tables --check
+
+    Example: ident tables --tables my_tables
     """
     if what == "check":
         return _check()

@@ -10,10 +10,12 @@ from __future__ import annotations
 from collections.abc import Callable
 from difflib import unified_diff
 
-from ..tables import reference_folder
+from ..tables import forget_tables, reference_folder
 from .writing import Cells, number, rendered
 
 __all__ = ["check_tables", "derived_tables", "rebuild_tables"]
+
+MOST_ROUNDS = 4
 
 LINE_COLUMNS = [
     "symbol",
@@ -131,13 +133,18 @@ def check_tables() -> list[str]:
 def rebuild_tables() -> list[str]:
     """Write the derived tables anew; give the names of those that changed."""
     folder = reference_folder()
-    changed = []
-    for name, text in derived_tables().items():
-        path = folder / name
-        if not path.is_file() or path.read_text(encoding="utf-8") != text:
-            path.write_text(text, encoding="utf-8")
-            changed.append(name)
-    return changed
+    changed: dict[str, None] = {}
+    for _ in range(MOST_ROUNDS):  # some derived tables are made from others: until nothing changes any more
+        fresh = False
+        for name, text in derived_tables().items():
+            path = folder / name
+            if not path.is_file() or path.read_text(encoding="utf-8") != text:
+                path.write_text(text, encoding="utf-8")
+                changed[name], fresh = None, True
+        if not fresh:
+            break
+        forget_tables()
+    return list(changed)
 
 
 def _elements() -> list[tuple[int, str]]:

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
-from functools import cache
 
 import numpy as np
 
@@ -56,7 +55,7 @@ class Pair:
     sigma_ev: float
 
 
-@cache
+@tables.cached
 def references(metal: str) -> tuple[Reference, ...]:
     """Give the reference lines of a metal, as the table has them."""
     return tuple(_reference(row) for row in tables.scale_lines() if row.symbol == metal)

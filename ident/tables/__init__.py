@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from .files import edition, list_tables, reference_folder
+from .files import edition, list_tables, own_tables, reference_folder, use_tables
+from .own import OwnFile, OwnTables, cached, forget_tables
 from .rows import (
     REFERENCE_METALS,
     STRONG_HEIGHT,
@@ -49,6 +50,8 @@ __all__ = [
     "Family",
     "Line",
     "Material",
+    "OwnFile",
+    "OwnTables",
     "PublishedLine",
     "PublishedSensitivity",
     "Rival",
@@ -59,13 +62,16 @@ __all__ = [
     "Source",
     "atomic_number",
     "binding_energies",
+    "cached",
     "chemical_shifts",
     "commonness",
     "edition",
     "families",
+    "forget_tables",
     "lines_of",
     "list_tables",
     "materials",
+    "own_tables",
     "published_lines",
     "published_sensitivities",
     "read_lines",
@@ -76,4 +82,5 @@ __all__ = [
     "shift_priors",
     "shift_range",
     "sources",
+    "use_tables",
 ]

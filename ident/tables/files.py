@@ -12,6 +12,7 @@ from typing import Any, TypeVar, get_type_hints
 
 from ..errors import TableError
 from .elements import NUMBERS, WITH_LINES
+from .own import OwnFile, OwnTables, digest, forget_tables, own_files
 from .rows import KINDS
 
 Row = TypeVar("Row")
@@ -48,9 +49,13 @@ def reference_folder() -> Path:
     raise TableError(f"the tables are missing; looked in {inside} and {beside}: install ident again", file="reference")
 
 
-@cache
 def edition() -> str:
-    """Edition of the tables: the first heading of EDITIONS.md, such as 2026.12."""
+    """Edition of the tables: the first heading of EDITIONS.md, such as 2026.12, and what own rows lie over them."""
+    return _shipped_edition() if _own is None else f"{_shipped_edition()} with {_own.summary()}"
+
+
+@cache
+def _shipped_edition() -> str:
     path = reference_folder() / "EDITIONS.md"
     try:
         text = path.read_text(encoding="utf-8")
@@ -80,11 +85,73 @@ def read_rows(name: str, kind: type[Row], folder: Path | None = None) -> tuple[R
     TableError
         With file, line, column and value of the first cell that does not fit.
     """
-    path = (folder or reference_folder()) / name
+    rows = _read(folder or reference_folder(), name, kind)
+    if folder is not None or _own is None or not any(file.name == name for file in _own.files):
+        return rows
+    return _laid_over(rows, _read(_own.folder, name, kind))
+
+
+def _read(folder: Path, name: str, kind: type[Row]) -> tuple[Row, ...]:
+    path = folder / name
     try:
         return tuple(_rows(path, kind))
     except (UnicodeDecodeError, csv.Error) as error:
         raise TableError("is no CSV text in UTF-8", file=path.name) from error
+
+
+def _laid_over(shipped: tuple[Row, ...], own: tuple[Row, ...]) -> tuple[Row, ...]:
+    """Shipped rows with those of the same key replaced, and the new ones after them."""
+    rows = {_key(row): row for row in shipped}
+    rows.update((_key(row), row) for row in own)
+    return tuple(rows.values())
+
+
+def _key(row: object) -> tuple[Any, ...]:
+    return tuple(getattr(row, column) for column in type(row).unique_by)  # type: ignore[attr-defined]
+
+
+_own: OwnTables | None = None
+
+
+def own_tables() -> OwnTables | None:
+    """Tables of the user's that lie over the shipped ones, None when there are none."""
+    return _own
+
+
+def use_tables(folder: Path | str | None) -> None:
+    """Lay a user's own tables over the shipped ones, row by row; None goes back to the shipped ones.
+
+    A row whose key (the columns that tell rows of its table apart) is that of a shipped row stands in its place,
+    others are added; `sources.csv` adds sources that the rows may name. Everything made of tables is made anew.
+
+    Raises
+    ------
+    TableError
+        When the folder holds no table, one that the program does not read, or a malformed row: with file, line and
+        column. The tables in use stay as they were.
+    """
+    global _own
+    found = None if folder is None else _checked_tables(Path(folder))
+    if found != _own:
+        _own = found
+        forget_tables()
+
+
+def _checked_tables(folder: Path) -> OwnTables:
+    from .rows import READ
+
+    paths = own_files(folder, frozenset(READ))
+    files = []
+    for path in paths:
+        kind: type[object] = READ[path.name]
+        shipped = {_key(row) for row in _read(reference_folder(), path.name, kind)}
+        try:
+            own = [_key(row) for row in _read(folder, path.name, kind)]
+        except TableError as bad:  # of two files of this name: say which
+            raise TableError(bad.what, file=str(path), line=bad.line, column=bad.column, value=bad.value) from None
+        replaced = sum(key in shipped for key in own)
+        files.append(OwnFile(name=path.name, replaced=replaced, added=len(own) - replaced))
+    return OwnTables(folder=folder, sha256=digest(paths), files=tuple(files))
 
 
 def _rows(path: Path, kind: type[Row]) -> Iterator[Row]:
@@ -148,10 +215,14 @@ def _checked(path: Path, line: int, kind: type[Row], values: dict[str, Any]) -> 
         raise TableError(what, file=path.name, line=line, column=column, value=str(values.get(column))) from None
 
 
-@cache
 def _source_keys(folder: Path) -> frozenset[str]:
-    with (folder / "sources.csv").open(encoding="utf-8", newline="") as stream:
-        return frozenset(row["key"] for row in csv.DictReader(stream))
+    """Keys that rows of a folder may name: the shipped ones, and those of its own sources.csv."""
+    keys: set[str] = set()
+    for path in {reference_folder() / "sources.csv", folder / "sources.csv"}:
+        if path.is_file():
+            with path.open(encoding="utf-8", newline="") as stream:
+                keys |= {row.get("key") or "" for row in csv.DictReader(stream)}
+    return frozenset(keys)
 
 
 def _symbol(cell: str, *, also: tuple[str, ...]) -> str:
@@ -162,7 +233,7 @@ def _symbol(cell: str, *, also: tuple[str, ...]) -> str:
 
 def _source(cell: str, *, known: frozenset[str]) -> str:
     if not cell or any(key not in known for key in cell.split(" ")):
-        raise ValueError("is no key of sources.csv")
+        raise ValueError("is no key of sources.csv, to which a sources.csv beside this file may add")
     return cell
 
 

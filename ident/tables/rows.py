@@ -336,3 +336,18 @@ class Rival:
     def __post_init__(self) -> None:
         _need(self.rival in WITH_LINES and self.rival != self.symbol, "rival", "must be another element from Li to U")
         _need(self.reach_ev > 0, "reach_ev", "must be positive")
+
+
+# The tables that the program reads when it answers; the others serve to rebuild them.
+READ: dict[str, type] = {
+    "chemical_shifts.csv": ChemicalShift,
+    "commonness.csv": Commonness,
+    "lines.csv": Line,
+    "materials.csv": Material,
+    "rivals.csv": Rival,
+    "scale_lines.csv": ScaleLine,
+    "sensitivities.csv": Sensitivity,
+    "shift_priors.csv": ShiftPrior,
+    "shift_ranges.csv": ShiftRange,
+    "sources.csv": Source,
+}

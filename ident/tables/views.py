@@ -2,10 +2,9 @@
 
 from __future__ import annotations
 
-from functools import cache
-
 from ..errors import UnknownNameError
-from .files import read_rows
+from .files import own_tables, read_rows
+from .own import cached
 from .rows import (
     BindingEnergy,
     ChemicalShift,
@@ -27,13 +26,14 @@ PRIOR_PART = 0.5  # of its deviation that an expected shift may go below itself
 HIGH_STATE = 6  # oxidation states beyond are met in solutions more than on surfaces
 
 
-@cache
+@cached
 def read_lines() -> tuple[Line, ...]:
     """Every line of every element, by atomic number, then falling height."""
-    return read_rows("lines.csv", Line)
+    rows = read_rows("lines.csv", Line)
+    return rows if own_tables() is None else tuple(sorted(rows, key=lambda line: (line.z, -line.relative_height)))
 
 
-@cache
+@cached
 def _by_symbol() -> dict[str, tuple[Line, ...]]:
     grouped: dict[str, list[Line]] = {}
     for line in read_lines():
@@ -46,7 +46,7 @@ def lines_of(symbol: str) -> tuple[Line, ...]:
     return _by_symbol().get(symbol, ())
 
 
-@cache
+@cached
 def _numbers() -> dict[str, int]:
     return {row.symbol: row.z for row in read_rows("commonness.csv", Commonness)}
 
@@ -60,13 +60,13 @@ def atomic_number(symbol: str) -> int:
     return number
 
 
-@cache
+@cached
 def commonness() -> dict[str, float]:
     """Probability that an element is on a technical surface, by symbol."""
     return {row.symbol: row.probability for row in read_rows("commonness.csv", Commonness)}
 
 
-@cache
+@cached
 def _shifts() -> dict[str, tuple[ChemicalShift, ...]]:
     grouped: dict[str, list[ChemicalShift]] = {}
     for row in read_rows("chemical_shifts.csv", ChemicalShift):
@@ -79,7 +79,7 @@ def chemical_shifts(symbol: str) -> tuple[ChemicalShift, ...]:
     return _shifts().get(symbol, ())
 
 
-@cache
+@cached
 def _priors() -> dict[str, tuple[ShiftPrior, ...]]:
     grouped: dict[str, list[ShiftPrior]] = {}
     for row in read_rows("shift_priors.csv", ShiftPrior):
@@ -92,7 +92,7 @@ def shift_priors(symbol: str) -> tuple[ShiftPrior, ...]:
     return _priors().get(symbol, ())
 
 
-@cache
+@cached
 def _ranges() -> dict[tuple[str, bool], tuple[float, float]]:
     rows = read_rows("shift_ranges.csv", ShiftRange)
     return {(row.symbol, row.valence): (row.lowest_ev, row.highest_ev) for row in rows}
@@ -103,7 +103,7 @@ def _usual_oxides(symbol: str, valence: bool) -> list[ShiftPrior]:
     return [row for row in oxides if row.oxidation_state <= HIGH_STATE]
 
 
-@cache
+@cached
 def shift_range(symbol: str, valence: bool) -> tuple[float, float]:
     """How far down and up chemistry may move an element's core or valence lines, in eV.
 
@@ -120,31 +120,31 @@ def shift_range(symbol: str, valence: bool) -> tuple[float, float]:
     return min([low, *known, *expected]), high
 
 
-@cache
+@cached
 def sensitivities() -> dict[str, Sensitivity]:
     """Rough sensitivity of every element, by symbol."""
     return {row.symbol: row for row in read_rows("sensitivities.csv", Sensitivity)}
 
 
-@cache
+@cached
 def published_sensitivities() -> tuple[PublishedSensitivity, ...]:
     """Sensitivities as handbooks give them."""
     return read_rows("published_sensitivities.csv", PublishedSensitivity)
 
 
-@cache
+@cached
 def binding_energies() -> dict[tuple[str, str], BindingEnergy]:
     """Binding energies by symbol and level."""
     return {(row.symbol, row.level): row for row in read_rows("binding_energies.csv", BindingEnergy)}
 
 
-@cache
+@cached
 def materials() -> dict[str, Material]:
     """What mean free paths in the elements are worked out from, by symbol."""
     return {row.symbol: row for row in read_rows("materials.csv", Material)}
 
 
-@cache
+@cached
 def _rivals() -> dict[str, tuple[Rival, ...]]:
     grouped: dict[str, list[Rival]] = {}
     for row in read_rows("rivals.csv", Rival):
@@ -157,25 +157,25 @@ def rivals_of(symbol: str) -> tuple[Rival, ...]:
     return _rivals().get(symbol, ())
 
 
-@cache
+@cached
 def published_lines() -> tuple[PublishedLine, ...]:
     """Published line energies as their sources state them."""
     return read_rows("published_lines.csv", PublishedLine)
 
 
-@cache
+@cached
 def scale_lines() -> tuple[ScaleLine, ...]:
     """Lines of the reference metals by which an energy scale is set."""
     return read_rows("scale_lines.csv", ScaleLine)
 
 
-@cache
+@cached
 def families() -> dict[str, Family]:
     """The families of transitions by name."""
     return {row.family: row for row in read_rows("families.csv", Family)}
 
 
-@cache
+@cached
 def sources() -> dict[str, Source]:
     """What every source key stands for."""
     return {row.key: row for row in read_rows("sources.csv", Source)}
