@@ -29,6 +29,8 @@ def command(spectra: tuple[str, ...], form: str, figure: str | None, together: b
     SPECTRUM is a text table (energy and ordinate in columns) or an ISO 14976 file; - reads standard input.
 
     Example: ident assign --rule-out Co survey.csv
+
+    Example: ident assign --tables my_tables/ survey.csv
     """
     from ..identification import examine
     from .figures import Figures

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import click
 
+from ..tables import own_tables
 from .options import format_option, tables_option
 from .say import complain
 
@@ -20,6 +21,8 @@ def command(what: str | None, form: str) -> int:
 
     Example: ident tables --tables my_tables
     """
+    if what is not None and own_tables() is not None:
+        raise click.UsageError(f"--{what} is about the shipped tables; leave --tables out")
     if what == "check":
         return _check()
     if what == "rebuild":

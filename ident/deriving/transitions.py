@@ -20,6 +20,7 @@ from .shells import FINALS, level, vacancies
 from .strengths import ONE_BAND, SHELL_ORDER, strength
 
 LOWEST_EV, HIGHEST_EV = 20.0, 3200.0
+MOST_SIGMA_EV = 12.0
 HIGHEST_Z = 92
 
 
@@ -160,7 +161,7 @@ def _transition(z: int, symbol: str, parts: tuple[str, str, str], row: Published
     family = family_name(parts, z)
     correction = corrections().get(family)
     if correction is None:
-        energy, sigma, kind = value + OTHER_OFFSET_EV, OTHER_SIGMA_EV, "formula"
+        energy, sigma, kind = value + OTHER_OFFSET_EV, OTHER_SIGMA_EV.get(parts[0][0], MOST_SIGMA_EV), "formula"
     else:
         energy, sigma, kind = value + correction.at(z), correction.spread_at(z), "family"
     label = "".join(parts)

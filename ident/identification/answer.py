@@ -162,6 +162,7 @@ class Identification:
     spectrum: str  # the file as given; "#2" for its second spectrum
     sha256: str | None
     edition: str  # of the program and of the tables
+    own_tables: dict[str, Any] | None = None  # what lies over the shipped tables: folder, sha256, files
     settings: dict[str, Any]
     header: dict[str, Any]  # what the file says of the measurement
     kind: str  # direct or derivative

@@ -6,6 +6,7 @@ import math
 from dataclasses import asdict, dataclass, fields, replace
 from typing import TYPE_CHECKING, Any
 
+from .. import tables
 from ..errors import SettingError
 from ..matching.evidence import (
     AskedEvidence,
@@ -125,6 +126,7 @@ def assemble(analysis: Analysis, evidence: Evidence, settings: Settings, notes: 
         spectrum=spectrum.name,
         sha256=spectrum.sha256,
         edition=edition(),
+        own_tables=tables.own_tables_told(),
         settings=_told(settings),
         header=asdict(spectrum.header),
         kind=spectrum.kind,
@@ -172,7 +174,7 @@ def _scale_source(settings: Settings) -> str:
 
 def edition() -> str:
     """Say which edition of program and tables made an answer."""
-    from .. import __version__, tables
+    from .. import __version__
 
     return f"ident {__version__}, tables {tables.edition()}"
 

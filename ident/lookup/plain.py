@@ -20,13 +20,14 @@ def at_answer(energy_ev: float, candidates: Sequence[Candidate], *, scale: Energ
         "kind": scale.kind,
         "scale": _plain(scale),
         "edition": tables.edition(),
+        "own_tables": tables.own_tables_told(),
         "candidates": [_plain(candidate) for candidate in candidates],
     }
 
 
 def card_answer(card: ElementCard) -> dict[str, object]:
     """Give the answer to `ident element` as plain data for JSON."""
-    return {**_plain(card), "edition": tables.edition()}
+    return {**_plain(card), "edition": tables.edition(), "own_tables": tables.own_tables_told()}
 
 
 def _plain(record: Candidate | ElementCard | EnergyScale) -> dict[str, object]:

@@ -52,6 +52,7 @@ class Recheck:
     spectrum: str
     sha256: str | None
     edition: str
+    own_tables: dict[str, Any] | None = None
     settings: dict[str, Any]
     labels: tuple[LabelOpinion, ...]  # in the order given
     missed: tuple[Missed, ...]  # probability 0.5 and more

@@ -66,6 +66,7 @@ def recheck(spectrum: Spectrum, labels: LabelsLike, settings: Settings | None = 
         spectrum=answer.spectrum,
         sha256=answer.sha256,
         edition=answer.edition,
+        own_tables=answer.own_tables,
         settings=answer.settings,
         labels=opinions,
         missed=tuple(item for item in missed if item.probability >= LIKELY),

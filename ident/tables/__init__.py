@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from .files import edition, list_tables, own_tables, reference_folder, use_tables
+from .files import edition, list_tables, own_tables, own_tables_told, reference_folder, use_tables
 from .own import OwnFile, OwnTables, cached, forget_tables
 from .rows import (
     REFERENCE_METALS,
@@ -72,6 +72,7 @@ __all__ = [
     "list_tables",
     "materials",
     "own_tables",
+    "own_tables_told",
     "published_lines",
     "published_sensitivities",
     "read_lines",

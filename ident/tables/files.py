@@ -118,6 +118,14 @@ def own_tables() -> OwnTables | None:
     return _own
 
 
+def own_tables_told() -> dict[str, Any] | None:
+    """The same as plain data for an answer."""
+    if _own is None:
+        return None
+    files = [{"name": file.name, "replaced": file.replaced, "added": file.added} for file in _own.files]
+    return {"folder": str(_own.folder), "sha256": _own.sha256, "files": files}
+
+
 def use_tables(folder: Path | str | None) -> None:
     """Lay a user's own tables over the shipped ones, row by row; None goes back to the shipped ones.
 
@@ -151,6 +159,7 @@ def _checked_tables(folder: Path) -> OwnTables:
             raise TableError(bad.what, file=str(path), line=bad.line, column=bad.column, value=bad.value) from None
         replaced = sum(key in shipped for key in own)
         files.append(OwnFile(name=path.name, replaced=replaced, added=len(own) - replaced))
+    _check_rivals(folder)
     return OwnTables(folder=folder, sha256=digest(paths), files=tuple(files))
 
 
@@ -213,6 +222,27 @@ def _checked(path: Path, line: int, kind: type[Row], values: dict[str, Any]) -> 
     except ValueError as error:
         column, _, what = str(error).partition(": ")
         raise TableError(what, file=path.name, line=line, column=column, value=str(values.get(column))) from None
+
+
+def _check_rivals(folder: Path) -> None:
+    """Refuse own rivals that name a line which neither the shipped tables nor the user's have."""
+    path = folder / "rivals.csv"
+    if not path.is_file():
+        return
+    from .rows import Line, Rival
+
+    lines = _read(reference_folder(), "lines.csv", Line)
+    if (folder / "lines.csv").is_file():
+        lines += _read(folder, "lines.csv", Line)
+    there = {(line.symbol, line.transition) for line in lines}
+    for number, row in enumerate(_read(folder, "rivals.csv", Rival), start=2):
+        named = [("transition", row.symbol, row.transition), ("rival_transition", row.rival, row.rival_transition)]
+        deciding = [("decided_by", row.symbol), ("weakly_by", row.symbol), ("ruled_out_by", row.rival)]
+        named += [(column, symbol, getattr(row, column)) for column, symbol in deciding if getattr(row, column)]
+        for column, symbol, transition in named:
+            if (symbol, transition) not in there:
+                what = f"is no line of {symbol} in lines.csv"
+                raise TableError(what, file=str(path), line=number, column=column, value=transition)
 
 
 def _source_keys(folder: Path) -> frozenset[str]:

@@ -6,6 +6,7 @@ with Auger lines.
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass
 from typing import ClassVar
 
@@ -18,6 +19,10 @@ STATE_CLASSES = frozenset(
     "compound".split()
 )
 KINDS = frozenset({"measured", "compiled", "calculated", "recalled"})
+
+
+# Levels of a transition: the vacancy and the two that are left empty, V being the valence band.
+TRANSITION = re.compile(r"(K|L[1-3]{0,3}|[MOP][1-5]{0,5}|N[1-7]{0,7})((L[1-3]{0,3}|[MOP][1-5]{0,5}|N[1-7]{0,7}|V)){2}")
 
 
 def _need(right: bool, column: str, what: str) -> None:
@@ -125,6 +130,7 @@ class Family:
     family: str
     degree: int  # of the polynomial in Z
     left_out: str  # symbols not fitted to, blank between
+    least_sigma_ev: float  # what it cannot be better than, by judgement; 0 where the scatter of its rows says it
     reason: str
     kind: str
     source: str
@@ -155,6 +161,10 @@ class Line:
         _need(20 <= self.energy_ev <= 3200, "energy_ev", "must lie between 20 and 3200 eV")
         _need(self.sigma_ev > 0, "sigma_ev", "must be positive")
         _need(0 < self.relative_height <= 1, "relative_height", "must lie between 0 and 1")
+        _need(self.height_log_sigma > 0, "height_log_sigma", "must be positive")
+        _need(
+            TRANSITION.fullmatch(self.transition) is not None, "transition", "is none; write it as KL23L23 or L3M45M45"
+        )
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)

@@ -96,6 +96,11 @@ def test_every_answer_says_so(run: Run, own: Path, words: tuple[str, ...]) -> No
     assert code == 0
     assert said in " ".join(out.split())
     assert said in run(words[0], "--tables", own, "--format", "json", *words[1:])[1]
+    if words[0] not in {"scale", "tables"}:
+        told = json.loads(run(words[0], "--tables", own, "--format", "json", *words[1:])[1].splitlines()[0])[
+            "own_tables"
+        ]
+        assert told["files"][0] == {"name": "lines.csv", "replaced": 1, "added": 1}
     code, out, err = run(words[0], "--tables", own, "--format", "csv", *words[1:])
     assert said in out + err or words[0] == "tables"
     assert list(csv.reader(io.StringIO(out)))
@@ -119,6 +124,13 @@ def test_own_sources_may_be_named_and_unknown_ones_are_refused(run: Run, own: Pa
         ("lines.csv", HEAD + "\n" + MOVED.replace("Al,13", "Al,14"), ("own/lines.csv", "line 2", "column z", "14")),
         ("lines.csv", "symbol,energy\nAl,1300", ("own/lines.csv", "line 1", "columns must be")),
         ("lines.csv", HEAD + "\n" + MOVED + "\n" + MOVED, ("own/lines.csv", "line 3", "stands in line 2")),
+        ("lines.csv", HEAD + "\n" + MOVED.replace("KL23L23,KL23L23", "XYZ,XYZ"), ("line 2", "transition", "XYZ")),
+        (
+            "rivals.csv",
+            "symbol,z,transition,rival,rival_transition,away_ev,reach_ev,decided_by,weakly_by,ruled_out_by,kind,source\n"
+            "Al,13,KL23L23,Cu,LMM,1,5,,,,calculated,computed",
+            ("own/rivals.csv", "line 2", "rival_transition", "LMM"),
+        ),
         ("published_lines.csv", "x", ("own/published_lines.csv", "lines.csv")),
         ("transitions.csv", "x", ("own/transitions.csv", "no table that ident reads")),
         ("my_lines.csv", "x", ("own/my_lines.csv", "lines.csv")),
@@ -135,6 +147,13 @@ def test_what_is_malformed_or_never_read_is_refused(
     assert (code, out) == (1, "")
     for part in parts:
         assert part in line
+
+
+@pytest.mark.parametrize("what", ["--check", "--rebuild"])
+def test_own_tables_are_never_written_into_the_shipped_ones(run: Run, own: Path, what: str) -> None:
+    code, _, err = run("tables", what, "--tables", own)
+    assert code == 2
+    assert "shipped tables" in err
 
 
 def test_a_folder_that_is_none_or_empty_is_refused(tmp_path: Path) -> None:

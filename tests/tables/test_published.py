@@ -52,6 +52,10 @@ def test_handbook_minima_are_in_the_table_of_lines(row: Fact) -> None:
     assert parse_transition(found[0].transition).vacancy[0] == row["transition"][0]
 
 
+# Recalled values that their neighbours in Z speak against: kept, but with low confidence.
+DOUBTED = {("Re", "1799")}
+
+
 def test_published_rows_are_kept_as_published() -> None:
     """Energy, form, reference level, status and confidence of every row, none left out and none added."""
     kept = [
@@ -60,7 +64,7 @@ def test_published_rows_are_kept_as_published() -> None:
     ]
     wanted = [
         (row["symbol"], int(row["z"]), float(row["energy_ev"]), row["form"], row["reference_level"], row["status"],
-         row["confidence"])
+         "low" if (row["symbol"], row["energy_ev"]) in DOUBTED else row["confidence"])
         for row in facts()
     ]  # fmt: skip
     assert sorted(kept) == sorted(wanted)
