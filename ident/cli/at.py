@@ -6,9 +6,10 @@ from typing import Any
 
 import click
 
+from ..errors import SettingError
 from ..lookup import Candidate, EnergyScale, candidates_at
 from .options import STATING, energy_scale, format_option, tables_option, with_options
-from .say import say_own_tables
+from .say import complain, say_own_tables
 
 
 @click.command(
@@ -32,18 +33,26 @@ def command(energies: tuple[float, ...], reach: float | None, form: str, **given
     Example: ident at --reference fermi --kind direct 918.6
     """
     scale = energy_scale(given)
-    found = [(energy, candidates_at(energy, within=reach, scale=scale)) for energy in energies]
+    found, failed = [], False
+    for energy in energies:
+        try:
+            found.append((energy, candidates_at(energy, within=reach, scale=scale)))
+        except SettingError as wrong:
+            if len(energies) == 1:
+                raise
+            complain(str(wrong))
+            failed = True
     if form == "csv":
         from ..report.csv_rows import AT_COLUMNS, at_rows, render_rows
 
         rows = [row for energy, candidates in found for row in at_rows(energy, candidates)]
         click.echo(render_rows([AT_COLUMNS, *rows]), nl=False)
         say_own_tables(form)
-        return 0
+        return 1 if failed else 0
     for energy, candidates in found:
         click.echo(_rendered(energy, candidates, form, scale), nl=False)
     say_own_tables(form)
-    return 0
+    return 1 if failed else 0
 
 
 def _rendered(energy_ev: float, candidates: tuple[Candidate, ...], form: str, scale: EnergyScale) -> str:

@@ -13,7 +13,9 @@ from ..reasons.reason import Reason
 from .energies import HANDBOOK, stated_ev, stated_sigma_ev
 
 AXIS_SIGMA_EV = 3.0  # how far axes of real instruments stand from the tables
-SHIFTED_WEIGHT = 0.3  # a line that needs a chemical shift, against one that does not
+SHIFTED_WEIGHT = 0.3  # a line that needs the shift of a known state, against one that needs none
+UNKNOWN_SHIFT_WEIGHT = 0.08  # and one that needs another shift, within what chemistry may do
+MOST_BEYOND_SD = 4.0  # beyond what chemistry may do, a line is no candidate
 LEAST_WEIGHT = 0.005  # of the whole
 RARE = 0.01  # no element counts as rarer than that: a lookup is asked about odd things too
 LIMITS_EV = (10.0, 3500.0)
@@ -98,9 +100,20 @@ def _weight(line: tables.Line, deviation_ev: float) -> float:
     """Height x nearness x commonness; chemistry may move a line, at a price."""
     sigma = math.hypot(line.sigma_ev, AXIS_SIGMA_EV)
     low, high = tables.shift_range(line.symbol, line.valence)
-    beyond = max(low - deviation_ev, deviation_ev - high, 0.0)
-    near = max(bell(deviation_ev / sigma), SHIFTED_WEIGHT * bell(beyond / sigma))
+    beyond = max(low - deviation_ev, deviation_ev - high, 0.0) / sigma
+    if beyond > MOST_BEYOND_SD:
+        return 0.0
+    near = max(bell(deviation_ev / sigma), UNKNOWN_SHIFT_WEIGHT * bell(beyond))
+    state = _state_near(line, deviation_ev)
+    if state is not None:
+        near = max(near, SHIFTED_WEIGHT * bell((deviation_ev - state.shift_ev) / math.hypot(sigma, state.sigma_ev)))
     return line.relative_height * near * max(tables.commonness().get(line.symbol, 0.0), RARE)
+
+
+def _state_near(line: tables.Line, deviation_ev: float) -> tables.ChemicalShift | None:
+    """The known state whose shift of this class of lines is nearest to a deviation."""
+    states = [row for row in tables.chemical_shifts(line.symbol) if row.valence == line.valence]
+    return min(states, key=lambda row: abs(row.shift_ev - deviation_ev), default=None)
 
 
 def bell(deviations: float) -> float:
@@ -143,7 +156,10 @@ def _reasons(line: tables.Line, expected: float, deviation: float, needs: tuple[
     if off <= 2.0:
         yield Reason(code="line-near", side="for", text=told)
     else:
-        yield Reason(code="needs-shift", side="against", text=f"{told}: needs a shift of {deviation:+.0f} eV")
+        state = _state_near(line, deviation)
+        fits = state is not None and abs(deviation - state.shift_ev) < 2.0 * math.hypot(sigma, state.sigma_ev)
+        like = f"; {state.state} shifts it by {state.shift_ev:+.1f} eV" if state is not None and fits else ""
+        yield Reason(code="needs-shift", side="against", text=f"{told}: needs a shift of {deviation:+.0f} eV{like}")
     common = tables.commonness().get(line.symbol, 0.0)
     if common >= 0.5:
         yield Reason(code="common-on-surfaces", side="for", text="found on nearly every surface that has seen air")

@@ -40,6 +40,21 @@ def test_at_ranks_the_element_known_for_that_line_first(run: Run, energy: int, e
     assert set(answer["candidates"][0]) == wanted | {"reasons"}
 
 
+def test_one_energy_out_of_the_tables_does_not_silence_the_others(run: Run) -> None:
+    code, out, err = run("at", "--format", "json", 651, 99999)
+    assert code == 1
+    assert [json.loads(line)["energy_ev"] for line in out.splitlines()] == [651]
+    assert "99999" in one_error_line(err)
+
+
+def test_no_shift_beyond_chemistry_makes_a_candidate(run: Run) -> None:
+    """The largest shifts known are some 25 eV (oxidised phosphorus, from memory); nothing stands at 2500 eV."""
+    assert json.loads(run("at", "--format", "json", 2500)[1])["candidates"] == []
+    for energy in (70, 92, 381, 651, 1396):
+        candidates = json.loads(run("at", "--format", "json", energy)[1])["candidates"]
+        assert all(abs(candidate["deviation_ev"]) < 45.0 for candidate in candidates)
+
+
 def test_iron_at_651_must_then_show_703_and_598(run: Run) -> None:
     needs = json.loads(run("at", "--format", "json", 651)[1])["candidates"][0]["needs"]
     for line in (703.0, 598.0):
