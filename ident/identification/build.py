@@ -18,7 +18,7 @@ from ..matching.evidence import (
     UntestableEvidence,
 )
 from ..matching.settings import Settings
-from ..reasons import explain, explain_asked, state_to_tell
+from ..reasons import explain, explain_artefact, explain_asked, state_to_tell
 from ..spectrum import Spectrum
 from .answer import (
     UNCALIBRATED,
@@ -150,10 +150,17 @@ def assemble(analysis: Analysis, evidence: Evidence, settings: Settings, notes: 
         ),
         why_not=tuple(_why_not(asked, evidence) for asked in evidence.asked),
         untestable=_untestable(evidence),
-        artefacts=tuple(ArtefactNote(energy_ev=a.energy_ev, what=a.what) for a in analysis.artefacts),
+        artefacts=_artefacts(analysis, evidence),
         cautions=cautions_for(assignments, scale, settings.sputtered),
         warnings=(*analysis.warnings, *notes),
     )
+
+
+def _artefacts(analysis: Analysis, evidence: Evidence) -> tuple[ArtefactNote, ...]:
+    """Spikes and dead points of the data, and minima that are losses or satellites, rising in energy."""
+    notes = [ArtefactNote(energy_ev=a.energy_ev, what=a.what) for a in analysis.artefacts]
+    notes += [ArtefactNote(energy_ev=a.energy_ev, what=explain_artefact(a)) for a in evidence.artefacts]
+    return tuple(sorted(notes, key=lambda note: note.energy_ev))
 
 
 def _told(settings: Settings) -> dict[str, Any]:

@@ -9,6 +9,7 @@ import numpy as np
 from ..patterns import tilted
 from ..spectrum import FloatArray
 from .amounts import find_abundances, find_limits
+from .artefacts import SURE_ARTEFACTS, find_artefacts
 from .context import Context
 from .doubts import find_inseparable, find_unexplained, find_untestable
 from .evidence import (
@@ -40,10 +41,13 @@ def assemble(problem: Problem, solution: Solution, posterior: Posterior) -> Evid
     shown = [e for e in np.argsort(-posterior.probability) if posterior.probability[e] >= LEAST_PROBABILITY]
     shown = [int(e) for e in shown if posterior.best_option[e] >= 0]
     limits = find_limits(problem, solution, posterior.probability)
+    artefacts = find_artefacts(context)
+    named = {artefact.energy_ev for artefact in artefacts if artefact.kind in SURE_ARTEFACTS}
     return Evidence(
         scale=scale_evidence(problem, solution),
         elements=tuple(_element(context, e) for e in shown),
-        unexplained=find_unexplained(context),
+        unexplained=tuple(one for one in find_unexplained(context) if one.energy_ev not in named),
+        artefacts=artefacts,
         inseparable=find_inseparable(context, shown),
         untestable=find_untestable(context),
         limits=limits,

@@ -105,6 +105,26 @@ class ScaleEvidence:
     readings: tuple[tuple[float, float, float], ...] = ()  # handbook energy, how far too high it reads here, sd; eV
 
 
+ArtefactKind = Literal[
+    "elastic peak", "above the beam", "ionisation loss", "plasmon loss", "loss tail", "satellite", "secondaries"
+]
+
+
+@dataclass(frozen=True, kw_only=True)
+class ArtefactEvidence:
+    """A minimum that is no line of its own, and what it is instead."""
+
+    energy_ev: float
+    kind: ArtefactKind
+    element: str | None = None  # whose loss or satellite it is
+    transition: str | None = None  # of which line
+    of_ev: float | None = None  # where that line stands
+    away_ev: float | None = None  # from it, negative below
+    level: str | None = None  # that is ionised
+    order: int = 0  # of a plasmon loss: 0 surface, 1 bulk, 2 twice
+    expected_ev: float | None = None  # where the elastic peak, the edge or the loss should be
+
+
 @dataclass(frozen=True, kw_only=True)
 class UnexplainedEvidence:
     """A minimum that no accepted element explains."""
@@ -170,3 +190,4 @@ class Evidence:
     untestable: tuple[UntestableEvidence, ...]
     limits: tuple[LimitEvidence, ...] = ()
     asked: tuple[AskedEvidence, ...] = ()  # in the order asked
+    artefacts: tuple[ArtefactEvidence, ...] = ()  # rising in energy

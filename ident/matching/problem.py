@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 from ..minima import Analysis
 from ..patterns import Patterns, all_patterns
 from ..spectrum import FloatArray
+from .losses import elastic_price
 from .settings import Settings
 
 # Prices are natural logarithms of odds. What a minimum costs when no element explains it, per its significance:
@@ -87,7 +88,7 @@ def pose(analysis: Analysis, settings: Settings) -> Problem:
         significance=significance,
         width_ev=width,
         line_width_ev=_line_widths(patterns, analysis, settings),
-        price=_own_price(energy, depth, significance, width),
+        price=elastic_price(energy, _own_price(energy, depth, significance, width), settings.beam_kev),
         patterns=patterns,
         element_price=price,
         testable=testable,

@@ -8,6 +8,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from ..spectrum import FloatArray
+from .losses import plasmon_cost
 from .options import Options
 from .problem import Problem
 
@@ -114,6 +115,7 @@ def with_known_minors(problem: Problem, options: Options, members: list[int]) ->
         rest = [m for m in members if m != member]
         if total_cost(problem, options, rest) - cost > SURE_GAIN:
             price = np.minimum(price, np.minimum(options.soft[member], _unlisted_cost(problem, options, member)))
+            price = np.minimum(price, plasmon_cost(problem, options, member))
     return replace(problem, price=price)
 
 
