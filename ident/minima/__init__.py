@@ -7,10 +7,10 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from ..errors import InputError
-from ..signal import Differential, differentiate, noise_kernels, settle_kind
+from ..signal import Differential, differentiate, find_saturation, noise_kernels, settle_kind
 from ..signal.baseline import slope_baseline
 from ..signal.widths import FWHM_PER_SIGMA, usual_sigma_ev
-from ..spectrum import FloatArray, Spectrum
+from ..spectrum import FloatArray, Spectrum, Window
 from .pursuit import Feature, filter_field, pursue
 from .refine import prune, refine, rendered
 
@@ -102,6 +102,8 @@ def analyse(spectrum: Spectrum, *, resolution: float | None = None) -> Analysis:
         noises.append(noise)
         differentials.append(differential)
         artefacts.extend(_spike_notes(differential))
+        if not derivative:
+            artefacts.extend(_saturation_notes(window))
     return Analysis(
         spectrum=settled,
         minima=tuple(sorted(minima, key=lambda m: m.energy_ev)),
@@ -183,6 +185,16 @@ def _minimum(
         significance=min(feature.depth / local, 1.3 * feature.significance),
         window=number,
     )
+
+
+def _saturation_notes(window: Window) -> list[Artefact]:
+    return [
+        Artefact(
+            energy_ev=0.5 * (low + high),
+            what=f"saturation: counts stand at {level:g} from {low:.0f} to {high:.0f} eV, where no line can be judged",
+        )
+        for low, high, level in find_saturation(window.energy_ev, window.intensity)
+    ]
 
 
 def _spike_notes(differential: Differential) -> list[Artefact]:

@@ -86,3 +86,21 @@ def test_artefacts_are_in_order_and_do_not_repeat_a_line() -> None:
     assert energies == sorted(energies)
     met = {line.found_ev for a in answer.assignments if a.probability >= 0.5 for line in a.lines if line.found_ev}
     assert not met & set(energies)
+
+
+def test_a_detector_at_its_ceiling_is_said() -> None:
+    """Counts cut off at a level over a strong line; the same scan below that level says nothing of the kind."""
+    plain = spectrum_of("Al").windows[0]
+    level = float(np.quantile(plain.intensity, 0.995))
+    cut = np.minimum(plain.intensity, level)
+    told = [note.what for note in identify(Spectrum.from_arrays(plain.energy_ev, cut, kind="direct")).artefacts]
+    assert any("saturation" in what and f"{level:g}" in what for what in told)
+    assert not any("saturation" in note.what for note in identify(spectrum_of("Al")).artefacts)
+
+
+def test_few_counts_that_happen_to_be_equal_are_no_ceiling() -> None:
+    energy = np.arange(100.0, 700.0)
+    counts = np.random.default_rng(5).poisson(2.0, energy.size).astype(float)
+    counts[200:206] = counts.max()
+    answer = identify(Spectrum.from_arrays(energy, counts, kind="direct"))
+    assert not any("saturation" in note.what for note in answer.artefacts)
