@@ -101,12 +101,25 @@ class Assignment:
 
 
 @dataclass(frozen=True, kw_only=True)
+class FurtherScan:
+    """A window that would tell whether an element is there."""
+
+    element: str
+    transition: str
+    low_ev: float
+    high_ev: float
+    dwell: float  # against this scan's, at equal beam, for a line weaker than expected to be seen
+    information_bits: float  # expected of it
+
+
+@dataclass(frozen=True, kw_only=True)
 class Inseparable:
     """Elements that this scan cannot tell apart, and the scan that would."""
 
-    elements: tuple[str, ...]
+    elements: tuple[str, ...]  # likeliest first
     at_ev: float
-    settle: str
+    settle: str  # the first of the scans, in words
+    scans: tuple[FurtherScan, ...] = ()  # that would decide, most information for the time first
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -152,6 +165,7 @@ class ArtefactNote:
 
     energy_ev: float
     what: str
+    kind: str = "artefact"  # in a word or two: spike, plasmon loss, elastic peak and so on
 
 
 @dataclass(frozen=True, kw_only=True)

@@ -25,6 +25,7 @@ from .answer import (
     Abundance,
     ArtefactNote,
     Assignment,
+    FurtherScan,
     Identification,
     Inseparable,
     Limit,
@@ -158,8 +159,8 @@ def assemble(analysis: Analysis, evidence: Evidence, settings: Settings, notes: 
 
 def _artefacts(analysis: Analysis, evidence: Evidence) -> tuple[ArtefactNote, ...]:
     """Spikes and dead points of the data, and minima that are losses or satellites, rising in energy."""
-    notes = [ArtefactNote(energy_ev=a.energy_ev, what=a.what) for a in analysis.artefacts]
-    notes += [ArtefactNote(energy_ev=a.energy_ev, what=explain_artefact(a)) for a in evidence.artefacts]
+    notes = [ArtefactNote(energy_ev=a.energy_ev, what=a.what, kind=a.kind) for a in analysis.artefacts]
+    notes += [ArtefactNote(energy_ev=a.energy_ev, what=explain_artefact(a), kind=a.kind) for a in evidence.artefacts]
     return tuple(sorted(notes, key=lambda note: note.energy_ev))
 
 
@@ -265,17 +266,33 @@ def _rival(rival: RivalEvidence) -> Rival:
     return Rival(element=rival.element, at_ev=rival.at_ev, text=text)
 
 
-def _inseparable(pair: InseparableEvidence) -> Inseparable:
-    return Inseparable(elements=pair.elements, at_ev=pair.at_ev, settle=_settling(pair))
+def _inseparable(group: InseparableEvidence) -> Inseparable:
+    scans = tuple(
+        FurtherScan(
+            element=scan.element,
+            transition=scan.transition,
+            low_ev=scan.low_ev,
+            high_ev=scan.high_ev,
+            dwell=scan.dwell,
+            information_bits=scan.information_bits,
+        )
+        for scan in group.scans
+    )
+    return Inseparable(elements=group.elements, at_ev=group.at_ev, settle=_settling(group), scans=scans)
 
 
-def _settling(pair: InseparableEvidence) -> str:
-    if pair.settle_ev is None:
-        return "ask another technique, such as photoelectron spectroscopy: no Auger line in the tables decides"
-    line = f"{pair.settle_element} {pair.settle_transition} at {pair.settle_ev:.0f} eV"
-    if pair.in_range:
-        return f"scan {line} longer: it is in range, but too weak here to decide"
-    return f"scan {pair.settle_ev - 25:.0f} to {pair.settle_ev + 25:.0f} eV: {line} decides"
+def _settling(group: InseparableEvidence) -> str:
+    if not group.scans:
+        return "ask another technique, such as photoelectron spectroscopy: no Auger line within reach decides"
+    scan = group.scans[0]
+    line = f"{scan.element} {scan.transition} at {scan.line_ev:.0f} eV decides"
+    longer = f"{scan.dwell:.2g} times as long as here" if scan.dwell >= 1 else "a shorter dwell will do"
+    again = " again" if scan.in_range else ""
+    said = f"scan {scan.low_ev:.0f} to {scan.high_ev:.0f} eV{again}, {longer}: {line}"
+    if scan.element in group.elements[:2]:
+        return said
+    rest = " and ".join(group.elements[:2])
+    return f"{said} on {scan.element} alone; between {rest} another technique must"
 
 
 def _untestable(evidence: Evidence) -> tuple[Untestable, ...]:

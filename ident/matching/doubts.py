@@ -2,15 +2,17 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
+
 import numpy as np
 
 from .context import Context
 from .evidence import InseparableEvidence, UnexplainedEvidence, UntestableEvidence
-from .options import LOW_LINE_EV
-from .problem import Problem, unexplained_price
+from .problem import unexplained_price
 from .search import left_over
+from .settling import settling_scans
 
-SETTLING_HEIGHT = 0.03  # a line that settles a case is as high as this, and above the crowded energies
+LEAST_OPEN, MOST_OPEN = 0.05, 0.95  # probabilities between which an element is not decided
 MAIN_PART = 0.3  # of an element's deepest prediction, for a minimum to be one that it rests on
 LOSS_PART = 0.5  # cheaper than this part of its full price, a minimum is likely a loss or a satellite
 LEAST_RIVAL = 0.1  # probability from which an element is a rival worth another scan
@@ -48,29 +50,36 @@ def find_unexplained(context: Context) -> tuple[UnexplainedEvidence, ...]:
 
 
 def find_inseparable(context: Context, shown: list[int]) -> tuple[InseparableEvidence, ...]:
-    """Pairs of which one is there and the scan does not say which."""
-    problem, posterior, axis = context.problem, context.posterior, context.solution.axis
-    pattern = problem.patterns
+    """Groups of elements of which one or another stands at a minimum, and the scan does not say which."""
+    groups: dict[int, dict[int, None]] = {}
+    for element, other, shared in _open_pairs(context, shown):
+        groups.setdefault(shared, {}).update({element: None, other: None})
+    probability, names = context.posterior.probability, context.problem.patterns.symbols
     out = []
+    for shared, members in groups.items():
+        elements = tuple(sorted(members, key=lambda e: -probability[e]))
+        out.append(
+            InseparableEvidence(
+                elements=tuple(names[e] for e in elements),
+                at_ev=float(context.problem.energy_ev[shared]),
+                scans=settling_scans(context, elements),
+            )
+        )
+    return tuple(sorted(out, key=lambda group: group.at_ev))
+
+
+def _open_pairs(context: Context, shown: list[int]) -> Iterator[tuple[int, int, int]]:
+    """Pairs that could take each other's place, and the minimum at which."""
+    posterior = context.posterior
     for element, exchanged in posterior.replacements.items():
+        if not LEAST_OPEN <= posterior.probability[element] < MOST_OPEN:
+            continue
         for other, _ in exchanged:
-            if other not in shown or not 0.05 <= posterior.probability[element] < 0.95:
+            if other not in shown or posterior.probability[other] < LEAST_RIVAL:
                 continue
             shared = _shared_minimum(context, element, other)
-            if shared is None or posterior.probability[other] < LEAST_RIVAL:
-                continue
-            settle = _settling_line(problem, element, other, axis.offset_ev, axis.slope)
-            out.append(
-                InseparableEvidence(
-                    elements=(pattern.symbols[element], pattern.symbols[other]),
-                    at_ev=float(problem.energy_ev[shared]),
-                    settle_element=settle[0] if settle else None,
-                    settle_transition=settle[1] if settle else None,
-                    settle_ev=settle[2] if settle else None,
-                    in_range=bool(settle and problem.in_range(np.array(settle[2]))),
-                )
-            )
-    return tuple(out)
+            if shared is not None:
+                yield element, other, shared
 
 
 def _shared_minimum(context: Context, first: int, second: int) -> int | None:
@@ -81,24 +90,6 @@ def _shared_minimum(context: Context, first: int, second: int) -> int | None:
         if main[at] > 0 and other[at] > MAIN_PART * float(np.max(other)):
             return at
     return None
-
-
-def _settling_line(
-    problem: Problem, first: int, second: int, offset_ev: float, slope: float
-) -> tuple[str, str, float] | None:
-    """The strongest line of either that the other has nothing near."""
-    pattern = problem.patterns
-    best: tuple[float, str, str, float] | None = None
-    for one, other in ((first, second), (second, first)):
-        theirs = pattern.energy_ev[other][pattern.real[other]]
-        for column in np.flatnonzero(pattern.real[one] & (pattern.height[one] >= SETTLING_HEIGHT)):
-            energy = float(pattern.energy_ev[one, column])
-            if energy > LOW_LINE_EV and np.min(np.abs(theirs - energy)) > 20.0:
-                place = energy * (1 + slope) + offset_ev
-                height = float(pattern.height[one, column])
-                if best is None or height > best[0]:
-                    best = (height, pattern.symbols[one], pattern.transitions[one][column], place)
-    return best[1:] if best else None
 
 
 def find_untestable(context: Context) -> tuple[UntestableEvidence, ...]:

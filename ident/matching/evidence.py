@@ -135,15 +135,26 @@ class UnexplainedEvidence:
 
 
 @dataclass(frozen=True, kw_only=True)
+class ScanEvidence:
+    """A further scan, and what it would tell."""
+
+    element: str  # whose line it looks for
+    transition: str
+    line_ev: float  # where that line would be on this axis
+    low_ev: float
+    high_ev: float
+    dwell: float  # against this scan's, for a line that is weaker than expected to be seen
+    information_bits: float  # expected of it
+    in_range: bool = False  # scanned already, and too noisy there
+
+
+@dataclass(frozen=True, kw_only=True)
 class InseparableEvidence:
     """Elements that this scan cannot tell apart."""
 
     elements: tuple[str, ...]
     at_ev: float
-    settle_element: str | None = None  # whose line would decide
-    settle_transition: str | None = None
-    settle_ev: float | None = None  # where that line would be on this axis
-    in_range: bool = False  # True: scanned but too noisy; longer dwell would settle it
+    scans: tuple[ScanEvidence, ...] = ()  # that would decide, most information for the time first
 
 
 @dataclass(frozen=True, kw_only=True)

@@ -42,6 +42,7 @@ class Artefact:
     """Something in the data that is no line, and what it is."""
 
     energy_ev: float
+    kind: str  # spike, dead point or saturation
     what: str
 
 
@@ -191,6 +192,7 @@ def _saturation_notes(window: Window) -> list[Artefact]:
     return [
         Artefact(
             energy_ev=0.5 * (low + high),
+            kind="saturation",
             what=f"saturation: counts stand at {level:g} from {low:.0f} to {high:.0f} eV, where no line can be judged",
         )
         for low, high, level in find_saturation(window.energy_ev, window.intensity)
@@ -202,6 +204,6 @@ def _spike_notes(differential: Differential) -> list[Artefact]:
     for spike in differential.spikes:
         energy = float(np.mean(differential.energy_ev[spike.index : spike.index + spike.channels]))
         width = "one channel" if spike.channels == 1 else f"{spike.channels} channels"
-        what = f"spike of {width}" if spike.up or differential.recorded else f"dead point of {width}"
-        notes.append(Artefact(energy_ev=energy, what=what))
+        kind = "spike" if spike.up or differential.recorded else "dead point"
+        notes.append(Artefact(energy_ev=energy, kind=kind, what=f"{kind} of {width}"))
     return notes

@@ -54,7 +54,10 @@ class DepthFits(Rule):
             return
         ratios = joined([f"{times(line.depth_ratio or 0.0)} ({line.transition})" for line in fit[:MOST_NAMED]])
         factor = max(line.depth_ratio_factor or 1.0 for line in fit[:MOST_NAMED])
-        yield 0.5 * len(fit), f"depth over expected {ratios}; expected 1 within a factor {times(factor)}"
+        yield (
+            0.5 * len(fit),
+            f"depths are {ratios} times what they should be, which is known within a factor {times(factor)}",
+        )
 
 
 class DepthOff(Rule):

@@ -10,12 +10,13 @@ from .reason import Rule, Side, Subject, Weighed
 from .words import joined, times
 
 if TYPE_CHECKING:
-    from ..matching.evidence import ElementEvidence, StateEvidence
+    from ..matching.evidence import ElementEvidence, RivalEvidence, StateEvidence
 
 LARGE_SHIFT_EV = 5.0
 MOST_LOG_ODDS = 12.0
 MOST_ODDS = 6.9  # a thousand to one, natural log
 MOST_RIVALS = 2
+LEAST_TOLD = 0.01  # probability below which a rival is none
 LEAST_STATE_ODDS = 1.1  # three to one, natural log
 RARE_LOG_ODDS = -4.6  # one surface in a hundred
 SURE, CALLED = 0.95, 0.5
@@ -142,15 +143,30 @@ class RestsOnOneLine(Rule):
 
 
 class RivalLessLikely(Rule):
-    """Another element could stand at one of the minima, but fits worse."""
+    """Another element could stand at one of the minima, but what it needs besides is not there."""
 
     side: Side = "for"
 
     def says(self, subject: Subject) -> Iterator[Weighed]:
         for rival in subject.element.rivals[:MOST_RIVALS]:
-            if rival.probability < subject.element.probability:
-                why = f"but {_lacks(rival.missing)}" if rival.missing else _standing(rival.probability)
+            if _refuted(rival) and rival.probability < subject.element.probability:
+                why = f"but {_lacks(rival.missing)}" if rival.missing else "but nothing else supports it"
                 yield 0.6, f"{rival.element} {rival.transition} could stand at {rival.at_ev:.1f} eV, {why}"
+
+
+class RivalOpen(Rule):
+    """Another element could stand at one of the minima too, though it is less likely."""
+
+    side: Side = "against"
+
+    def says(self, subject: Subject) -> Iterator[Weighed]:
+        for rival in subject.element.rivals[:MOST_RIVALS]:
+            if not _refuted(rival) and rival.probability < subject.element.probability:
+                yield (
+                    rival.probability,
+                    f"{rival.element} {rival.transition} could stand at {rival.at_ev:.1f} eV instead or as well "
+                    f"(probability {rival.probability:.2f})",
+                )
 
 
 class RivalLikelier(Rule):
@@ -204,8 +220,9 @@ def _second(state: StateEvidence) -> str:
     return f"{state.second_name} ({state.second_shift_ev or 0.0:+.1f} eV)"
 
 
-def _standing(probability: float) -> str:
-    return f"with probability {probability:.2f}" if probability >= 0.01 else "but nothing else supports it"
+def _refuted(rival: RivalEvidence) -> bool:
+    """Whether a line that the rival must show is missing, or nothing speaks for it at all."""
+    return bool(rival.missing) or rival.probability < LEAST_TOLD
 
 
 def _lacks(missing: tuple[tuple[str, float, float], ...]) -> str:
@@ -223,6 +240,7 @@ WHOLE_RULES: tuple[type[Rule], ...] = (
     OneLowLine,
     RestsOnOneLine,
     RivalLessLikely,
+    RivalOpen,
     RivalLikelier,
     OnlyCandidate,
     CannotBeSeparated,

@@ -15,6 +15,7 @@ from .palette import Role
 if TYPE_CHECKING:
     from ..identification import Assignment, Identification, LineNote
 
+UNLABELLED = ("loss tail", "satellite", "secondaries")  # what minima may be; in the list beside, not on the curve
 SHARED_FROM = 0.1  # part of a minimum from which an element is named at it
 RIVAL_FROM = 0.25  # probability from which another element that rests on the minimum is named too
 MOST_NAMES = 3
@@ -51,11 +52,12 @@ def labels_of(answer: Identification) -> tuple[Label, ...]:
     ]
     for energy in sorted((set(doubtful) | left) - set(claims)):
         labels.append(_doubted(energy, doubtful.get(energy, []), energy in left))
+    taken = {label.energy_ev for label in labels}
     labels.extend(
-        Label(energy_ev=note.energy_ev, text=(f"{note.what.split(' of ')[0]} {note.energy_ev:.0f} eV",),
-              role="artefact", rank=DOUBT)
+        Label(energy_ev=note.energy_ev, text=(f"{note.kind} {note.energy_ev:.0f} eV",), role="artefact", rank=DOUBT)
         for note in answer.artefacts
-    )  # fmt: skip
+        if note.kind not in UNLABELLED and note.energy_ev not in taken
+    )
     return tuple(sorted(labels, key=lambda label: label.energy_ev))
 
 

@@ -56,6 +56,6 @@ def crowd() -> Examination:
         base.answer,
         assignments=tuple(assignments),
         unexplained=tuple(Unexplained(energy_ev=e, significance=9.0, candidates=()) for e in (305.5, 640.0)),
-        artefacts=(ArtefactNote(energy_ev=700.0, what="spike of one channel"),),
+        artefacts=(ArtefactNote(energy_ev=700.0, what="spike of one channel", kind="spike"),),
     )
     return replace(base, answer=answer)

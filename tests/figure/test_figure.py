@@ -27,7 +27,9 @@ SVG_TEXT = "{http://www.w3.org/2000/svg}text"
 STARTS = {"png": b"\x89PNG\r\n\x1a\n", "pdf": b"%PDF-", "svg": b"<?xml"}  # ISO/IEC 15948, ISO 32000, XML 1.0
 LEVEL = r"(?:[KLMNOP]\d{0,2}|V)"
 NAMED = re.compile(rf"(?:\+ |or )?([A-Z][a-z]?) ({LEVEL}{LEVEL}{LEVEL})\??")
-OTHER = re.compile(r"unexplained \d+ eV|(?:spike|dead point) \d+ eV|\+ \d+ more")
+OTHER = re.compile(
+    r"unexplained \d+ eV|(?:spike|dead point|saturation|plasmon loss|elastic peak|ionisation loss) \d+ eV|\+ \d+ more"
+)
 
 
 SHEETS: dict[str, Any] = {}
@@ -250,7 +252,7 @@ def test_hostile_names_are_shown_as_text(tmp_path: Path) -> None:
         base.answer,
         spectrum=HOSTILE,
         header={**base.answer.header, "sample": HOSTILE},
-        artefacts=(ArtefactNote(energy_ev=500.0, what=HOSTILE),),
+        artefacts=(ArtefactNote(energy_ev=500.0, what=HOSTILE, kind=HOSTILE),),
     )
     for ending in STARTS:
         draw_figure(replace(base, answer=answer), tmp_path / f"hostile.{ending}")

@@ -69,7 +69,7 @@ ANSWER = Identification(
     limits=(),
     why_not=(),
     untestable=(Untestable(element="H", why="too few electrons for an Auger transition"),),
-    artefacts=(ArtefactNote(energy_ev=500.0, what="spike of one channel"),),
+    artefacts=(ArtefactNote(energy_ev=500.0, what="spike of one channel", kind="spike"),),
     cautions=(),
     warnings=("the step is coarse",),
 )
