@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Any
 import click
 
 from .options import KNOWING, READING, figure_option, format_option, tables_option, with_options
+from .pages import PAGE_OPTIONS, WithWords
 
 if TYPE_CHECKING:
     from ..identification import Identification
@@ -15,10 +16,11 @@ if TYPE_CHECKING:
     from ..spectrum import Spectrum
 
 
-@click.command("assign", short_help="Which elements are here, how sure, and why?")
+@click.command("assign", cls=WithWords, short_help="Which elements are here, how sure, and why?")
 @click.argument("spectra", nargs=-1, required=True, metavar="SPECTRUM...")
 @format_option
 @figure_option
+@with_options(PAGE_OPTIONS)
 @with_options(READING)
 @with_options(KNOWING)
 @tables_option
@@ -31,12 +33,20 @@ def command(spectra: tuple[str, ...], form: str, figure: str | None, together: b
     Example: ident assign --rule-out Co survey.csv
 
     Example: ident assign --tables my_tables/ survey.csv
+
+    Example: ident assign --page report.html --about report.toml --image spots.png *.csv
     """
+    from dataclasses import replace
+
     from ..identification import examine
     from .figures import Figures
     from .inputs import Reading, answer_each
+    from .pages import PageFile, check_alone
 
     settings = settings_of(given)
+    if given["page"] is None:
+        check_alone(given)
+    page = PageFile(given, spectra) if given["page"] is not None else None
     figures = Figures(figure, len(spectra)) if figure is not None else None
     reading = Reading(
         **{key: given[key] for key in ("kind", "ordinate", "column", "separate", "within", "quiet")},
@@ -53,9 +63,14 @@ def command(spectra: tuple[str, ...], form: str, figure: str | None, together: b
         click.echo(_rendered(found, form), nl=False)
         if figures is not None:
             figures.draw(examined)
+        if page is not None:
+            page.add(replace(examined, answer=found))
         return found.minima > 0, found.warnings
 
-    return answer_each(spectra, reading, answer, beforehand=sitting.note if together else None)
+    code = answer_each(spectra, reading, answer, beforehand=sitting.note if together else None)
+    if page is not None:
+        page.write()
+    return code
 
 
 class _Sitting:
