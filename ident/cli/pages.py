@@ -48,7 +48,7 @@ PAGE_OPTIONS = (
     click.option("--page", metavar="PATH", help="Write one self-contained page of all answers, a .html file."),
     click.option("--about", metavar="FILE", help="TOML file with the page's header, the analyst's decisions, spots."),
     click.option(
-        "--header", multiple=True, callback=_pairs, metavar="KEY=VALUE", help="An entry of the page's header; repeatable."
+        "--header", multiple=True, callback=_pairs, metavar="KEY=VALUE", help="An entry of the page's header."
     ),
     click.option("--image", metavar="FILE", help="PNG or JPEG for the page, with the spots of --about marked."),
 )  # fmt: skip

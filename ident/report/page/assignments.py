@@ -10,8 +10,8 @@ from ..layout import probability
 from ..palette import MARKS
 from ..text_assign import deciding
 from .about import Decision
-from .markup import Markup, Part, el, group, lines
 from .marks import mark
+from .markup import Markup, Part, el, group, lines
 
 if TYPE_CHECKING:
     from ...identification import Assignment, Identification, LineNote, WhyNot

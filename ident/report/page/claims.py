@@ -8,8 +8,8 @@ from ..figure_labels import Label
 from ..layout import probability
 from ..palette import MARKS
 from .curves import label_at
-from .markup import Markup, Part, el, group
 from .marks import mark
+from .markup import Markup, Part, el
 
 if TYPE_CHECKING:
     from ...identification import Assignment, Examination, LineNote, Unexplained
@@ -108,9 +108,13 @@ def _claim(assignment: Assignment, line: LineNote) -> Markup:
 
 def _why(assignment: Assignment) -> Markup:
     """The weightiest reason for and against whoever claims most of a minimum."""
-    told = []
+    told: list[Part] = []
     for side in ("for", "against"):
         reason = next((r for r in assignment.reasons if r.side == side), None)
         if reason is not None:
-            told.append(group(el("span", f"{assignment.element}, {side}: ", cls="faint"), reason.text))
-    return el("p", *(group(one, el("br")) if place + 1 < len(told) else one for place, one in enumerate(told)), cls="why")
+            told += [
+                el("br") if told else None,
+                el("span", f"{assignment.element}, {side}: ", cls="faint"),
+                reason.text,
+            ]
+    return el("p", *told, cls="why")

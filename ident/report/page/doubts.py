@@ -69,7 +69,7 @@ def not_seen(answer: Identification) -> Markup:
     rarer = [limit for limit in answer.limits if not limit.usual]
     parts: list[Part] = []
     if answer.limits:
-        said = "Not seen, and would have been called, in 95 of 100 cases, from this amount on (atomic per cent, at line):"
+        said = "Not seen, and would have been called, in 95 of 100 cases, from this amount on (atomic per cent; line):"
         parts.append(el("p", said))
         parts.append(_limits(usual) if usual else None)
         if rarer:
@@ -81,9 +81,9 @@ def not_seen(answer: Identification) -> Markup:
 
 def _limits(limits: Sequence[Limit]) -> Markup:
     items = (
-        el("li", el("b", limit.element), f" {limit.atomic_percent:.2g}", el("span", f" {limit.line_ev:.0f} eV", cls="faint"))
-        for limit in limits
-    )  # fmt: skip
+        el("li", el("b", x.element), f" {x.atomic_percent:.2g}", el("span", f" {x.line_ev:.0f} eV", cls="faint"))
+        for x in limits
+    )
     return el("ul", *items, cls="limits")
 
 

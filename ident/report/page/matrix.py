@@ -8,16 +8,20 @@ from typing import TYPE_CHECKING
 from ...names import name_of
 from ..layout import probability
 from .about import Decision
-from .markup import Markup, el, group
 from .marks import mark
+from .markup import Markup, el, group
 
 if TYPE_CHECKING:
     from ...identification import Assignment, Identification
 
 
-def matrix(answers: Sequence[Identification], anchors: Sequence[str], decisions: Sequence[Mapping[str, Decision]]) -> Markup:
+def matrix(
+    answers: Sequence[Identification], anchors: Sequence[str], decisions: Sequence[Mapping[str, Decision]]
+) -> Markup:
     """Show every element that is present, likely or possible in one of the spectra, by atomic number."""
-    columns = sorted({(a.z, a.element) for answer in answers for a in answer.assignments if a.verdict != "not supported"})
+    columns = sorted(
+        {(a.z, a.element) for answer in answers for a in answer.assignments if a.verdict != "not supported"}
+    )
     head = el(
         "tr",
         el("th", "spectrum", scope="col"),
@@ -62,11 +66,8 @@ def _cell(symbol: str, answer: Identification, anchor: str, decided: Mapping[str
     if found is not None and found.verdict != "not supported":
         return _found(found, answer, anchor, decided.get(symbol))
     if any(item.element == symbol for item in answer.untestable):
-        word, shown = "not testable in this scan", "n/t"
-    else:
-        word, shown = "not supported", "·"
-    said = f"{symbol} in {answer.spectrum}: {word}"
-    return el("td", el("a", shown, href=f"#{anchor}", aria_label=said, title=said), cls="empty")
+        return el("td", el("a", "n/t", href=f"#{anchor}"))
+    return el("td", el("a", "·", href=f"#{anchor}", aria_label="not supported"))
 
 
 def _found(found: Assignment, answer: Identification, anchor: str, decision: Decision | None) -> Markup:
@@ -75,10 +76,10 @@ def _found(found: Assignment, answer: Identification, anchor: str, decision: Dec
         return el("td")
     chance = probability(found.probability)
     amount = f", about {found.abundance.atomic_percent:.2g} at%" if found.abundance and role != "possible" else ""
-    said = f"{found.element} in {answer.spectrum}: {role}, probability {chance}{amount}"
+    said = f"{role}, {chance}{amount}"
     if decision is not None and decision.decision:
         said += f"; {decision.decision} by the analyst"
     shown = el("s", chance) if decision is not None and decision.decision == "overruled" else chance
     inside = group(mark(role), el("span", shown))
     href = f"#{anchor}-{found.element}"
-    return el("td", el("a", inside, href=href, aria_label=said, title=said), cls=f"found {role}")
+    return el("td", el("a", inside, href=href, aria_label=said, title=said), cls=role)

@@ -5,19 +5,19 @@ One plot serves all spectra of a page. No callbacks in text are used, so that th
 
 from __future__ import annotations
 
+import math
 from typing import TYPE_CHECKING, Any
 
 from ..palette import FAINT_INK, GAP, INK, PAPER, PREDICTED, RULE
 
 if TYPE_CHECKING:
     from bokeh.models import ColumnDataSource
-    from bokeh.plotting import figure as Figure
+    from bokeh.plotting import figure
 
 FONT = "system-ui, 'Segoe UI', 'DejaVu Sans', sans-serif"
 ENERGY = "kinetic energy, eV"
 HEIGHTS = {"differential": 430, "residual": 130, "direct": 210, "direct-log": 210}
 LEFT = 74  # pixels for the ordinate's numbers, alike in all panels so that energies stand under each other
-SHADES = {"line": INK, "faint": FAINT_INK, "predicted": PREDICTED, "paper": PAPER}
 
 
 def library() -> str:
@@ -49,17 +49,18 @@ def _source(name: str, *columns: str) -> ColumnDataSource:
     return ColumnDataSource({column: [] for column in columns}, name=name)
 
 
-def _panel(name: str, shared: Any, label: str, *, log: bool = False, last: bool = False) -> Figure:
+def _panel(name: str, shared: Any, label: str, *, log: bool = False, last: bool = False) -> figure:
     """An empty panel in our own look, panned along the energies only; its height follows what is in view."""
     from bokeh.models import BoxZoomTool, PanTool, Range1d, WheelZoomTool
     from bokeh.plotting import figure
 
-    tools = [PanTool(dimensions="width"), BoxZoomTool(dimensions="width"), WheelZoomTool(dimensions="width")]
+    drag: Any = PanTool(dimensions="width")
+    tools = [drag, BoxZoomTool(dimensions="width"), WheelZoomTool(dimensions="width")]
     panel = figure(
         name=name, height=HEIGHTS[name], sizing_mode="stretch_width", x_range=shared, tools=tools,
         y_range=Range1d(start=0.0, end=1.0), y_axis_type="log" if log else "linear", toolbar_location=None,
         background_fill_color=PAPER, border_fill_color=PAPER, outline_line_color=None, min_border_left=LEFT,
-        min_border_right=12, min_border_top=6, min_border_bottom=6, active_drag=tools[0], active_scroll=None,
+        min_border_right=12, min_border_top=6, min_border_bottom=6, active_drag=drag, active_scroll=None,
         lod_threshold=None,
     )  # fmt: skip
     panel.grid.grid_line_color = None
@@ -76,17 +77,16 @@ def _panel(name: str, shared: Any, label: str, *, log: bool = False, last: bool 
     return panel
 
 
-def _gaps_and_cursor(panel: Figure) -> None:
+def _gaps_and_cursor(panel: figure) -> None:
     """What was not scanned, hatched; and where the minimum under the pointer stands."""
     gaps = _source(f"gaps {panel.name}", "left", "right", "bottom", "top")
-    panel.quad(
-        source=gaps, fill_color=GAP, line_color=None, hatch_pattern="/", hatch_color=RULE, hatch_weight=0.5, level="underlay"
-    )  # fmt: skip
+    hatched: dict[str, Any] = {"hatch_pattern": "/", "hatch_color": RULE, "hatch_weight": 0.5}
+    panel.quad(source=gaps, fill_color=GAP, line_color=None, level="underlay", **hatched)
     cursor = _source(f"cursor {panel.name}", "x")
     panel.vspan(x="x", source=cursor, line_color=FAINT_INK, line_width=1, line_dash=[2, 3], level="underlay")
 
 
-def _differential(shared: Any) -> Figure:
+def _differential(shared: Any) -> figure:
     """Measured differential, what was predicted, marks and labels of the minima."""
     from bokeh.core.properties import value
 
@@ -100,21 +100,21 @@ def _differential(shared: Any) -> Figure:
     panel.line("x", "y", source=chosen, color=PREDICTED, line_width=2.4, line_dash=[7, 3])
     panel.line("x", "y", source=_source("measured", "x", "y"), color=INK, line_width=1.1)
     rings = _source("shared", "x", "y")
-    panel.scatter("x", "y", source=rings, marker="circle", size=16, fill_color=None, line_color=FAINT_INK, line_width=1.2)
-    marks = _source("marks", "x", "y", "marker", "fill", "edge")
-    panel.scatter("x", "y", source=marks, marker="marker", size=9, fill_color="fill", line_color="edge", line_width=1.4)
-    panel.vspan(x="x", source=_source("stretches", "x"), line_color=RULE, line_width=1, line_dash=[1, 3], level="underlay")
-    gains = _source("gains", "x", "y", "text")
-    panel.text("x", "y", text="text", source=gains, text_font_size="12px", text_font=value(FONT), text_color=INK, x_offset=3)
+    panel.scatter("x", "y", source=rings, marker="circle", size=16, fill_color=None, line_color=FAINT_INK)
+    _marks(panel, "marks", 9)
+    stretches = _source("stretches", "x")
+    panel.vspan(x="x", source=stretches, line_color=RULE, line_width=1, line_dash=[1, 3], level="underlay")
+    style: dict[str, Any] = {"text_font_size": "12px", "text_font": value(FONT), "text_color": INK}
+    panel.text("x", "y", text="text", source=_source("gains", "x", "y", "text"), x_offset=3, **style)
     labels = _source("labels", "x", "y", "text")
     panel.text(
-        "x", "y", text="text", source=labels, angle=0.5 * 3.141592653589793, text_align="right", text_baseline="middle",
-        text_font_size="12px", text_font=value(FONT), text_color=INK, text_line_height=1.05,
+        "x", "y", text="text", source=labels, angle=0.5 * math.pi, text_align="right", text_baseline="middle",
+        text_line_height=1.05, **style,
     )  # fmt: skip
     return panel
 
 
-def _residual(shared: Any) -> Figure:
+def _residual(shared: Any) -> figure:
     panel = _panel("residual", shared, "left over")
     panel.yaxis.major_label_text_font_size = "0px"
     panel.yaxis.major_tick_line_color = None
@@ -123,7 +123,7 @@ def _residual(shared: Any) -> Figure:
     return panel
 
 
-def _direct(shared: Any, kind: str) -> Figure:
+def _direct(shared: Any, kind: str) -> figure:
     from bokeh.models import BasicTickFormatter, FixedTicker
 
     log = kind == "direct-log"
@@ -132,6 +132,12 @@ def _direct(shared: Any, kind: str) -> Figure:
     if log:
         panel.yaxis.ticker = FixedTicker(ticks=[], name="ticks")
     panel.line("x", "y", source=_source(f"{kind} curve", "x", "y"), color=INK, line_width=1.1)
-    spikes = _source(f"{kind} artefacts", "x", "y", "marker", "fill", "edge")
-    panel.scatter("x", "y", source=spikes, marker="marker", size=8, fill_color="fill", line_color="edge", line_width=1.4)
+    _marks(panel, f"{kind} artefacts", 8)
     return panel
+
+
+def _marks(panel: figure, name: str, size: int) -> None:
+    """Marks of the palette: which one and in what colours is said with each."""
+    source = _source(name, "x", "y", "marker", "fill", "edge")
+    look: dict[str, Any] = {"marker": "marker", "fill_color": "fill", "line_color": "edge"}
+    panel.scatter("x", "y", source=source, size=size, line_width=1.4, **look)

@@ -14,8 +14,8 @@ if TYPE_CHECKING:
     from ...identification import Identification
 
 STANDARDS = (
-    "What a report of Auger measurements should hold is laid down elsewhere: ISO 16242 and ASTM E996 are where to look. "
-    "The header here is a list of our own; no conformity with either is claimed."
+    "What a report of Auger measurements should hold is laid down elsewhere: ISO 16242 and ASTM E996 are where to "
+    "look. The header here is a list of our own; no conformity with either is claimed."
 )
 INDICATIVE = (
     "Atomic per cent are indicative: for a surface alike throughout, with sensitivities from the tables and no "

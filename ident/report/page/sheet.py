@@ -17,14 +17,15 @@ from .claims import minima_table
 from .curves import curve_data
 from .doubts import artefacts, doubts, not_seen
 from .header import header_entries, header_list
-from .markup import Markup, el, group
 from .marks import mark
+from .markup import Markup, el, group
 from .repeat import repeat_list
 
 if TYPE_CHECKING:
     from ...identification import Assignment, Examination, Identification
 
 DOTS_PER_INCH = 150
+MOST_LINES = 3  # of what is only possible, in pages of very many spectra
 COLOURS = 48  # of the printed figure: its ink, paper, marks and the shades between
 
 
@@ -42,10 +43,9 @@ class Sheet:
     data: dict[str, Any]
 
     @property
-    def title(self) -> str:
-        """What the sheet is called where it stands alone."""
-        sample = self.told.get("sample") or self.answer.header.get("sample")
-        return str(self.told.get("title") or sample or self.answer.spectrum)
+    def name(self) -> str:
+        """What was measured, or else the file."""
+        return str(self.told.get("sample") or self.answer.header.get("sample") or self.answer.spectrum)
 
 
 def make_sheet(examination: Examination, number: int, about: About, reading: Mapping[str, Any]) -> Sheet:
@@ -67,10 +67,10 @@ def make_sheet(examination: Examination, number: int, about: About, reading: Map
 
 
 def trimmed(answer: Identification) -> Identification:
-    """Leave out the reasons of what is only possible, lines that were not met, and limits of rarer elements."""
+    """Leave out the reasons and most lines of what is only possible, and the limits of rarer elements."""
     assignments = tuple(
         a if a.verdict in ("present", "likely")
-        else replace(a, reasons=(), rivals=(), lines=tuple(line for line in a.lines if line.status == "met"))
+        else replace(a, reasons=(), rivals=(), lines=tuple(x for x in a.lines if x.status == "met")[:MOST_LINES])
         for a in answer.assignments
     )  # fmt: skip
     return replace(answer, assignments=assignments, limits=tuple(limit for limit in answer.limits if limit.usual))
@@ -102,7 +102,7 @@ def article(sheet: Sheet, figure: bytes | None, body: Markup, *, alone: bool) ->
     answer = sheet.answer
     ranges = ", ".join(f"{low:.0f} to {high:.0f} eV" for low, high in answer.ranges_ev)
     what = f"{answer.spectrum}: {answer.kind} spectrum, {ranges}, {answer.minima} minima above the noise"
-    head = None if alone else el("h2", sheet.title)
+    head = el("h2", "Spectrum", cls="unseen") if alone else el("h2", sheet.name)
     entries = header_list(header_entries(answer, sheet.told), sheet.told.get("remark"))
     place = el("div", _printed(sheet, figure), cls="plot-place")
     return el(
@@ -136,7 +136,8 @@ def drawn(examination: Examination) -> bytes:
     from ..figure import make_figure
 
     sheet = BytesIO()
-    make_figure(examination).savefig(sheet, format="png", dpi=DOTS_PER_INCH, facecolor=PAPER, metadata={"Software": None})
+    unsigned = {"Software": None}  # the same answer gives the same file
+    make_figure(examination).savefig(sheet, format="png", dpi=DOTS_PER_INCH, facecolor=PAPER, metadata=unsigned)
     small = BytesIO()
     with Picture.open(sheet) as picture:
         picture.convert("RGB").quantize(COLOURS).save(small, "PNG", optimize=True)
@@ -150,7 +151,8 @@ def _chooser(answer: Identification) -> Markup:
         said = "No element is supported." if answer.minima else "Nothing stands above the noise."
         return el("div", el("p", said), cls="chooser")
     buttons = [_choice(assignment) for assignment in shown]
-    none = el("li", el("button", "none of them", type="button", data_element="", aria_pressed="true", cls="choice none"))
+    pressed = {"data_element": "", "aria_pressed": "true", "cls": "choice none"}
+    none = el("li", el("button", "none of them", type="button", **pressed))
     return el(
         "div",
         el("h3", "Assignments"),

@@ -18,18 +18,17 @@ from .image import Image, image_figure
 from .marks import key_of_marks, symbols
 from .markup import Markup, el, group, script_data, text
 from .matrix import matrix
-from .shades import shades, variables
 from .repeat import INDICATIVE, STANDARDS, whole_list
+from .shades import shades, variables
 from .sheet import Sheet, article, drawn, make_sheet
 
 if TYPE_CHECKING:
     from ...identification import Examination
 
 MOST_BYTES = 5_000_000
+SCRIPTS = ("curves.js", "drawing.js", "page.js")
 MOST_FIGURES = 8  # more spectra are printed without their figures
-LEFT_OUT = (
-    "With so many spectra, the reasons of elements that are only possible are left out; a page of fewer spectra has them."
-)
+LEFT_OUT = "With so many spectra, the reasons of elements that are only possible are left out; fewer have them."
 NEEDED = "a page needs bokeh, which is not installed; pip install 'auger-ident[page]', or '.[page]' in a checkout"
 
 
@@ -99,11 +98,18 @@ class Page:
             page = self._assembled(figures, lean=lean)
             if _size(page) <= MOST_BYTES:
                 return page
-        each = sum(_size(s.lean) + len(str(s.data)) for s in self._sheets) / len(self._sheets)
-        fit = len(self._sheets) - int((_size(page) - MOST_BYTES) / each) - 1
-        raise InputError(
-            f"the page would have {_size(page) / 1e6:.1f} MB, and 5 MB is the most",
-            remedy=f"give about {max(fit, 1)} of these {len(self._sheets)} spectra, or a smaller image",
+        raise self._too_large(_size(page))
+
+    def _too_large(self, size: int) -> InputError:
+        """Say how many spectra would have room."""
+        from .plot import library
+
+        count = len(self._sheets)
+        fixed = _size(library()) + (len(base64.b64encode(self._image.data)) if self._image else 0)
+        fit = int(0.97 * count * (MOST_BYTES - fixed) / max(size - fixed, 1))
+        return InputError(
+            f"the page of {count} spectra would have {size / 1e6:.1f} MB, and 5 MB is the most",
+            remedy=f"make pages of about {max(fit, 1)} spectra" + (", or take a smaller image" if self._image else ""),
         )
 
     def write(self, path: str | Path) -> None:
@@ -121,7 +127,7 @@ class Page:
     def _assembled(self, figures: Sequence[bytes], *, lean: bool) -> str:
         from .plot import library, plot_item
 
-        scripts = [library(), _resource("page.js")]
+        scripts = [library(), _script()]
         style = variables() + _resource("page.css")
         data = {"sheets": [s.data for s in self._sheets], "anchors": [s.anchor for s in self._sheets], **shades()}
         return Template(_resource("page.html")).substitute(
@@ -139,12 +145,13 @@ class Page:
         )
 
     def _title(self) -> str:
-        if len(self._sheets) == 1:
-            return self._sheets[0].title
-        return self._about.report.get("title") or f"{len(self._sheets)} spectra"
+        count = len(self._sheets)
+        return self._about.report.get("title") or (self._sheets[0].name if count == 1 else f"{count} spectra")
 
     def _heading(self) -> Markup:
-        return group(el("h1", self._title()), el("p", f"Elements from Auger electron spectra, by {edition()}", cls="by"))
+        return group(
+            el("h1", self._title()), el("p", f"Elements from Auger electron spectra, by {edition()}", cls="by")
+        )
 
     def _content(self, figures: Sequence[bytes], *, lean: bool) -> Markup:
         sheets, alone = self._sheets, len(self._sheets) == 1
@@ -207,7 +214,15 @@ def _policy(scripts: Sequence[str]) -> str:
     """Content security policy: our two scripts by their hashes, inline style, pictures in the file, no network."""
     hashes = (base64.b64encode(hashlib.sha256(s.encode()).digest()).decode("ascii") for s in scripts)
     allowed = " ".join(f"'sha256-{digest}'" for digest in hashes)
-    return f"default-src 'none'; script-src {allowed}; style-src 'unsafe-inline'; img-src data:; base-uri 'none'; form-action 'none'"
+    return (
+        f"default-src 'none'; script-src {allowed}; style-src 'unsafe-inline'; img-src data:; "
+        "base-uri 'none'; form-action 'none'"
+    )
+
+
+def _script() -> str:
+    """Our own script, written in parts that see each other and nothing else."""
+    return '"use strict";\n(() => {\n' + "\n".join(_resource(name) for name in SCRIPTS) + "})();\n"
 
 
 def _resource(name: str) -> str:
