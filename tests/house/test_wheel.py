@@ -35,4 +35,6 @@ def test_wheel_has_every_table_byte_for_byte(tmp_path: Path) -> None:
             assert inside in names, f"{inside} is not in the wheel"
             assert archive.read(inside) == table.read_bytes(), f"{inside} differs"
         assert "ident/py.typed" in names
+        for part in (ROOT / "ident" / "report" / "page").iterdir():
+            assert not part.is_file() or f"ident/report/page/{part.name}" in names
         assert not [name for name in names if name.startswith(("tests/", "demo_spectra/", "reference/"))]
