@@ -22,15 +22,17 @@ MINOR = "no element asked for: weak, or what a strong line leaves beside it"
 def minima_table(examination: Examination, labels: tuple[Label, ...], anchor: str) -> Markup:
     """List the minima in order of energy, each with those who claim it and why."""
     answer = examination.answer
-    left = {item.energy_ev: item for item in answer.unexplained}
+    left = {item.energy_ev: _left(item) for item in answer.unexplained}
+    nothing = {note.energy_ev: note.what for note in answer.artefacts}
     head = el(
         "tr",
         *(el("th", word, scope="col") for word in ("minimum, eV", "times noise", "what it is", "claimed by, and why")),
     )  # fmt: skip
     rows = [
-        _row(place, minimum, label_at(minimum.energy_ev, labels), answer.assignments, left, anchor)
+        _row(place, minimum, label_at(minimum.energy_ev, labels), answer.assignments, left, nothing, anchor)
         for place, minimum in enumerate(examination.analysis.minima)
     ]
+    found = {minimum.energy_ev for minimum in examination.analysis.minima}
     rows += [
         el(
             "tr",
@@ -40,6 +42,7 @@ def minima_table(examination: Examination, labels: tuple[Label, ...], anchor: st
             el("td", f"{note.what}: no line"),
         )
         for note in answer.artefacts
+        if note.energy_ev not in found
     ]
     if not rows:
         return el("p", "No minimum stands above the noise.")
@@ -52,36 +55,45 @@ def _row(
     minimum: Minimum,
     label: Label | None,
     assignments: tuple[Assignment, ...],
-    left: dict[float, Unexplained],
+    left: dict[float, str],
+    nothing: dict[float, str],
     anchor: str,
 ) -> Markup:
+    """One minimum; `left` and `nothing` say of energies why they are unexplained, or no line."""
     button = el("button", f"{minimum.energy_ev:.1f}", type="button", cls="go", data_place=place)
-    claims = el("td", *_claims(minimum, assignments, left.get(minimum.energy_ev)), cls="who")
+    energy = minimum.energy_ev
+    claims = el("td", *_claims(energy, assignments, left.get(energy), nothing.get(energy)), cls="who")
     return el(
         "tr",
         el("th", button, el("span", f" ± {minimum.sigma_ev:.1f}", cls="faint"), scope="row"),
         el("td", f"{minimum.significance:.0f}"),
-        el("td", *_what(label), cls="what"),
+        el("td", *_what(label, energy in nothing), cls="what"),
         claims,
         id=f"{anchor}-m{place}",
     )
 
 
-def _what(label: Label | None) -> tuple[Part, ...]:
+def _what(label: Label | None, no_line: bool) -> tuple[Part, ...]:
     if label is None:
-        return (el("span", "minor", cls="faint"),)
+        return (mark("artefact"), " artefact") if no_line else (el("span", "minor", cls="faint"),)
     if label.role == "unexplained" and not label.text[0].startswith("unexplained"):
         return mark(label.role), " poorly explained"
     return mark(label.role), f" {MARKS[label.role].word}", ", shared" if label.shared else None
 
 
-def _claims(minimum: Minimum, assignments: tuple[Assignment, ...], left: Unexplained | None) -> tuple[Part, ...]:
+def _left(item: Unexplained) -> str:
+    return f"lines near it: {', '.join(item.candidates)}" if item.candidates else "no line near it"
+
+
+def _claims(
+    energy_ev: float, assignments: tuple[Assignment, ...], left: str | None, nothing: str | None
+) -> tuple[Part, ...]:
     found = [
         (assignment, line)
         for assignment in assignments
         if assignment.verdict != "not supported"
         for line in assignment.lines
-        if line.found_ev == minimum.energy_ev
+        if line.found_ev == energy_ev
     ]
     found.sort(key=lambda pair: (-(pair[1].share or 0.0) * pair[0].probability, -pair[0].probability))
     parts: list[Part] = []
@@ -91,8 +103,9 @@ def _claims(minimum: Minimum, assignments: tuple[Assignment, ...], left: Unexpla
             parts.append(el("p", f"and {len(found) - MOST_CLAIMS} weaker claims"))
         parts.append(_why(found[0][0]))
     if left is not None:
-        near = f"lines near it: {', '.join(left.candidates)}" if left.candidates else "no line near it"
-        parts.append(el("p", f"{'explained poorly' if found else 'unexplained'}; {near}"))
+        parts.append(el("p", f"{'explained poorly' if found else 'unexplained'}; {left}"))
+    if nothing is not None:
+        parts.append(el("p", f"{'or ' if found else ''}{nothing}"))
     return tuple(parts) if parts else (el("span", MINOR, cls="faint"),)
 
 

@@ -57,6 +57,8 @@ def curve_data(examination: Examination, labels: tuple[Label, ...]) -> dict[str,
     shown = [a.element for a in answer.assignments if a.probability >= POSSIBLE]
     together = predict_curves(examination, answer.called)
     alone = {element: predict_curves(examination, [element]) for element in shown}
+    minima = {m.energy_ev for m in analysis.minima}
+    nothing = {note.energy_ev for note in answer.artefacts}
     windows = []
     for number, (window, differential) in enumerate(
         zip(analysis.spectrum.windows, analysis.differentials, strict=True)
@@ -75,8 +77,8 @@ def curve_data(examination: Examination, labels: tuple[Label, ...]) -> dict[str,
         "called": list(answer.called),
         "steep": steep(examination),
         "stretches": [[round(s.low_ev, 3), round(s.high_ev, 3), s.gain, s.window] for s in stretches_of(analysis)],
-        "minima": [_minimum(m, labels) for m in analysis.minima],
-        "artefacts": [note.energy_ev for note in answer.artefacts],
+        "minima": [_minimum(m, labels, m.energy_ev in nothing) for m in analysis.minima],
+        "artefacts": sorted(nothing - minima),
     }
 
 
@@ -94,10 +96,12 @@ def label_at(energy_ev: float, labels: tuple[Label, ...]) -> Label | None:
     return next((one for one in labels if one.role != "artefact" and one.energy_ev == energy_ev), None)
 
 
-def _minimum(minimum: Minimum, labels: tuple[Label, ...]) -> dict[str, Any]:
+def _minimum(minimum: Minimum, labels: tuple[Label, ...], no_line: bool) -> dict[str, Any]:
     label = label_at(minimum.energy_ev, labels)
     told: dict[str, Any] = {"ev": round(minimum.energy_ev, 3)}
     if label is not None:
         told |= {"role": label.role, "label": list(label.text), "rank": round(label.rank, 3)}
         told |= {"shared": True} if label.shared else {}
+    elif no_line:
+        told["role"] = "artefact"
     return told

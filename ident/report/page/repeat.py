@@ -32,6 +32,7 @@ def repeat_list(answer: Identification, reading: Mapping[str, Any]) -> Markup:
         ("SHA-256 of the input", el("code", answer.sha256 or "none: arrays, not a file")),
         ("recorded as", f"{answer.kind}; {ranges}"),
         ("made by", answer.edition),
+        *_own_tables(answer),
         ("axis", f"reads energy + ({scale.offset_ev:+.2f} ± {scale.offset_sigma_ev:.2f}) eV "
                  f"+ ({scale.slope:+.5f} ± {scale.slope_sigma:.5f}) × energy, against lines from the Fermi level"),
         ("charging", scale.charging),
@@ -45,6 +46,10 @@ def repeat_list(answer: Identification, reading: Mapping[str, Any]) -> Markup:
     if comments := _comments(answer):
         entries.append(("the file also says", el("ul", *(el("li", comment) for comment in comments))))
     return _terms(entries)
+
+
+def _own_tables(answer: Identification) -> list[tuple[str, Part]]:
+    return [("own tables over these", _said(answer.own_tables))] if answer.own_tables else []
 
 
 def _readings(readings: Sequence[tuple[float, float, float]]) -> str:
