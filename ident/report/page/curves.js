@@ -10,8 +10,9 @@ const HOLLOW = ["ring", "square"];
 const NEAR = 10;        // pixels from a minimum within which the pointer means it
 const LETTER = 7.1;     // pixels a letter of a label, upright; measured on the widest usual font
 const LINE = 14;        // pixels a line of a label
+const ASIDE = [0, -7, 7, -14, 14, -21, 21, -28, 28, -36, 36]; // pixels that a label may stand beside its minimum
 const PAD = 10;         // pixels free above what is highest and below what is lowest
-const BELOW = 26;       // pixels between a minimum and where its label begins
+const BELOW = 30;       // pixels between a minimum and where its label begins
 const MARGIN = 0.015;   // of the range, to either side of it
 const state = {sheet: -1, element: "", place: -1, gain: 1, magnified: true, waiting: false};
 let panels = {}, sources = {}, tools = [], ticks = null;

@@ -132,16 +132,25 @@ function placeMarks(curves) {
     }
     if (minimum.label) wanted.push(minimum);
   }
-  // labels side by side: those of the highest rank first, the rest where there is room left
-  const taken = [];
+  // labels side by side: those of the highest rank first, the rest where there is room left, a little aside if need be
+  const taken = [], leaders = {x0: [], y0: [], x1: [], y1: []};
   for (const minimum of wanted.sort((a, b) => b.rank - a.rank)) {
     const half = 0.5 * LINE * minimum.label.length + 1, at = minimum.ev / pixel;
-    if (taken.some(([from, to]) => at - half < to && at + half > from)) continue;
-    taken.push([at - half, at + half]);
-    labels.x.push(minimum.ev);
-    labels.y.push(valueAt(curves, minimum.ev, (half + 2) * pixel) - 19 * unit);
+    const aside = ASIDE.find((by) => !taken.some(([from, to]) => at + by - half < to && at + by + half > from));
+    if (aside === undefined) continue;
+    taken.push([at + aside - half, at + aside + half]);
+    const x = minimum.ev + aside * pixel, foot = valueAt(curves, minimum.ev, 4 * pixel);
+    const y = Math.min(foot, valueAt(curves, x, (half + 2) * pixel)) - (aside ? 25 : 19) * unit;
+    labels.x.push(x);
+    labels.y.push(y);
     labels.text.push(minimum.label.join("\n"));
+    if (!aside) continue;
+    leaders.x0.push(minimum.ev);
+    leaders.y0.push(foot - 14 * unit);
+    leaders.x1.push(x);
+    leaders.y1.push(y + 2 * unit);
   }
+  sources.leaders.data = leaders;
   sources.marks.data = marks;
   sources.shared.data = rings;
   placeGains(curves, range.end - 20 * unit, unit, pixel);

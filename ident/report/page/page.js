@@ -278,7 +278,7 @@ async function start() {
     tools.push(...panels[name].toolbar.tools);
     for (const one of ["gaps", "cursor"]) sources[`${one} ${name}`] = named(`${one} ${name}`);
   }
-  for (const name of ["measured", "together", "chosen", "rest", "marks", "shared", "labels", "gains", "stretches"]) sources[name] = named(name);
+  for (const name of ["measured", "together", "chosen", "rest", "marks", "shared", "labels", "gains", "stretches", "leaders"]) sources[name] = named(name);
   for (const kind of ["direct", "direct-log"]) {
     for (const what of ["curve", "artefacts"]) sources[`${kind} ${what}`] = named(`${kind} ${what}`);
   }

@@ -101,6 +101,8 @@ def _differential(shared: Any) -> figure:
     panel.line("x", "y", source=_source("measured", "x", "y"), color=INK, line_width=1.1)
     rings = _source("shared", "x", "y")
     panel.scatter("x", "y", source=rings, marker="circle", size=16, fill_color=None, line_color=FAINT_INK)
+    leaders = _source("leaders", "x0", "y0", "x1", "y1")
+    panel.segment("x0", "y0", "x1", "y1", source=leaders, line_color=FAINT_INK, line_width=0.8)
     _marks(panel, "marks", 9)
     stretches = _source("stretches", "x")
     panel.vspan(x="x", source=stretches, line_color=RULE, line_width=1, line_dash=[1, 3], level="underlay")
