@@ -12,6 +12,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
+    from .contrasting import Contrast, contrast
     from .errors import IdentError
     from .identification import Identification, identify, identify_together
     from .lookup import candidates_at, element_card
@@ -24,6 +25,7 @@ if TYPE_CHECKING:
 __version__ = "0.1.0"
 
 __all__ = [
+    "Contrast",
     "IdentError",
     "Identification",
     "Recheck",
@@ -33,6 +35,7 @@ __all__ = [
     "__version__",
     "calibrate_scale",
     "candidates_at",
+    "contrast",
     "element_card",
     "identify",
     "identify_together",
@@ -45,6 +48,7 @@ __all__ = [
 ]
 
 _HOMES = {
+    "Contrast": "contrasting",
     "IdentError": "errors",
     "Identification": "identification",
     "Recheck": "rechecking",
@@ -53,6 +57,7 @@ _HOMES = {
     "Spectrum": "spectrum",
     "calibrate_scale": "scale",
     "candidates_at": "lookup",
+    "contrast": "contrasting",
     "element_card": "lookup",
     "identify": "identification",
     "identify_together": "identification",

@@ -12,7 +12,7 @@ import click
 from ..errors import IdentError, SettingError, UnknownNameError
 from .say import complain
 
-COMMANDS = ("assign", "at", "element", "minima", "recheck", "scale", "tables")
+COMMANDS = ("assign", "at", "element", "minima", "recheck", "contrast", "scale", "tables")
 WRONG_USAGE, NOT_READ = 2, 1
 
 CONTEXT = {"help_option_names": ["-h", "--help"], "max_content_width": 100}

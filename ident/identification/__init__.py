@@ -25,7 +25,7 @@ from .answer import (
     plain_data,
     verdict_of,
 )
-from .build import Examination, examine, identify, relative_resolution
+from .build import Examination, examine, identify, relative_resolution, settings_from
 from .together import identify_together, sittings_of, warned_of_sitting
 
 __all__ = [
@@ -51,6 +51,7 @@ __all__ = [
     "minima_answer",
     "plain_data",
     "relative_resolution",
+    "settings_from",
     "sittings_of",
     "verdict_of",
     "warned_of_sitting",

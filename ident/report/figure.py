@@ -49,29 +49,33 @@ def write_figure(examination: Examination, path: str | Path) -> None:
     InputError
         When the file cannot be written.
     """
+    with style():
+        save(make_figure(examination), path)
+
+
+def save(figure: Figure, path: str | Path) -> None:
+    """Write a figure that was drawn; errors are those of `write_figure`."""
     form = figure_format(path)
     # nothing about when or where, so that the same answer gives the same file
     undated = {"png": {"Software": None}, "svg": {"Date": None}, "pdf": {"CreationDate": None}}[form]
-    with _style():
-        figure = make_figure(examination)
-        try:
-            figure.savefig(path, format=form, dpi=DOTS_PER_INCH, metadata=undated)
-        except OSError as failed:
-            raise InputError(
-                f"the figure could not be written ({failed.strerror or failed})",
-                source=str(path),
-                remedy="give --figure a file in a folder that can be written to",
-            ) from None
+    try:
+        figure.savefig(path, format=form, dpi=DOTS_PER_INCH, metadata=undated)
+    except OSError as failed:
+        raise InputError(
+            f"the figure could not be written ({failed.strerror or failed})",
+            source=str(path),
+            remedy="give --figure a file in a folder that can be written to",
+        ) from None
 
 
 def make_figure(examination: Examination) -> Figure:
     """Draw an answer, without saving it."""
-    with _style():
+    with style():
         return _drawn(examination)
 
 
 @contextmanager
-def _style() -> Iterator[None]:
+def style() -> Iterator[None]:
     """Settings of ours for the while, whatever the user's own are."""
     import matplotlib as mpl
 

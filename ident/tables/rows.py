@@ -348,12 +348,38 @@ class Rival:
         _need(self.reach_ev > 0, "reach_ev", "must be positive")
 
 
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Residue:
+    """What a kind of residue brings to a surface."""
+
+    unique_by: ClassVar[tuple[str, ...]] = ("pattern",)
+
+    pattern: str
+    needs: str  # symbols that must be new or enriched, blank between
+    helps: str  # symbols that go with it
+    against: str  # symbols that do not
+    text: str  # what it would be
+    test: str  # that could prove it
+    kind: str
+    source: str
+
+    def __post_init__(self) -> None:
+        for column in ("needs", "helps", "against"):
+            strange = [symbol for symbol in getattr(self, column).split() if symbol not in WITH_LINES]
+            _need(not strange, column, f"{strange[0] if strange else ''} is no element from Li to U")
+        _need(bool(self.needs), "needs", "must name an element")
+        both = set(self.needs.split()) & set(self.against.split())
+        _need(not both, "against", "must not name what is needed")
+        _need(bool(self.text and self.test), "test", "must say what it is and what could prove it")
+
+
 # The tables that the program reads when it answers; the others serve to rebuild them.
 READ: dict[str, type] = {
     "chemical_shifts.csv": ChemicalShift,
     "commonness.csv": Commonness,
     "lines.csv": Line,
     "materials.csv": Material,
+    "residues.csv": Residue,
     "rivals.csv": Rival,
     "scale_lines.csv": ScaleLine,
     "sensitivities.csv": Sensitivity,

@@ -14,6 +14,7 @@ from .rows import (
     Material,
     PublishedLine,
     PublishedSensitivity,
+    Residue,
     Rival,
     ScaleLine,
     Sensitivity,
@@ -179,3 +180,9 @@ def families() -> dict[str, Family]:
 def sources() -> dict[str, Source]:
     """What every source key stands for."""
     return {row.key: row for row in read_rows("sources.csv", Source)}
+
+
+@cached
+def residues() -> tuple[Residue, ...]:
+    """Residues and the elements they bring."""
+    return read_rows("residues.csv", Residue)

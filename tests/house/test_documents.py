@@ -13,6 +13,7 @@ from pathlib import Path
 import pytest
 
 from ident.cli import COMMANDS
+from ident.contrasting import CONTRAST_CODES
 from ident.lookup import LOOKUP_CODES
 from ident.reasons import ASKED_CODES, RULES
 from ident.rechecking import RECHECK_CODES
@@ -79,7 +80,7 @@ def test_every_reason_code_is_documented_and_no_other() -> None:
     section = README.split("## Reason codes", 1)[1].split("\n## ", 1)[0]
     documented = re.findall(r"^\| `([a-z-]+)` \|", section, flags=re.MULTILINE)
     assert len(documented) == len(set(documented))
-    others = {*LOOKUP_CODES, *ASKED_CODES, *RECHECK_CODES}
+    others = {*LOOKUP_CODES, *ASKED_CODES, *RECHECK_CODES, *CONTRAST_CODES}
     assert set(documented) == {rule.code() for rule in RULES} | others
 
 

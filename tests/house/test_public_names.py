@@ -9,6 +9,7 @@ import time
 import ident
 
 PUBLIC = {
+    "Contrast",
     "IdentError",
     "Identification",
     "Recheck",
@@ -18,6 +19,7 @@ PUBLIC = {
     "__version__",
     "calibrate_scale",
     "candidates_at",
+    "contrast",
     "element_card",
     "identify",
     "identify_together",

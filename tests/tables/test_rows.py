@@ -27,7 +27,13 @@ STATE = (
     *("binding_energies.csv", "chemical_shifts.csv", "lines.csv", "materials.csv", "published_lines.csv"),
     *("published_sensitivities.csv", "scale_lines.csv", "transitions.csv"),
 )
-JUDGEMENTS = {"commonness.csv", "families.csv", "shift_ranges.csv", "sources.csv"}  # no energies, or a range
+JUDGEMENTS = {
+    "commonness.csv",
+    "families.csv",
+    "residues.csv",
+    "shift_ranges.csv",
+    "sources.csv",
+}  # no energies, or a range
 
 
 @pytest.mark.parametrize("name", NAMES)
