@@ -15,6 +15,7 @@ from .make_demo import DEMOS, FOLDER, Demo, demo_cases, render_demos
 FILES = [demo.file for demo in DEMOS]
 LABELS = "slip_ring_dead_labels.csv"  # for `ident recheck`, not a spectrum
 PAGE = {"slip_ring_report.toml", "slip_ring_spots.png"}  # for `ident assign --page`
+PICTURE = "slip_ring_contrast.png"  # what `ident contrast --figure` draws, for the README
 
 
 @pytest.mark.parametrize("file", FILES)
@@ -33,7 +34,7 @@ def test_readme_names_every_file_and_what_has_to_be_found() -> None:
     rows = re.findall(r"^\| `([^`]+)` \|.*\| ([^|]+) \| [^|]+ \|$", text, flags=re.MULTILINE)
     found = {file: set(elements.split(", ")) for file, elements in rows}
     assert found == {file: set(case.must) for file, case in demo_cases().items()}
-    assert set(found) | {"README.md", LABELS} | PAGE == {path.name for path in FOLDER.iterdir()}
+    assert set(found) | {"README.md", LABELS, PICTURE} | PAGE == {path.name for path in FOLDER.iterdir()}
 
 
 @pytest.mark.parametrize("file", FILES)

@@ -7,6 +7,7 @@ from __future__ import annotations
 import csv
 import io
 import json
+import os
 import subprocess
 import sys
 from pathlib import Path
@@ -198,3 +199,13 @@ def test_several_files_have_one_csv_header(run: Run) -> None:
 def test_windows_can_be_taken_apart(run: Run) -> None:
     _, out, _ = run("minima", "--quiet", "--separate", "--format", "json", DEMO / "terminal_windows.csv")
     assert len(out.splitlines()) == 5  # windows, says the README of the demo spectra
+
+
+@pytest.mark.parametrize(("words", "wanted"), [("ident con", "contrast"), ("ident assign --spu", "--sputtered")])
+def test_the_shell_completes_commands_and_options(words: str, wanted: str) -> None:
+    place = str(len(words.split()) - 1)
+    environment = {**os.environ, "COMP_WORDS": words, "COMP_CWORD": place, "_IDENT_COMPLETE": "bash_complete"}
+    done = subprocess.run(
+        [sys.executable, "-m", "ident"], env=environment, capture_output=True, text=True, check=False, timeout=60
+    )
+    assert wanted in done.stdout
