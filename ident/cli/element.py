@@ -9,7 +9,7 @@ import click
 from ..errors import UnknownNameError
 from ..lookup import ElementCard, card_answer, element_card
 from .options import STATING, energy_scale, format_option, tables_option, with_options
-from .say import complain, say_own_tables
+from .say import complain, say_corrected, say_own_tables
 
 
 @click.command("element", short_help="The reference card of an element.")
@@ -37,6 +37,7 @@ def command(names: tuple[str, ...], emission: float, form: str, **given: Any) ->
     """
     scale = energy_scale(given)
     cards, failed = [], False
+    say_corrected(names)
     for name in names:
         try:
             cards.append(element_card(name, scale=scale, emission_deg=emission))

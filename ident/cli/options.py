@@ -41,7 +41,11 @@ def _range(_: click.Context, __: click.Parameter, value: str | None) -> tuple[fl
 
 def _names(_: click.Context, __: click.Parameter, value: Iterable[str]) -> tuple[str, ...]:
     """Read names given in several options, or with commas or blanks between."""
-    return tuple(name for text in value for name in re.split(r"[,;\s]+", text) if name)
+    from .say import say_corrected
+
+    names = tuple(name for text in value for name in re.split(r"[,;\s]+", text) if name)
+    say_corrected(names)
+    return names
 
 
 def _scale(_: click.Context, __: click.Parameter, value: str | None) -> ScaleCalibration | None:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import sys
+from collections.abc import Iterable
 
 import click
 
@@ -36,3 +37,17 @@ def say_own_tables(form: str) -> None:
         click.echo(hanging("tables", tables.edition()))
     else:
         warn(f"tables {tables.edition()}")
+
+
+def say_corrected(names: Iterable[str]) -> None:
+    """Say how misspelt names of elements were read."""
+    from ..errors import UnknownNameError
+    from ..names import name_of, read_element
+
+    for name in names:
+        try:
+            read = read_element(name)
+        except UnknownNameError:
+            continue  # said when it is used
+        if read.corrected:
+            warn(f"'{name}' is read as {name_of(read.symbol)} ({read.symbol})")

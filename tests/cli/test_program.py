@@ -209,3 +209,12 @@ def test_the_shell_completes_commands_and_options(words: str, wanted: str) -> No
         [sys.executable, "-m", "ident"], env=environment, capture_output=True, text=True, check=False, timeout=60
     )
     assert wanted in done.stdout
+
+
+def test_a_misspelt_name_is_read_and_said(run: Run) -> None:
+    code, out, err = run("element", "titanum")
+    assert code == 0
+    assert "titanium" in out
+    assert "'titanum' is read as titanium (Ti)" in err
+    assert run("element", "titanium")[2] == ""
+    assert "read as nickel (Ni)" in run("assign", "--expect", "nikel", PLATINUM)[2]
