@@ -13,6 +13,7 @@ BEAM_KEV = (0.1, 50.0)  # what electron guns for this job give
 RESOLUTION = (1e-5, 0.05)
 RESOLUTION_EV = (0.01, 20.0)
 NO_AUGER_LINE = ("H", "He")
+SAID = {"beam_kev": "beam energy", "resolution_ev": "resolution"}
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -67,7 +68,8 @@ def _check(name: str, value: float | None, limits: tuple[float, float], unit: st
         return
     low, high = limits
     if not (math.isfinite(value) and low <= value <= high):
-        raise SettingError(f"{name} {value:g} is out of the question; it lies between {low:g} and {high:g} {unit}")
+        said = SAID.get(name, name)
+        raise SettingError(f"{said} {value:g} is out of the question; it lies between {low:g} and {high:g} {unit}")
 
 
 def _symbols(setting: str, names: tuple[str, ...] | str) -> tuple[str, ...]:

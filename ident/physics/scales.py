@@ -151,7 +151,8 @@ class EnergyScale:
 
 def _check(name: str, value: float, most: float, wanted: str) -> None:
     if not 0.0 <= value <= most:
-        raise SettingError(f"{name} {value:g} must lie between 0 and {most:g}; give {wanted}")
+        said = name.removesuffix("_ev").replace("_", " ")
+        raise SettingError(f"{said} {value:g} must lie between 0 and {most:g}; give {wanted}")
 
 
 def stated_from_absolute(energy_ev: float, natural_ev: float, scale: EnergyScale) -> float:
