@@ -11,6 +11,7 @@ import numpy as np
 from .forward import Case
 
 CALLED = 0.5  # probability from which an element counts as called
+OPEN = (0.02, 0.98)  # probabilities between which a judgement is an open one
 CONFIDENT = 0.95  # from which a wrong call is a confident one
 
 
@@ -60,6 +61,8 @@ class Summary:
     f1_pooled: float  # of all elements of all spectra together
     all_right: float  # share of spectra
     calibration: tuple[CalibrationBin, ...]
+    log_loss: float  # of judgements between 0.02 and 0.98
+    confident_calls: int  # at 0.95 or more
     calibration_error: float  # mean distance of probability and share over the bins, weighed by count
     calibration_error_range: tuple[float, float]  # 5th and 95th percentile over resampled spectra
     confident_false: tuple[tuple[int, str, float], ...]  # seed, element, probability
@@ -101,9 +104,11 @@ def summarise(scores: Sequence[CaseScore]) -> Summary:
         f1_mean_sd=float(each.std(ddof=1) / np.sqrt(each.size)) if each.size > 1 else 0.0,
         f1_pooled=2 * right / max(2 * right + false + missed, 1),
         all_right=float(np.mean([score.all_right for score in scores])) if scores else 0.0,
-        calibration=calibration_table([pair for score in scores for pair in score.judged]),
-        calibration_error=calibration_error([pair for score in scores for pair in score.judged]),
+        calibration=calibration_table(_open(scores)),
+        calibration_error=calibration_error(_open(scores)),
         calibration_error_range=_error_range(scores),
+        log_loss=log_loss(scores),
+        confident_calls=sum(p >= CONFIDENT for score in scores for p, _ in score.judged),
         confident_false=tuple((score.seed, *pair) for score in scores for pair in score.confident_false),
         missed_most=tuple(Counter(e for score in scores for e in score.missed).most_common(12)),
         false_most=tuple(Counter(e for score in scores for e in score.false).most_common(12)),
@@ -128,6 +133,18 @@ def calibration_error(judged: Sequence[tuple[float, bool]], bins: int = 10) -> f
     return sum(part.count * abs(part.probability - part.present) for part in table) / max(total, 1)
 
 
+def _open(scores: Sequence[CaseScore]) -> list[tuple[float, bool]]:
+    """Judgements that are neither given up nor certain: where calibration matters, and is not won by the obvious."""
+    low, high = OPEN
+    return [pair for score in scores for pair in score.judged if low < pair[0] < high]
+
+
+def log_loss(scores: Sequence[CaseScore]) -> float:
+    """Mean of -ln of the probability given to what is true, over open judgements."""
+    pairs = _open(scores)
+    return float(-np.mean([np.log(p if true else 1.0 - p) for p, true in pairs])) if pairs else 0.0
+
+
 def _error_range(scores: Sequence[CaseScore], resamples: int = 200) -> tuple[float, float]:
     if not scores:
         return 0.0, 0.0
@@ -135,6 +152,6 @@ def _error_range(scores: Sequence[CaseScore], resamples: int = 200) -> tuple[flo
     errors = []
     for _ in range(resamples):
         drawn = rng.integers(len(scores), size=len(scores))
-        errors.append(calibration_error([pair for index in drawn for pair in scores[index].judged]))
+        errors.append(calibration_error(_open([scores[index] for index in drawn])))
     low, high = np.percentile(errors, [5, 95])
     return float(low), float(high)
