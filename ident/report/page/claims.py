@@ -12,10 +12,11 @@ from .marks import mark
 from .markup import Markup, Part, el
 
 if TYPE_CHECKING:
-    from ...identification import Assignment, Examination, LineNote, Unexplained
+    from ...identification import ArtefactNote, Assignment, Examination, LineNote, Unexplained
     from ...minima import Minimum
 
 MOST_CLAIMS = 4
+CALLED = 0.5  # probability from which an element goes before those that are only possible
 MINOR = "no element asked for: weak, or what a strong line leaves beside it"
 
 
@@ -23,7 +24,7 @@ def minima_table(examination: Examination, labels: tuple[Label, ...], anchor: st
     """List the minima in order of energy, each with those who claim it and why."""
     answer = examination.answer
     left = {item.energy_ev: _left(item) for item in answer.unexplained}
-    nothing = {note.energy_ev: note.what for note in answer.artefacts}
+    nothing = {note.energy_ev: note for note in answer.artefacts}
     head = el(
         "tr",
         *(el("th", word, scope="col") for word in ("minimum, eV", "times noise", "what it is", "claimed by, and why")),
@@ -38,7 +39,7 @@ def minima_table(examination: Examination, labels: tuple[Label, ...], anchor: st
             "tr",
             el("th", f"{note.energy_ev:.1f}", scope="row"),
             el("td"),
-            el("td", mark("artefact"), " artefact"),
+            el("td", mark("artefact"), f" {note.kind}"),
             el("td", f"{note.what}: no line"),
         )
         for note in answer.artefacts
@@ -56,10 +57,10 @@ def _row(
     label: Label | None,
     assignments: tuple[Assignment, ...],
     left: dict[float, str],
-    nothing: dict[float, str],
+    nothing: dict[float, ArtefactNote],
     anchor: str,
 ) -> Markup:
-    """One minimum; `left` and `nothing` say of energies why they are unexplained, or no line."""
+    """One minimum; `left` and `nothing` say of energies why they are unexplained, or what they are if no line."""
     button = el("button", f"{minimum.energy_ev:.1f}", type="button", cls="go", data_place=place)
     energy = minimum.energy_ev
     claims = el("td", *_claims(energy, assignments, left.get(energy), nothing.get(energy)), cls="who")
@@ -67,15 +68,15 @@ def _row(
         "tr",
         el("th", button, el("span", f" ± {minimum.sigma_ev:.1f}", cls="faint"), scope="row"),
         el("td", f"{minimum.significance:.0f}"),
-        el("td", *_what(label, energy in nothing), cls="what"),
+        el("td", *_what(label, nothing.get(energy)), cls="what"),
         claims,
         id=f"{anchor}-m{place}",
     )
 
 
-def _what(label: Label | None, no_line: bool) -> tuple[Part, ...]:
+def _what(label: Label | None, nothing: ArtefactNote | None) -> tuple[Part, ...]:
     if label is None:
-        return (mark("artefact"), " artefact") if no_line else (el("span", "minor", cls="faint"),)
+        return (mark("artefact"), f" {nothing.kind}") if nothing else (el("span", "minor", cls="faint"),)
     if label.role == "unexplained" and not label.text[0].startswith("unexplained"):
         return mark(label.role), " poorly explained"
     return mark(label.role), f" {MARKS[label.role].word}", ", shared" if label.shared else None
@@ -86,7 +87,7 @@ def _left(item: Unexplained) -> str:
 
 
 def _claims(
-    energy_ev: float, assignments: tuple[Assignment, ...], left: str | None, nothing: str | None
+    energy_ev: float, assignments: tuple[Assignment, ...], left: str | None, nothing: ArtefactNote | None
 ) -> tuple[Part, ...]:
     found = [
         (assignment, line)
@@ -95,7 +96,7 @@ def _claims(
         for line in assignment.lines
         if line.found_ev == energy_ev
     ]
-    found.sort(key=lambda pair: (-(pair[1].share or 0.0) * pair[0].probability, -pair[0].probability))
+    found.sort(key=lambda pair: (pair[0].probability < CALLED, -(pair[1].share or 0.0) * pair[0].probability))
     parts: list[Part] = []
     if found:
         parts.append(el("ul", *(_claim(*pair) for pair in found[:MOST_CLAIMS])))
@@ -105,7 +106,7 @@ def _claims(
     if left is not None:
         parts.append(el("p", f"{'explained poorly' if found else 'unexplained'}; {left}"))
     if nothing is not None:
-        parts.append(el("p", f"{'or ' if found else ''}{nothing}"))
+        parts.append(el("p", f"{'or ' if found else ''}{nothing.what}"))
     return tuple(parts) if parts else (el("span", MINOR, cls="faint"),)
 
 

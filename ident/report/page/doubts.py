@@ -9,7 +9,7 @@ from ..layout import probability
 from .markup import Markup, Part, el, group
 
 if TYPE_CHECKING:
-    from ...identification import Identification, Limit, Untestable
+    from ...identification import FurtherScan, Identification, Limit, Untestable
 
 
 def doubts(answer: Identification) -> Markup:
@@ -26,12 +26,22 @@ def _inseparable(answer: Identification) -> Iterator[Markup]:
                 "tr",
                 el("th", " or ".join(pair.elements), scope="row"),
                 el("td", f"{pair.at_ev:.1f}"),
-                el("td", pair.settle),
+                el("td", pair.settle, _scans(pair.scans[1:])),
             )
             for pair in answer.inseparable
         ]
         caption = el("caption", "Elements that this scan cannot tell apart")
         yield el("div", el("table", caption, el("thead", head), el("tbody", *rows), cls="small n2"), cls="wide")
+
+
+def _scans(scans: Sequence[FurtherScan]) -> Markup | None:
+    """The further scans that would decide too, best first."""
+    told = [
+        el("li", f"or {scan.low_ev:.0f} to {scan.high_ev:.0f} eV: {scan.element} {scan.transition}; "
+                 f"{scan.dwell:.2g} times this dwell, {scan.information_bits:.2g} bits expected")
+        for scan in scans
+    ]  # fmt: skip
+    return el("ul", *told) if told else None
 
 
 def _unexplained(answer: Identification) -> Iterator[Markup]:
