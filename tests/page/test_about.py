@@ -83,7 +83,7 @@ def test_what_means_nothing_is_one_line_with_file_and_remedy(tmp_path: Path, tex
     assert "\n" not in str(failed.value)
 
 
-@pytest.mark.parametrize("raw", [b"\xff\xfe[report]", b"#" * 1_000_001])
+@pytest.mark.parametrize("raw", [b"\xff\xfe[report]", b"#" * 1_000_001, b"a = " + b"[" * 100_000])
 def test_what_is_no_small_text_is_refused(tmp_path: Path, raw: bytes) -> None:
     path = tmp_path / "about.toml"
     path.write_bytes(raw)

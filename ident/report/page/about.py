@@ -154,6 +154,8 @@ def read_about(path: str | Path) -> About:
         told = tomllib.loads(raw.decode("utf-8-sig"))
     except UnicodeDecodeError:
         raise InputError("is not UTF-8", source=source, remedy="save it as UTF-8, as TOML asks for") from None
+    except RecursionError:
+        raise InputError("is nested too deeply", source=source, remedy="write tables and plain entries") from None
     except tomllib.TOMLDecodeError as wrong:
         raise InputError(
             f"is no TOML: {wrong}", source=source, remedy='write a table as [report] and an entry as sample = "lid 3"'
