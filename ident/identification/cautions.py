@@ -21,6 +21,11 @@ HAZARDS = {
     "Th": "thorium is radioactive",
     "U": "uranium is radioactive and toxic",
 }
+# Common practice, no source: what every report of this kind must say along.
+LEAVE_IT = (
+    "where the failure of a part can hurt someone, confirm by a second technique, and leave its disposition to the "
+    "responsible engineer"
+)
 BEAM_SENSITIVE = ("F", "Cl", "Br", "I", "Na", "K")
 
 
@@ -49,4 +54,6 @@ def cautions_for(assignments: Sequence[Assignment], scale: Scale, sputtered: str
             "sputtering reduces oxides, mixes layers, roughens and removes some elements faster than others: the "
             "surface seen is not the one that was there"
         )
+    if any(a.probability >= CAUTION_FROM for a in assignments):
+        said.append(LEAVE_IT)
     return tuple(said)

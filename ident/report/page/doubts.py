@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Sequence
 from typing import TYPE_CHECKING
 
+from ...identification.cautions import LEAVE_IT
 from ..layout import probability
 from .markup import Markup, Part, el, group
 
@@ -125,6 +126,5 @@ LIKE = 20  # letters by which a caution of the answer says already what holds al
 ALWAYS = (
     "Auger data alone do not give oxidation states or compounds reliably.",
     "The electron beam itself can change a surface: insulators, halides, adsorbates and organic films most of all.",
-    "Where the failure of a part can hurt someone, confirm by a second technique, and leave its disposition to the "
-    "responsible engineer.",
+    LEAVE_IT,
 )
