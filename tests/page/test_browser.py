@@ -345,7 +345,7 @@ def test_it_is_as_wide_as_the_window(width: int, shown: Show, several: Path) -> 
     size = {"width": width, "height": 900, "deviceScaleFactor": 1, "mobile": False}
     browser.execute_cdp_cmd("Emulation.setDeviceMetricsOverride", size)
     try:
-        # a window that is drawn smaller by hand says so many times over; the emulated one says it once, perhaps too early
+        # a window drawn smaller by hand says so many times over; the emulated one says it once, perhaps too early
         narrow = "dispatchEvent(new Event('resize')); return document.documentElement.scrollWidth <= window.innerWidth"
         until(lambda: browser.execute_script(narrow))
         label = browser.execute_script(MODEL + "return model('differential').inner_width;")
