@@ -17,8 +17,7 @@ from .settings import Settings
 UNEXPLAINED, UNEXPLAINED_RISE = 7.0, 1.4
 WEAK_RISE, WEAK_FROM = 2.4, 2.8  # near the threshold a minimum may well be noise
 LOW_ENERGY_EV = 60.0
-TAIL_PART, TAIL_EV = 0.25, 23.0  # losses below a strong line,
-TAIL_FAR_PART, TAIL_REACH_EV = 0.2, 28.0  # a little less further down
+TAIL_PART, TAIL_REACH_EV = 0.25, 23.0  # losses below a strong line
 SATELLITE_PART, SATELLITE_NEAR_EV = 0.12, 11.0  # satellites above it
 SATELLITE_FAR_PART, SATELLITE_REACH_EV = 0.04, 35.0  # and steps
 CLEAR_OF_THEM = 5.3  # times as deep as that, a minimum asks for an element in full
@@ -134,8 +133,7 @@ def unexplained_price(energy: FloatArray, depth: FloatArray, significance: Float
 def aside_depth(energy: FloatArray, found_ev: FloatArray, found_depth: FloatArray) -> FloatArray:
     """How deep a loss or a satellite of the minima found is likely to be at an energy; any shape."""
     below = found_ev - energy[..., None]  # strong minus this one
-    tail = np.interp(below, (0.0, TAIL_EV, TAIL_REACH_EV), (TAIL_PART, TAIL_PART, TAIL_FAR_PART))
-    tail = np.where((below > 0) & (below < TAIL_REACH_EV), tail, 0.0)
+    tail = np.where((below > 0) & (below < TAIL_REACH_EV), TAIL_PART, 0.0)
     satellite = np.interp(
         -below, (0.0, SATELLITE_NEAR_EV, SATELLITE_REACH_EV), (SATELLITE_PART, SATELLITE_PART, SATELLITE_FAR_PART)
     )
