@@ -22,8 +22,9 @@ OFF_LOG, OFF_ABSOLUTE, NEIGHBOURS = 0.08, 0.01, 7
 # agree with M4 and with the law for the whole shell.
 M5_GOOD_FROM_Z = 64
 M_LAW, RUN = "Hubbell 1994, law for the M shell", "run of its neighbours in Z"
-# Below Z = 67 the library has no M transfer; above, it hardly changes with Z (M4 to M5 apart): carried down, 20 %.
-M_TRANSFER_FROM_Z = 67
+# Below Z = 67 the library has no M transfer, and from 67 to 70 more leaves M1 than there is (1.10 to 1.00); above, it
+# hardly changes with Z (M4 to M5 apart): carried down, 20 %.
+M_TRANSFER_FROM_Z = 71
 M_TRANSFER = {
     ("M1", "M2"): 0.17, ("M1", "M3"): 0.62, ("M1", "M4"): 0.08, ("M1", "M5"): 0.11, ("M2", "M3"): 0.10,
     ("M2", "M4"): 0.70, ("M2", "M5"): 0.13, ("M3", "M4"): 0.14, ("M3", "M5"): 0.75, ("M4", "M5"): 0.04,
