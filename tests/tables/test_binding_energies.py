@@ -24,7 +24,7 @@ LEVELS = (
 # Why a level differs by more than the tolerance, or is in one list only: the reasons in binding_exceptions.csv.
 REASONS = {
     "solid": "put in for the free atom's by choice: the row says so",
-    "gas": "the compilation gives N2, O2, F2 and krypton gas against the vacuum level, xraylib solids",
+    "gas": "the compilation gives krypton gas against the vacuum level, xraylib the solid",
     "band": "a level of the valence band, with no sharp energy; partly filled bands are left out of one list",
     "4f": "open 4f shell of a lanthanide: multiplets spread the level over several eV, its centre is a choice",
     "4p": "4p hole of Z = 44 to 52 mixes with two 4d holes (Gelius 1974): no sharp level",
