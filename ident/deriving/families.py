@@ -1,53 +1,27 @@
-"""Families of transitions and their corrections: what Chung and Jenkins leave out, smooth in Z."""
+"""Families of transitions, and how far published lines lie from the formula of Chung and Jenkins."""
 
 from __future__ import annotations
 
-import math
 import re
 from dataclasses import dataclass
-from functools import cache
 
 from ..physics.energies import chung_jenkins_ev
 from ..physics.levels import fermi_from_handbook
 from ..tables import PublishedLine, families, published_lines
 from .shells import GROUPS, level
 
-# The formula alone: what it leaves out, and how far published lines stand from it, by the shell of the vacancy. For
-# the O shell two lines of thorium and uranium stand 17 and 19 eV off, which is no more than a hint of a deviation.
-OTHER_OFFSET_EV = 3.0
-OTHER_SIGMA_EV = {"K": 6.0, "L": 3.0, "M": 5.5, "N": 6.0, "O": 12.0}
-LEAST_FITTED = 3
-LEAST_SIGMA_EV = 1.0
-GROWTH_EV = 0.4  # for every Z outside the fit
-ROW_SIGMA_EV = 1.2  # of a published row, which the scatter of a small family may miss by luck
-
 
 @dataclass(frozen=True, kw_only=True)
-class Correction:
-    """Correction of a family: polynomial in (Z - centre) / 10, scatter, and where it was fitted."""
+class Residual:
+    """A published line less the formula."""
 
-    coefficients: tuple[float, ...]  # highest power first
-    centre: float
-    lowest_z: int
-    highest_z: int
-    sigma_ev: float
-    leave_one_out_ev: float
-    least_sigma_ev: float
-    rows: tuple[str, ...]
-
-    def at(self, z: int) -> float:
-        """Correction in eV; beyond the fitted range it stays what it is at its end."""
-        x = (min(max(z, self.lowest_z), self.highest_z) - self.centre) / 10.0
-        value = 0.0
-        for coefficient in self.coefficients:
-            value = value * x + coefficient
-        return value
-
-    def spread_at(self, z: int) -> float:
-        """Standard deviation in eV, growing outside the fitted range."""
-        outside = max(self.lowest_z - z, z - self.highest_z, 0)
-        scatter = math.hypot(max(self.leave_one_out_ev, LEAST_SIGMA_EV), ROW_SIGMA_EV)
-        return math.hypot(max(scatter, self.least_sigma_ev), GROWTH_EV * outside)
+    symbol: str
+    z: int
+    label: str
+    family: str
+    shell: str  # of the vacancy
+    value_ev: float
+    sure: bool  # of normal confidence
 
 
 def formula_ev(z: int, parts: tuple[str, str, str]) -> float | None:
@@ -66,7 +40,7 @@ def valence_group(z: int) -> str:
                       (71, "V"), (80, "O45")):  # fmt: skip
         if z <= top:
             return name
-    return "P23"
+    return "P23" if z <= 86 else "V"
 
 
 def levels_of(label: str, z: int) -> tuple[str, str, str] | None:
@@ -96,54 +70,37 @@ def published_minimum_ev(row: PublishedLine) -> float:
     return fermi_from_handbook(row.energy_ev) if row.reference_level == "handbook" else row.energy_ev
 
 
-@cache
-def corrections() -> dict[str, Correction]:
-    """Fit every family of the table to the rows chosen for it."""
-    return {name: fitted for name in families() if (fitted := _fit(name)) is not None}
-
-
-def residuals(name: str) -> list[tuple[str, int, float]]:
-    """Published minus formula for the rows a family is fitted to: symbol, Z, eV."""
-    family = families()[name]
-    left_out = set(family.left_out.split())
+def residual_rows() -> list[Residual]:
+    """Published handbook minima less formula, of every line whose levels are known."""
     out = []
     for row in published_lines():
         parts = levels_of(row.transition, row.z)
         if row.form != "derivative" or row.reference_level != "handbook" or parts is None:
             continue
-        if family_name(parts, row.z) != name or row.symbol in left_out or row.confidence == "low":
-            continue
         value = formula_ev(row.z, parts)
         if value is not None:
-            out.append((row.symbol, row.z, published_minimum_ev(row) - value))
+            out.append(
+                Residual(
+                    symbol=row.symbol,
+                    z=row.z,
+                    label=row.transition,
+                    family=family_name(parts, row.z),
+                    shell=parts[0][0],
+                    value_ev=published_minimum_ev(row) - value,
+                    sure=row.confidence == "normal",
+                )
+            )
     return out
 
 
-def _fit(name: str) -> Correction | None:
-    import numpy as np
-
-    rows = residuals(name)
-    if len(rows) < LEAST_FITTED:
-        return None
-    degree = min(families()[name].degree, len(rows) - 2)
-    z = np.array([row[1] for row in rows], dtype=float)
-    y = np.array([row[2] for row in rows])
-    centre = float(np.round(np.mean(z)))
-    design = np.vander((z - centre) / 10.0, degree + 1)
-    coefficients, *_ = np.linalg.lstsq(design, y, rcond=None)
-    misfit = y - design @ coefficients
-    leverage = np.einsum("ij,ji->i", design, np.linalg.pinv(design))
-    left = misfit / (1.0 - leverage)
-    return Correction(
-        coefficients=tuple(round(float(c), 4) for c in coefficients),
-        centre=centre,
-        lowest_z=int(z.min()),
-        highest_z=int(z.max()),
-        sigma_ev=float(np.std(misfit)),
-        leave_one_out_ev=float(np.sqrt(np.mean(left**2))),
-        least_sigma_ev=families()[name].least_sigma_ev,
-        rows=tuple(row[0] for row in rows),
-    )
+def residuals(name: str) -> list[tuple[str, int, float]]:
+    """Published minus formula for the rows a family is fitted to: symbol, Z, eV."""
+    left_out = set(families()[name].left_out.split())
+    return [
+        (row.symbol, row.z, row.value_ev)
+        for row in residual_rows()
+        if row.family == name and row.sure and row.symbol not in left_out
+    ]
 
 
-__all__ = ["GROUPS", "Correction", "corrections", "family_name", "formula_ev", "levels_of", "residuals"]
+__all__ = ["GROUPS", "Residual", "family_name", "formula_ev", "levels_of", "residual_rows", "residuals"]

@@ -17,14 +17,14 @@ GROUPS = {
 }  # fmt: skip
 VACANCIES = (
     "K", "L1", "L2", "L3", "L23", "M1", "M23", "M4", "M5", "M45", "N1", "N23", "N4", "N5", "N45", "N67", "O1",
-    "O23", "O45",
+    "O2", "O3", "O23", "O45",
 )  # fmt: skip
 FINALS = ("L1", "L23", "M1", "M23", "M45", "N1", "N23", "N45", "N67", "O1", "O23", "O45", "P1", "P23", "V")
 # Partly filled d bands that the compilation leaves out lie within a few eV of the Fermi level.
-L_APART_FROM_Z, M_APART_FROM_Z, N_APART_FROM_Z = 20, 47, 73
+L_APART_FROM_Z, M_APART_FROM_Z, N_APART_FROM_Z, O_APART_FROM_Z = 20, 47, 73, 72
 BAND_EV = 2.0
-LANTHANUM_Z = 57
-D_BANDS = {"M45": range(20, 31), "N45": range(39, 49), "O45": range(71, 81)}
+LANTHANUM_Z, RADON_Z, ACTINIUM_Z = 57, 86, 89
+D_BANDS = {"M45": range(20, 31), "N45": range(38, 49), "O45": range(71, 81)}
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -46,7 +46,7 @@ def _table() -> dict[int, dict[str, float]]:
 
 @cache
 def level(z: int, name: str) -> Level | None:
-    """A level of an element, None where it has none; V is a conduction band of s electrons."""
+    """A level of an element, None where it has none; V is a band of s electrons, in actinides of d and f ones, too."""
     own = _table().get(z, {})
     parts = [part for part in GROUPS.get(name, (name,)) if part in own]
     if parts:
@@ -54,7 +54,7 @@ def level(z: int, name: str) -> Level | None:
         mean = sum(DEGENERACY[part] * own[part] for part in parts) / count
         return Level(energy_ev=mean, electrons=min(count, _filled(z, name)), band=mean < 12.0)
     if name == "V":
-        return Level(energy_ev=BAND_EV, electrons=2, band=True)
+        return Level(energy_ev=BAND_EV, electrons=z - RADON_Z if z >= ACTINIUM_Z else 2, band=True)
     if name in D_BANDS and z in D_BANDS[name]:
         return Level(energy_ev=BAND_EV, electrons=_filled(z, name), band=True)
     return None
@@ -69,7 +69,8 @@ def _filled(z: int, name: str) -> int:
 
 def vacancies(z: int) -> tuple[str, ...]:
     """Levels in which an initial vacancy is considered; spin-orbit partners apart where lines tell them apart."""
-    joined = {"L23": z < L_APART_FROM_Z, "M45": z < M_APART_FROM_Z, "N45": z < N_APART_FROM_Z}
+    joined = {"L23": z < L_APART_FROM_Z, "M45": z < M_APART_FROM_Z, "N45": z < N_APART_FROM_Z,
+              "O23": z < O_APART_FROM_Z}  # fmt: skip
     out = []
     for name in VACANCIES:
         group = next((g for g in joined if name == g or name in GROUPS[g]), None)

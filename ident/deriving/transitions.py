@@ -6,21 +6,13 @@ from dataclasses import dataclass
 from functools import cache
 
 from ..tables import PublishedLine, published_lines
-from .families import (
-    OTHER_OFFSET_EV,
-    OTHER_SIGMA_EV,
-    corrections,
-    family_name,
-    formula_ev,
-    levels_of,
-    published_minimum_ev,
-)
+from .deviations import deviations
+from .families import family_name, formula_ev, levels_of, published_minimum_ev
 from .learning import correction, line_strength
 from .shells import FINALS, level, vacancies
 from .strengths import ONE_BAND, SHELL_ORDER, strength
 
 LOWEST_EV, HIGHEST_EV = 20.0, 3200.0
-MOST_SIGMA_EV = 12.0
 HIGHEST_Z = 92
 
 
@@ -159,11 +151,11 @@ def _transition(z: int, symbol: str, parts: tuple[str, str, str], row: Published
     if value is None:
         return None
     family = family_name(parts, z)
-    correction = corrections().get(family)
-    if correction is None:
-        energy, sigma, kind = value + OTHER_OFFSET_EV, OTHER_SIGMA_EV.get(parts[0][0], MOST_SIGMA_EV), "formula"
-    else:
-        energy, sigma, kind = value + correction.at(z), correction.spread_at(z), "family"
+    learned = deviations().expected(symbol, z, family, parts[0][0])
+    energy, sigma, kind = value + learned.offset_ev, learned.sigma_ev, learned.kind
+    own = level(z, parts[0])
+    if own is not None:
+        energy = min(energy, own.energy_ev)  # no electron carries more than its vacancy held
     label = "".join(parts)
     if row is not None:
         energy, sigma, kind, label = published_minimum_ev(row), row.sigma_ev, "published", row.transition

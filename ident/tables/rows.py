@@ -130,7 +130,6 @@ class Family:
     family: str
     degree: int  # of the polynomial in Z
     left_out: str  # symbols not fitted to, blank between
-    least_sigma_ev: float  # what it cannot be better than, by judgement; 0 where the scatter of its rows says it
     reason: str
     kind: str
     source: str
