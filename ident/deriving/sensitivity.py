@@ -108,12 +108,13 @@ def _published_log(z: int, symbol: str, beam_ev: float) -> float | None:
 
 @cache
 def _choice(z: int, symbol: str) -> _Choice:
-    """The line that stands for an element: one of known sensitivity before others, the strongest first."""
+    """The line that stands for an element: one of known sensitivity or height before others, the strongest first."""
     lines = weighted_lines(z, symbol)
     held = {row.transition: row for row in published_sensitivities() if row.symbol == symbol}
     usable = [line for line in lines if line.height >= LEAST_HEIGHT and line.transition.strength > 0]
     known = [line for line in usable if line.transition.label in held]
-    chosen = (known or usable or lines)[0]
+    seen = [line for line in usable if line.kind == "published"]
+    chosen = (known or seen or usable or lines)[0]
     return _Choice(
         strongest=chosen if chosen.height == 1.0 else lines[0],
         line=chosen.transition,
