@@ -7,7 +7,8 @@ import re
 import pytest
 
 from ident import tables
-from ident.deriving.families import corrections, residuals
+from ident.deriving.deviations import corrections
+from ident.deriving.families import residuals
 
 Cells = dict[str, list[dict[str, str]]]
 README = (tables.reference_folder() / "README.md").read_text(encoding="utf-8")
