@@ -9,6 +9,7 @@ import numpy as np
 from ..errors import InputError
 from ..signal import Differential, differentiate, find_saturation, noise_kernels, settle_kind
 from ..signal.baseline import slope_baseline
+from ..signal.repair import FlatStretch, repair
 from ..signal.widths import FWHM_PER_SIGMA, usual_sigma_ev
 from ..spectrum import FloatArray, Spectrum, Window
 from .pursuit import Feature, filter_field, pursue
@@ -42,7 +43,7 @@ class Artefact:
     """Something in the data that is no line, and what it is."""
 
     energy_ev: float
-    kind: str  # spike, dead point or saturation
+    kind: str  # spike, dead point, flat stretch or saturation
     what: str
 
 
@@ -82,7 +83,8 @@ def analyse(spectrum: Spectrum, *, resolution: float | None = None) -> Analysis:
         When no window has at least 20 points, or all of them are constant.
     """
     settled, notes = settle_kind(spectrum)
-    windows = [w for w in settled.windows if w.energy_ev.size >= FEWEST_POINTS and np.ptp(w.intensity) > 0]
+    measured, flat, repairs = repair(settled.windows, fewest=FEWEST_POINTS)
+    windows = [w for w in measured if w.energy_ev.size >= FEWEST_POINTS and np.ptp(w.intensity) > 0]
     if not windows:
         raise InputError(
             "no window has 20 points or more that are not all equal",
@@ -91,7 +93,7 @@ def analyse(spectrum: Spectrum, *, resolution: float | None = None) -> Analysis:
         )
     settled = replace(settled, windows=tuple(windows))
     minima: list[Minimum] = []
-    artefacts: list[Artefact] = []
+    artefacts: list[Artefact] = [_flat_note(stretch) for stretch in flat]
     differentials, noises = [], []
     derivative = settled.kind == "derivative"
     kernels = noise_kernels(settled.windows, derivative=derivative) if len(windows) > 1 else {}
@@ -109,7 +111,7 @@ def analyse(spectrum: Spectrum, *, resolution: float | None = None) -> Analysis:
         spectrum=settled,
         minima=tuple(sorted(minima, key=lambda m: m.energy_ev)),
         artefacts=tuple(artefacts),
-        warnings=spectrum.warnings + notes,
+        warnings=spectrum.warnings + notes + repairs,
         differentials=tuple(differentials),
         depth_noise=tuple(noises),
     )
@@ -186,6 +188,14 @@ def _minimum(
         significance=min(feature.depth / local, 1.3 * feature.significance),
         window=number,
     )
+
+
+def _flat_note(stretch: FlatStretch) -> Artefact:
+    what = (
+        f"flat stretch: the ordinate stands at {stretch.level:g} from {stretch.low_ev:.0f} to {stretch.high_ev:.0f} eV "
+        "(saturated, cut off or not recorded), which was left out: nothing can be said there"
+    )
+    return Artefact(energy_ev=0.5 * (stretch.low_ev + stretch.high_ev), kind="flat stretch", what=what)
 
 
 def _saturation_notes(window: Window) -> list[Artefact]:

@@ -54,7 +54,9 @@ def choose_columns(
     ordinates = [at for at in others if role_of(names[at]) == "ordinate"] or others
     if not ordinates:
         source.fail("has no ordinate column", remedy=f"the columns are {_listed(names, range(len(names)))}")
-    taken = ordinates[0]
+    # a column in front of the energies, beside others after them, numbers the points more often than it counts
+    after = [at for at in ordinates if energies and at > energies[0]]
+    taken = (after or ordinates)[0]
     return Choice(
         energy=_energy_for(taken, energies),
         ordinates=(taken,),

@@ -22,6 +22,8 @@ SPACINGS = (1, 2, 3, 4, 6, 9)
 NORMAL_MEDIAN = 0.6745  # median of |x| for a standard normal
 BLOCK = 24
 OTHER_COLUMN = 0.1
+LEAST_NOISE = 1e-5  # of the largest ordinate: nobody counts more than 1e10 electrons a channel
+COARSE, FEW_STEPS = 0.6, 20.0  # of its noise to its smallest step; below so many steps, counts are few, not rounded
 SHORT = 150  # channels; a window this short may be mostly line
 NORMAL_THIRD = 0.3853  # 30 % quantile of |x| for a standard normal
 IndexArray = NDArray[np.int64]
@@ -74,12 +76,21 @@ def estimate_noise(
     if kernel is None:
         kernel = shared_kernel([intensity], [np.sqrt(model)], derivative=derivative)
     excess = _local_excess(variance, model[centre], intensity.size, centre)
-    return NoiseModel(sigma=np.sqrt(model * excess) * kernel.factor, kernel=kernel.weights)
+    sigma = np.sqrt(model * excess) * kernel.factor
+    return NoiseModel(sigma=np.maximum(sigma, _rounding(intensity, sigma)), kernel=kernel.weights)
 
 
 def _smallest(intensity: FloatArray) -> float:
     span = float(np.max(np.abs(intensity)))
-    return (1e-7 * span) ** 2 + 1e-300
+    return (LEAST_NOISE * span) ** 2 + 1e-300
+
+
+def _rounding(intensity: FloatArray, sigma: FloatArray) -> float:
+    """Least noise of data rounded more coarsely than they are noisy: their steps would pass for lines otherwise."""
+    moves = np.abs(np.diff(intensity))
+    step = float(np.min(moves[moves > 0], initial=np.inf))
+    coarse = np.isfinite(step) and np.median(sigma) < COARSE * step
+    return step if coarse and float(np.max(np.abs(intensity))) > FEW_STEPS * step else 0.0
 
 
 def _third_difference(values: FloatArray, spacing: int) -> FloatArray:

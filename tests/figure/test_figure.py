@@ -27,9 +27,8 @@ SVG_TEXT = "{http://www.w3.org/2000/svg}text"
 STARTS = {"png": b"\x89PNG\r\n\x1a\n", "pdf": b"%PDF-", "svg": b"<?xml"}  # ISO/IEC 15948, ISO 32000, XML 1.0
 LEVEL = r"(?:[KLMNOP]\d{0,2}|V)"
 NAMED = re.compile(rf"(?:\+ |or )?([A-Z][a-z]?) ({LEVEL}{LEVEL}{LEVEL})\??")
-OTHER = re.compile(
-    r"unexplained \d+ eV|(?:spike|dead point|saturation|plasmon loss|elastic peak|ionisation loss) \d+ eV|\+ \d+ more"
-)
+NO_LINES = "unexplained|spike|dead point|flat stretch|saturation|plasmon loss|elastic peak|ionisation loss"
+OTHER = re.compile(rf"(?:{NO_LINES}) \d+ eV|\+ \d+ more")
 
 
 SHEETS: dict[str, Any] = {}
