@@ -19,6 +19,7 @@ SHORTEST_DWELL, LONGEST_DWELL = 0.25, 50.0  # against this scan; a longer one no
 LEAST_HALF_EV, HALF_WIDTHS = 15.0, 2.0  # of the window: to have a background on both sides
 HIGHEST_EV, OVERVOLTAGE = 2600.0, 1.3  # how far analysers usually go; the beam must ionise
 MOST_SCANS = 3
+LEAST_BITS = 0.25  # of an element that is not as good as decided
 
 
 def settling_scans(context: Context, elements: tuple[int, ...]) -> tuple[ScanEvidence, ...]:
@@ -53,6 +54,8 @@ def _scans_for(context: Context, element: int, elements: tuple[int, ...]) -> Ite
     present = [int(context.options.element[m]) for m in context.solution.members]
     heights = tilted(pattern.height[element], pattern.energy_ev[element], axis.tilt)
     information = _bits(float(posterior.probability[element]))
+    if information < LEAST_BITS:
+        return  # that it is there, or not, is known: its lines tell nothing of the others
     for column in np.flatnonzero(pattern.real[element] & (pattern.height[element] >= SETTLING_HEIGHT)):
         energy = float(pattern.energy_ev[element, column])
         if energy < LOW_LINE_EV or np.min(np.abs(theirs - energy)) < CLEAR_EV or not _within_reach(context, energy):

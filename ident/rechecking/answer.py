@@ -29,7 +29,7 @@ class LabelOpinion:
     verdict: Verdict
     better: tuple[str, ...]  # elements that fit better there, best first
     choices: tuple[str, ...]  # what an unreadable label may mean
-    probability: float | None  # of the element; of the one least likely where there are several
+    probability: float | None  # of the element; of several the least likely, with "or" the likeliest
     minimum_ev: float | None  # the minimum that the label was taken to mean
     reasons: tuple[Reason, ...]  # weightiest first
     line: int | None = None  # of the file of labels, from 1

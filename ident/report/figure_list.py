@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING, Any
 from .figure_labels import Label
 from .figure_panels import SMALL_POINTS, TEXT_POINTS, marker
 from .figure_text import safe
-from .layout import probability
+from .layout import percent, probability
 from .palette import FAINT_INK, INK, MARKS, PREDICTED, RULE
 from .text_assign import deciding
 
@@ -76,7 +76,7 @@ def _row(axes: Axes, assignment: Assignment, y: float) -> None:
     _write(axes, COLUMNS[2], y, MARKS[role].word, color=colour)
     _write(axes, COLUMNS[3], y, probability(assignment.probability), ha="right", color=colour)
     if sure and assignment.abundance:
-        _write(axes, COLUMNS[4], y, f"{assignment.abundance.atomic_percent:.2g}", ha="right", color=colour)
+        _write(axes, COLUMNS[4], y, percent(assignment.abundance.atomic_percent), ha="right", color=colour)
 
 
 def _legend(axes: Axes, labels: Sequence[Label], answer: Identification, y: float) -> float:

@@ -53,3 +53,8 @@ def probability(value: float) -> str:
     if value < 0.005:
         return "< 0.01"
     return f"{math.floor(value * 100) / 100:.2f}"
+
+
+def percent(value: float) -> str:
+    """Two figures, and never a power of ten: "0.88", "4.1", "54", "100"."""
+    return f"{value:.0f}" if value >= 9.95 else f"{value:.2g}"

@@ -6,7 +6,7 @@ from collections.abc import Iterator
 from typing import TYPE_CHECKING
 
 from .escape import printable
-from .layout import columns, hanging, heading, probability
+from .layout import columns, hanging, heading, percent, probability
 
 if TYPE_CHECKING:
     from ..identification import Assignment, Identification, State, Untestable
@@ -56,7 +56,7 @@ def _table(answer: Identification) -> list[str]:
 
 def _amount(assignment: Assignment) -> str:
     there = assignment.verdict in ("present", "likely") and assignment.abundance
-    return f"{assignment.abundance.atomic_percent:.2g}" if there and assignment.abundance else ""
+    return f"{percent(assignment.abundance.atomic_percent)}" if there and assignment.abundance else ""
 
 
 def deciding(assignment: Assignment) -> str:
@@ -130,7 +130,7 @@ def _doubts(answer: Identification) -> Iterator[str]:
 
 
 def _not_seen(answer: Identification) -> Iterator[str]:
-    usual = [f"{x.element} {x.atomic_percent:.2g}" for x in answer.limits if x.usual]
+    usual = [f"{x.element} {percent(x.atomic_percent)}" for x in answer.limits if x.usual]
     if usual:
         more = len(answer.limits) - len(usual)
         rest = f"; {more} rarer elements are in the JSON answer" if more else ""

@@ -9,7 +9,6 @@ from ident import Spectrum, identify
 from ident.signal.repair import cut_flat, undo_interpolation
 from ident.spectrum import Window
 
-
 # minimum (eV), height (counts), natural width (eV)
 LINES = ((920, 6000, 3.0), (848, 2200, 5.0), (776, 1600, 5.0), (272, 3000, 8.0), (503, 2500, 6.0))
 

@@ -6,7 +6,7 @@ from collections.abc import Mapping, Sequence
 from typing import TYPE_CHECKING
 
 from ...names import name_of
-from ..layout import probability
+from ..layout import percent, probability
 from ..palette import MARKS
 from ..text_assign import deciding
 from .about import Decision
@@ -45,7 +45,11 @@ def _rows(assignment: Assignment, decision: Decision | None, anchor: str) -> lis
     state = el("span", f" as {_state(assignment)}", cls="faint") if assignment.state else None
     overruled = decision is not None and decision.decision == "overruled"
     name = el("span", assignment.element, cls="symbol overruled" if overruled else "symbol")
-    share = group(f"{amount.atomic_percent:.2g}", el("span", f" ×÷ {amount.factor:.1f}", cls="faint")) if amount else ""
+    share = (
+        group(f"{percent(amount.atomic_percent)}", el("span", f" ×÷ {amount.factor:.1f}", cls="faint"))
+        if amount
+        else ""
+    )
     row = el(
         "tr",
         el("th", name, el("span", f" {name_of(assignment.element)}", cls="name"), state, scope="row"),

@@ -6,7 +6,7 @@ from collections.abc import Iterator, Sequence
 from typing import TYPE_CHECKING
 
 from ...identification.cautions import LEAVE_IT
-from ..layout import probability
+from ..layout import percent, probability
 from .markup import Markup, Part, el, group
 
 if TYPE_CHECKING:
@@ -92,7 +92,7 @@ def not_seen(answer: Identification) -> Markup:
 
 def _limits(limits: Sequence[Limit]) -> Markup:
     items = (
-        el("li", el("b", x.element), f" {x.atomic_percent:.2g}", el("span", f" {x.line_ev:.0f} eV", cls="faint"))
+        el("li", el("b", x.element), f" {percent(x.atomic_percent)}", el("span", f" {x.line_ev:.0f} eV", cls="faint"))
         for x in limits
     )
     return el("ul", *items, cls="limits")

@@ -6,7 +6,7 @@ from collections.abc import Mapping, Sequence
 from typing import TYPE_CHECKING
 
 from ...names import name_of
-from ..layout import probability
+from ..layout import percent, probability
 from .about import Decision
 from .marks import mark
 from .markup import Markup, el, group
@@ -75,7 +75,7 @@ def _found(found: Assignment, answer: Identification, anchor: str, decision: Dec
     if role == "not supported":
         return el("td")
     chance = probability(found.probability)
-    amount = f", about {found.abundance.atomic_percent:.2g} at%" if found.abundance and role != "possible" else ""
+    amount = f", about {percent(found.abundance.atomic_percent)} at%" if found.abundance and role != "possible" else ""
     said = f"{role}, {chance}{amount}"
     if decision is not None and decision.decision:
         said += f"; {decision.decision} by the analyst"

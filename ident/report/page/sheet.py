@@ -9,7 +9,7 @@ from io import BytesIO
 from typing import TYPE_CHECKING, Any
 
 from ..figure_labels import Label, labels_of
-from ..layout import probability
+from ..layout import percent, probability
 from ..palette import MARKS, PAPER
 from .about import About, Decision
 from .assignments import asked_about, assignments_table
@@ -174,7 +174,7 @@ def _choice(assignment: Assignment) -> Markup:
         el("b", assignment.element),
         el("span", MARKS[role].word),
         el("span", probability(assignment.probability), cls="chance"),
-        el("span", f"{amount.atomic_percent:.2g} at%" if amount else "", cls="amount"),
+        el("span", f"{percent(amount.atomic_percent)} at%" if amount else "", cls="amount"),
     )
     button = el(
         "button", inside, type="button", data_element=assignment.element, aria_pressed="false", cls=f"choice {role}"
