@@ -8,6 +8,7 @@ from __future__ import annotations
 import itertools
 import json
 from collections.abc import Callable
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
@@ -16,7 +17,7 @@ import pytest
 
 from ident.report.palette import MARKS
 
-from .conftest import HOSTILE, SEVERAL, examined, until
+from .conftest import HOSTILE, SEVERAL, examined, until, written
 
 Show = Callable[[Path], Any]
 MODEL = "const model = (name) => Bokeh.documents[0].get_model_by_name(name);"
@@ -350,6 +351,23 @@ def test_it_is_as_wide_as_the_window(width: int, shown: Show, several: Path) -> 
         until(lambda: browser.execute_script(narrow))
         label = browser.execute_script(MODEL + "return model('differential').inner_width;")
         assert label < width
+    finally:
+        browser.execute_cdp_cmd("Emulation.clearDeviceMetricsOverride", {})
+
+
+def test_a_long_path_does_not_make_it_wider(shown: Show, tmp_path: Path) -> None:
+    found = examined("slip_ring_dead.csv")
+    name = f"/{'folder_' * 12}/{'part' * 20}.csv"
+    answer = replace(found.answer, spectrum=name)
+    path = written(
+        tmp_path / "long.html", [replace(found, answer=answer)], command=f"ident assign {name}", inputs=[name]
+    )
+    browser = shown(path)
+    size = {"width": 360, "height": 900, "deviceScaleFactor": 1, "mobile": False}
+    browser.execute_cdp_cmd("Emulation.setDeviceMetricsOverride", size)
+    try:
+        narrow = "dispatchEvent(new Event('resize')); return document.documentElement.scrollWidth <= window.innerWidth"
+        until(lambda: browser.execute_script(narrow))
     finally:
         browser.execute_cdp_cmd("Emulation.clearDeviceMetricsOverride", {})
 
